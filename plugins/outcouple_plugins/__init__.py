@@ -1,1 +1,18 @@
-"""outcouple."""
+"""The sensor geometries that come with outcouple, given like anyone's through the hooks."""
+
+from __future__ import annotations
+
+from outcouple.hooks.spec import hookimpl
+
+__all__ = ["GEOMETRIES"]
+
+GEOMETRIES: tuple[str, ...] = (
+    "prism-switch = outcouple_plugins.prism_switch:PrismSwitch | two-face prism that loses its light into a liquid",
+    "gap-pair = outcouple_plugins.gap_pair:GapPair | two prisms whose narrow gap passes light: displacement or force",
+)
+
+
+@hookimpl
+def outcouple_geometries() -> tuple[str, ...]:
+    """Every built-in geometry; each is imported only when a design asks for it."""
+    return GEOMETRIES

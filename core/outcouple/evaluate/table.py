@@ -1,0 +1,179 @@
+"""All states of a design over samples: readings, noise and the decision on them."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from outcouple.decision.decide import Decided, Score, decide
+from outcouple.design import Design, State
+from outcouple.evaluate.overlay import UNTOUCHED, Samples, View, samples_count, view_of
+from outcouple.evaluate.signals import LaidState, lay_state
+from outcouple.geometry import StateResult
+from outcouple.light import Light
+from outcouple.notes import Note, merge_notes
+from outcouple.readout.chain import Reading, read_state
+from outcouple.touching.clear import Dry
+
+__all__ = ["StateRow", "Table", "tabulate"]
+
+Floats = NDArray[np.float64]
+
+SMOOTH_NODES = 3
+"""Wavelength nodes where no face holds a film."""
+FRINGE_NODES = 7
+"""Wavelength nodes where a film may show fringes."""
+
+
+@dataclass(frozen=True)
+class StateRow:
+    """One state: its light followed to the read-out, and the reading."""
+
+    laid: LaidState
+    reading: Reading
+    result: StateResult
+    score: Score | None
+
+
+@dataclass(frozen=True)
+class Table:
+    """States by name over S samples."""
+
+    design: Design
+    view: View
+    samples: int
+    rows: tuple[StateRow, ...]
+    untouched: StateRow | None
+    decided: Decided | None
+    notes: tuple[Note, ...]
+    lights: dict[object, Light]
+    media_breaks: tuple[str, ...]
+    nodes: int
+
+    def row(self, name: str) -> StateRow:
+        """The row of that state."""
+        return next(row for row in self.rows if row.laid.state.name == name)
+
+    @property
+    def binary(self) -> tuple[StateRow, ...]:
+        """Rows of states that expect absent or present and are not faults."""
+        return tuple(row for row in self.rows if isinstance(row.laid.state.expect, str) and row.laid.state.role == "normal")
+
+
+def tabulate(design: Design, samples: Samples | None = None, *, states: Sequence[State] | None = None) -> Table:
+    """Follow every state of a design; ``samples`` lays arrays (S,) over numeric inputs (checked by the caller)."""
+    samples = samples or {}
+    count = samples_count(samples)
+    chosen = tuple(design.states if states is None else states)
+    base = view_of(design, samples)
+    breaks, nodes = _media_of(design, chosen, base)
+    lights: dict[object, Light] = {}
+    views: dict[object, View] = {(): base}
+    laid = [_lay(design, state, samples, count, breaks, nodes, lights, views) for state in chosen]
+    untouched_laid = _untouched(design, samples, count, breaks, nodes, lights, views)
+    untouched = None if untouched_laid is None else _row(untouched_laid, None, design)
+    rows = tuple(_row(one, untouched, design) for one in laid)
+    scores = [row.score for row in rows if row.score is not None and row.laid.state.role == "normal"]
+    decided = decide(scores, base.decision, _given_level(design, base, rows))
+    notes = merge_notes(
+        [
+            *(note for row in rows for note in (*row.laid.notes, *row.reading.notes)),
+            *(note for row in rows for preset in row.laid.state.touching.values() for note in type(preset).notes(preset)),
+        ]
+    )
+    return Table(design, base, count, rows, untouched, decided, notes, lights, breaks, nodes)
+
+
+def _media_of(design: Design, states: Sequence[State], view: View) -> tuple[tuple[str, ...], int]:
+    """Materials whose critical angles matter, and how many wavelength nodes the faces ask for."""
+    media: dict[str, None] = {"air": None}
+    films = bool(design.geometry.measurand)
+    for state in states:
+        for cover in state.covers(view, design.geometry).values():
+            media.update(dict.fromkeys(cover.media()))
+            films = films or any(patch.films for patch in cover.patches)
+    return tuple(media), FRINGE_NODES if films else SMOOTH_NODES
+
+
+def _lay(
+    design: Design,
+    state: State,
+    samples: Samples,
+    count: int,
+    breaks: Sequence[str],
+    nodes: int,
+    lights: dict[object, Light],
+    views: dict[object, View],
+) -> LaidState:
+    if state.changes_key not in views:
+        views[state.changes_key] = view_of(design, samples, state.changes)
+    return lay_state(
+        design,
+        state,
+        views[state.changes_key],
+        samples=count,
+        nodes=nodes,
+        breaks_of=breaks,
+        lights=lights,
+    )
+
+
+def _untouched(
+    design: Design,
+    samples: Samples,
+    count: int,
+    breaks: Sequence[str],
+    nodes: int,
+    lights: dict[object, Light],
+    views: dict[object, View],
+) -> LaidState | None:
+    """The sensor with nothing on it, where readings are changes against it."""
+    if design.geometry.reading != "change":
+        return None
+    dry = Dry()
+    state = State(UNTOUCHED, UNTOUCHED, "absent", dict.fromkeys(design.geometry.wetted, dry))
+    return _lay(design, state, samples, count, breaks, nodes, lights, views)
+
+
+def _row(laid: LaidState, untouched: StateRow | None, design: Design) -> StateRow:
+    reading = read_state(design.geometry.readout, laid)
+    result = StateResult(
+        name=laid.state.name,
+        expect=laid.state.expect,
+        setting=laid.setting,
+        light=laid.light,
+        share=np.sum(laid.weights[:, None] * laid.share, axis=1),
+        signal=reading.mean,
+        noise=reading.noise,
+        unit=reading.unit,
+    )
+    return StateRow(laid, reading, result, _score(laid, reading, untouched, design))
+
+
+def _score(laid: LaidState, reading: Reading, untouched: StateRow | None, design: Design) -> Score | None:
+    """The state on the decision's axis: the reading itself, or its relative change; present always high."""
+    if not isinstance(laid.state.expect, str) or (design.geometry.reading == "change" and untouched is None):
+        return None
+    sign = -1.0 if design.geometry.present_reads == "low" else 1.0
+    mean, noise = reading.mean, reading.noise
+    if untouched is not None:
+        with np.errstate(divide="ignore", invalid="ignore"):
+            base = untouched.reading.mean
+            mean = np.where(base > 0, mean / base - 1, 0.0)
+            noise = np.where(base > 0, noise / base, np.inf)
+    return Score(laid.state.name, laid.state.expect, sign * mean, noise)
+
+
+def _given_level(design: Design, view: View, rows: Sequence[StateRow]) -> Floats | None:
+    share = np.asarray(view.decision.share)
+    sign = -1.0 if design.geometry.present_reads == "low" else 1.0
+    if design.geometry.reading == "change":
+        return np.abs(share)[:, None]
+    for row in rows:
+        if row.laid.state.expect == "absent" and row.laid.state.role == "normal":
+            return sign * share[:, None] * row.reading.mean
+    return None
+

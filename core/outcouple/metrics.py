@@ -1,0 +1,160 @@
+"""The metrics every sensor has, beside those its geometry adds."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import replace
+
+from outcouple.fields import leaves
+from outcouple.geometry import Geometry, Metric
+
+__all__ = ["COMMON", "CONTINUOUS", "metrics_of"]
+
+COMMON: tuple[Metric, ...] = (
+    Metric("signal", "signal", "current", "uA", "none", "mean reading of a state; of its faintest channel", "state"),
+    Metric("noise", "noise", "current", "nA", "lower", "standard deviation of the reading", "state"),
+    Metric(
+        "signal_to_noise", "signal over noise", "number", "", "higher", "reading over its standard deviation", "state"
+    ),
+    Metric(
+        "optical_share",
+        "optical share",
+        "ratio",
+        "%",
+        "none",
+        "light at the read-out as a share of the emitter's power",
+        "state",
+    ),
+    Metric(
+        "worst_ratio",
+        "worst ratio",
+        "number",
+        "",
+        "higher",
+        "smallest reading of the states on the bright side over the largest of those on the dark side",
+        "pair",
+    ),
+    Metric(
+        "margin_sigma",
+        "margin in sigma",
+        "number",
+        "",
+        "higher",
+        "distance of a state's reading from the level, towards its own side, in standard deviations",
+        "state",
+    ),
+    Metric(
+        "margin_span",
+        "margin in span",
+        "ratio",
+        "%",
+        "higher",
+        "the same distance as a share of the span between the nearest absent and present states",
+        "state",
+    ),
+    Metric(
+        "false_alarms_per_year",
+        "false alarms per year",
+        "number",
+        "",
+        "lower",
+        "decisions per year that say present while nothing is there, over all channels",
+    ),
+    Metric(
+        "miss_probability",
+        "miss probability",
+        "number",
+        "",
+        "lower",
+        "chance that one decision says absent while something is there",
+        "state",
+    ),
+    Metric(
+        "saturation_headroom",
+        "saturation headroom",
+        "number",
+        "",
+        "higher",
+        "full scale of the read-out over the largest signal with its ambient light",
+        "state",
+    ),
+    Metric(
+        "ambient_ratio",
+        "ambient over signal",
+        "number",
+        "",
+        "lower",
+        "ambient light at the read-out over the largest signal",
+        "state",
+    ),
+    Metric(
+        "noise_equivalent_power",
+        "noise-equivalent power",
+        "power",
+        "pW",
+        "lower",
+        "optical power that equals the noise of the darkest state",
+    ),
+    Metric("response_time", "response time", "time", "ms", "lower", "time from a change to the confirmed decision"),
+)
+
+CONTINUOUS: tuple[Metric, ...] = (
+    Metric("slope", "slope", "number", "1/{unit}", "higher", "largest change of the relative reading with {label}"),
+    Metric("best_bias", "best bias point", "{kind}", "{unit}", "none", "{label} at which the reading changes most"),
+    Metric("resolution", "resolution", "{kind}", "{unit}", "lower", "noise over slope at the state that resolves least", "state"),
+    Metric(
+        "best_resolution", "best resolution", "{kind}", "{unit}", "lower", "noise over slope at the best bias point"
+    ),
+    Metric(
+        "resolution_density",
+        "resolution per root bandwidth",
+        "number",
+        "{si}/rtHz",
+        "lower",
+        "resolution at the best bias point divided by the square root of the noise bandwidth",
+    ),
+    Metric(
+        "monotonic_span",
+        "monotonic span",
+        "{kind}",
+        "{unit}",
+        "higher",
+        "range of {label} about the states over which one reading means one value",
+    ),
+)
+
+BINARY = ("worst_ratio", "margin_sigma", "margin_span", "false_alarms_per_year", "miss_probability")
+"""Common metrics that need states expecting both absent and present."""
+
+
+def metrics_of(geometry: Geometry) -> Mapping[str, Metric]:
+    """Every metric of a geometry by name: the common ones in the units of its read-out, then its own."""
+    electrons = geometry.readout == "camera"
+    found = {}
+    for metric in COMMON:
+        if electrons and metric.kind == "current":
+            metric = replace(metric, kind="electrons", unit="e-")
+        found[metric.name] = metric
+    if geometry.measurand:
+        found.update(_continuous(geometry))
+    found.update({metric.name: metric for metric in geometry.metrics})
+    return found
+
+
+def _continuous(geometry: Geometry) -> dict[str, Metric]:
+    leaf = next(leaf for leaf in leaves(geometry.Parameters) if leaf.path == geometry.measurand)
+    words = {
+        "unit": leaf.unit,
+        "si": leaf.si_unit,
+        "kind": leaf.kind,
+        "label": leaf.path[-1].replace("_", " "),
+    }
+    return {
+        metric.name: replace(
+            metric,
+            kind=metric.kind.format(**words),
+            unit=metric.unit.format(**words),
+            meaning=metric.meaning.format(**words),
+        )
+        for metric in CONTINUOUS
+    }

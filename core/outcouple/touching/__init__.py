@@ -1,0 +1,14 @@
+"""Contact presets: what commonly touches a sensor, as ordinary covers a user could write out.
+
+The room promises :data:`BUILT_IN`, the presets in the order they are listed, and :class:`Touching`, what a further one
+(from a plugin) must be.
+"""
+
+from __future__ import annotations
+
+from outcouple.touching.base import Touching
+from outcouple.touching.clear import Droplets, Dry, Immersed, Patches, ResidualFilm
+
+__all__ = ["BUILT_IN", "Touching"]
+
+BUILT_IN: tuple[type[Touching], ...] = (Dry, Immersed, ResidualFilm, Droplets, Patches)

@@ -1,0 +1,215 @@
+"""The light of a prism switch: every way from the emitter over one or two faces to the base."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from outcouple.geometry import Setting
+from outcouple.light import Light, Relight, Vector
+from outcouple.optics import gauss_legendre, interface
+
+from outcouple_plugins.prism_switch.directions import Directions, lobe_directions
+from outcouple_plugins.prism_switch.ways import Interval, WayTrace, Wedge, trace_way
+
+__all__ = ["COLUMNS", "apex_height", "prism_light"]
+
+Floats = NDArray[np.float64]
+
+SLICES = 8
+"""Slices of the emitting disc across y."""
+COLUMNS = ("emitter", "detector", "emitter")
+"""Faces of the hit columns: the two-hit way in either order fits into three."""
+EMITTER, DETECTOR = -1, 1
+WAYS: tuple[tuple[tuple[int, ...], tuple[int, ...]], ...] = (
+    ((EMITTER, DETECTOR), (0, 1)),
+    ((DETECTOR, EMITTER), (1, 2)),
+    ((EMITTER,), (0,)),
+    ((DETECTOR,), (1,)),
+)
+"""Faces of each way in order, and the hit columns they fill."""
+
+
+def apex_height(setting: Setting) -> Floats:
+    """Height of the apex above the base plane [m], (S,)."""
+    prism = setting.p.prism
+    return setting.spread(prism.stem + prism.base / 2 * np.tan(prism.face_angle))
+
+
+@dataclass(frozen=True)
+class _Start:
+    """What a ray brings along: its frame, its polarisation and the share of the lobe that got into the guide."""
+
+    direction: Vector
+    s_vector: Vector
+    polarization: Floats
+    weight: Floats
+    reflected: Floats
+
+
+def prism_light(setting: Setting) -> Light:
+    """Lay out all one-hit and two-hit ways; everything else stays in the ledger as light that passes the detector."""
+    p = setting.p
+    n_guide = setting.index(p.prism.material)
+    bonded = p.layout.coupling == "bonded"
+    directions = lobe_directions(
+        n_guide=n_guide,
+        half_angle=setting.spread(p.emitter.half_angle),
+        exponent=setting.spread(p.emitter.exponent),
+        tilt=setting.spread(p.layout.emitter_tilt),
+        bonded=bonded,
+        face_angle=setting.spread(p.prism.face_angle),
+        breaks=setting.breaks,
+    )
+    start = _start(directions, n_guide, bonded, p.emitter.polarization)
+    traces = _traces(setting, start)
+    return _assemble(setting, start, traces, n_guide, bonded)
+
+
+def _start(directions: Directions, n_guide: Floats, bonded: bool, polarization: str) -> _Start:
+    direction = Vector(*(array[:, :, None] for array in (directions.x, directions.y, directions.z)))
+    up = Vector(*(np.full((1, 1, 1), value) for value in (0.0, 0.0, 1.0)))
+    along = Vector(*(np.full((1, 1, 1), value) for value in (0.0, 1.0, 0.0)))
+    # A polarised emitter keeps its field along or across y; an unpolarised one is sorted by the base it enters through.
+    s_vector = up.cross(direction).unit() if polarization == "none" else along.across(direction)
+    if bonded:
+        Ts = Tp = np.ones_like(directions.weight)
+    else:
+        face = interface(1.0, n_guide[:, None], np.arccos(directions.base))
+        Ts, Tp = 1 - face.Rs, 1 - face.Rp
+    mean = (Ts + Tp) / 2
+    q = {"none": (Ts - Tp) / (Ts + Tp), "s": np.ones_like(mean), "p": -np.ones_like(mean)}[polarization]
+    return _Start(direction, s_vector, q, directions.weight * mean, directions.weight * (1 - mean))
+
+
+def _slices(setting: Setting) -> tuple[Interval, Floats, Floats]:
+    """The emitting disc in slices across y: x0 range (S, 1, Y), y0, and the disc's share per metre of slice."""
+    layout = setting.p.layout
+    t, w = gauss_legendre(SLICES)
+    phi = t * np.pi / 2
+    radius = setting.spread(layout.emitter_radius)[:, None, None]
+    centre = setting.spread(layout.emitter_position)[:, None, None]
+    half = radius * np.cos(phi)
+    per_metre = w * np.pi / 2 * np.cos(phi) / (np.pi * radius)
+    return Interval(centre - half, centre + half), radius * np.sin(phi), per_metre
+
+
+def _traces(setting: Setting, start: _Start) -> list[tuple[WayTrace, Floats, Floats]]:
+    """Each way's trace with the shares of the disc that follow it and that land, (S, K)."""
+    p = setting.p
+    wedge = Wedge(
+        setting.spread(p.prism.base / 2)[:, None, None],
+        apex_height(setting)[:, None, None],
+        setting.spread(p.prism.face_angle)[:, None, None],
+    )
+    slices, y0, per_metre = _slices(setting)
+    found = []
+    for sides, _ in WAYS:
+        trace = trace_way(
+            sides,
+            start.direction,
+            start.s_vector,
+            slices,
+            y0,
+            wedge,
+            detector_x=setting.spread(p.layout.detector_position)[:, None, None],
+            detector_radius=setting.spread(p.layout.detector_radius)[:, None, None],
+        )
+        follows = np.sum(trace.follows * per_metre, axis=-1)
+        lands = np.sum(trace.lands * per_metre, axis=-1)
+        found.append((trace, follows, lands))
+    return found
+
+
+def _assemble(
+    setting: Setting,
+    start: _Start,
+    traces: list[tuple[WayTrace, Floats, Floats]],
+    n_guide: Floats,
+    bonded: bool,
+) -> Light:
+    samples, rays = start.weight.shape
+    launch, reach, angle, hits, turn, length = [], [], [], [], [], []
+    for (_, columns), (trace, follows, lands) in zip(WAYS, traces, strict=True):
+        incidence, made, turned = (np.zeros((samples, rays, len(COLUMNS))) for _ in range(3))
+        for at, column in enumerate(columns):
+            incidence[:, :, column] = np.arccos(trace.cosines[at])[:, :, 0]
+            made[:, :, column] = 1.0
+            turned[:, :, column] = trace.turns[at][:, :, 0]
+        landing = np.where(follows > 0, lands / np.where(follows > 0, follows, 1.0), 0.0)
+        launch.append(start.weight * np.minimum(follows, 1.0))
+        reach.append(np.minimum(landing, 1.0) * _exit(setting, trace.exit[:, :, 0], n_guide, bonded))
+        angle.append(incidence)
+        hits.append(made)
+        turn.append(turned)
+        length.append(np.mean(trace.middle, axis=-1))
+    launch.append(np.maximum(start.weight - sum(launch), 0.0))
+    for store, last in ((reach, np.zeros((samples, rays))), (length, np.zeros((samples, rays)))):
+        store.append(last)
+    for store in (angle, hits, turn):
+        store.append(np.zeros((samples, rays, len(COLUMNS))))
+    total = np.concatenate(launch, axis=1)
+    landing_share = np.concatenate(reach, axis=1)
+    capture = np.sum(total * landing_share, axis=1)
+    layout = setting.p.layout
+    radius = setting.spread(layout.detector_radius)
+    height = apex_height(setting)
+    return Light(
+        guide=setting.p.prism.material,
+        faces=COLUMNS,
+        launch=total,
+        reach=landing_share[:, None, :],
+        angle=np.concatenate(angle, axis=1),
+        hits=np.concatenate(hits, axis=1)[:, None, :, :],
+        turn=np.concatenate(turn, axis=1),
+        length=np.concatenate(length, axis=1)[:, None, :],
+        polarization=np.concatenate([start.polarization] * (len(WAYS) + 1), axis=1),
+        relight=_relights(setting, rays * (len(WAYS) + 1)),
+        stray=(setting.spread(setting.p.prism.crosstalk) * capture)[:, None],
+        ambient=(np.pi**2 * radius**2 * np.sin(setting.spread(layout.detector_half_angle)) ** 2)[:, None],
+        entry={
+            "reflected at the base on the way in": np.sum(start.reflected, axis=1),
+            "leaves the emitter away from the base": 1 - np.sum(start.weight + start.reflected, axis=1),
+        },
+        acceptance=np.arctan(radius / height),
+    )
+
+
+def _exit(setting: Setting, cosine: Floats, n_guide: Floats, bonded: bool) -> Floats:
+    """Transmission of the base on the way out, zero beyond the detector's half-angle."""
+    sine = np.sqrt(np.maximum(1 - cosine**2, 0.0))
+    outside = sine if bonded else n_guide[:, None] * sine
+    taken = outside <= np.sin(setting.spread(setting.p.layout.detector_half_angle))[:, None]
+    if bonded:
+        return taken.astype(float)
+    face = interface(n_guide[:, None], 1.0, np.arccos(np.clip(cosine, 0, 1)))
+    return np.where(taken, 1 - (face.Rs + face.Rp) / 2, 0.0)
+
+
+def _relights(setting: Setting, rays: int) -> tuple[Relight, ...]:
+    """A lit patch of each face seen by the detector: cos cos A / (pi r^2), straight through the base."""
+    p, n_guide = setting.p, setting.index(setting.p.prism.material)
+    alpha = setting.spread(p.prism.face_angle)
+    area = np.pi * setting.spread(p.layout.detector_radius) ** 2
+    found = []
+    for column, side in enumerate((EMITTER, DETECTOR, EMITTER)):
+        x = side * np.abs(setting.spread(p.layout.emitter_position))
+        z = apex_height(setting) - np.abs(x) * np.tan(alpha)
+        dx = setting.spread(p.layout.detector_position) - x
+        distance = np.hypot(dx, z)
+        inward = np.maximum((-side * np.sin(alpha) * dx + np.cos(alpha) * z) / distance, 0.0)
+        down = z / distance
+        share = inward * down * area / (np.pi * distance**2)
+        exit_share = _exit(setting, down[:, None], n_guide, p.layout.coupling == "bonded")[:, 0]
+        found.append(
+            Relight(
+                column=column,
+                feed=np.ones((1, 1, rays)),
+                share=(np.minimum(share, 1.0) * exit_share)[:, None],
+                sine=np.sqrt(1 - inward**2)[:, None],
+                length=np.broadcast_to(distance[:, None, None], (setting.samples, 1, 1)),
+            )
+        )
+    return tuple(found)
