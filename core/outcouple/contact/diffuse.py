@@ -77,7 +77,7 @@ def diffuse_notes(*, scattering: Number, absorption: Number) -> tuple[Note, ...]
 def spread_length(*, scattering: Number, absorption: Number = 0.0) -> Floats:
     """Length [m] over which light that comes back has spread sideways, 1 / (mu_s' + mu_a).
 
-    Half of it surfaces within one to two of these lengths (`returned_within`); a spread wider than the
+    About half of it surfaces within two of these lengths (`returned_within`); a spread wider than the
     sensor's face takes light away from it.
     """
     return np.asarray(1 / (np.asarray(scattering) + np.asarray(absorption)))
