@@ -13,12 +13,22 @@ from outcouple.contact.cautions import caution
 from outcouple.contact.fresnel import fresnel_amplitudes
 from outcouple.notes import Note
 
-__all__ = ["TABLE_FILE", "DropTable", "drop_answer", "drop_notes", "drop_powers", "zone_angle"]
+__all__ = [
+    "LEVELS",
+    "TABLE_FILE",
+    "DropTable",
+    "drop_answer",
+    "drop_notes",
+    "drop_powers",
+    "reflection_spread",
+    "zone_angle",
+]
 
 Floats = NDArray[np.float64]
 Number = float | Floats
 
 TABLE_FILE = "drop_returns.npz"
+LEVELS = 4095  # of a share in the stored table
 GUIDE_RANGE = (1.3, 1.9)
 
 
@@ -49,7 +59,7 @@ class DropTable:
 def _table() -> DropTable:
     with (resources.files("outcouple") / "data" / TABLE_FILE).open("rb") as file, np.load(file) as stored:
         axes = {name: np.asarray(stored[name], dtype=float) for name in stored.files if name != "kept"}
-        return DropTable(**axes, kept=(stored["kept"] / np.float32(65535)).astype(np.float32))
+        return DropTable(**axes, kept=(stored["kept"] / np.float32(LEVELS)).astype(np.float32))
 
 
 def drop_answer(
@@ -101,7 +111,7 @@ def drop_powers(
     table = _table()
     phi = np.maximum(phi, 1e-9)
     zone = _zone(inside, n_drop=drop, ratio=guide / drop, contact_angle=phi)
-    reach = cone / flat_drop_spread(ratio=guide / drop, inside=inside, contact_angle=phi)
+    reach = cone / reflection_spread(ratio=guide / drop, inside=inside, contact_angle=phi)
     block = _blocks(table, drop[:, 0], (guide / drop)[:, 0], phi[:, 0])
     returned = np.broadcast_to(_at(block[..., -1, :], table.zone, zone), (*zone.shape, 2))
     within = _within(block, table, zone, reach)
@@ -128,16 +138,15 @@ def drop_notes(*, n_guide: Number, n_drop: Number, contact_angle: Number) -> tup
     return tuple(notes)
 
 
-def flat_drop_spread(*, ratio: Number, inside: Number, contact_angle: Number) -> Floats:
-    """Angle [rad] in the guide over which a flat drop spreads its single reflections (a scale, not a limit).
+def reflection_spread(*, ratio: Number, inside: Number, contact_angle: Number) -> Floats:
+    """Angle [rad] in the guide between the specular ray and the one reflected at the drop's far rim.
 
-    A surface tilted by a turns the tangential index by 2 n_drop cos(inside) a; inside the guide that is an
-    ellipse of angles, and this is the geometric mean of its axes at the rim, kept off zero near grazing.
+    A surface tilted by the contact angle returns the ray 2 contact_angle steeper; single reflections of a flat
+    drop stay within that, so acceptance over this scale is alike for all of them.
     """
-    steep = np.maximum(np.cos(inside), 0.1)
-    sine = np.sin(inside) / ratio
-    cosine = np.maximum(np.sqrt(np.maximum(1 - sine**2, 0)), 0.1)
-    return np.asarray(2 * contact_angle * steep / (ratio * np.sqrt(cosine)))
+    turned = np.sin(np.maximum(np.asarray(inside) - 2 * np.asarray(contact_angle), -np.pi / 2))
+    specular = np.minimum(np.sin(inside) / ratio, 1.0)
+    return np.asarray(np.arcsin(specular) - np.arcsin(np.clip(turned / ratio, -1.0, 1.0)))
 
 
 def zone_angle(zone: Number, *, n_drop: Number, ratio: Number, contact_angle: Number) -> Floats:
@@ -148,7 +157,7 @@ def zone_angle(zone: Number, *, n_drop: Number, ratio: Number, contact_angle: Nu
     incidence.
     """
     edges = _zone_edges(n_drop=n_drop, ratio=ratio, contact_angle=contact_angle)
-    steps = np.clip(np.asarray(zone)[..., None] - np.arange(4), 0, 1)
+    steps = np.clip(np.asarray(zone)[..., None] - np.arange(5), 0, 1)
     return np.asarray((steps * np.diff(edges, axis=-1)).sum(axis=-1))
 
 
@@ -156,8 +165,10 @@ def _zone_edges(*, n_drop: Number, ratio: Number, contact_angle: Number) -> Floa
     critical = np.arcsin(1 / np.asarray(n_drop))
     grazing = np.maximum(np.arcsin(np.minimum(ratio, 1.0)), critical + 1e-6)
     before = critical - np.minimum(contact_angle, critical / 2)
-    after = critical + np.minimum(contact_angle, (grazing - critical) / 2)
-    return np.stack(np.broadcast_arrays(0.0, before, critical, after, grazing), axis=-1)
+    step = np.minimum(contact_angle, (grazing - critical) / 3)
+    return np.stack(
+        np.broadcast_arrays(0.0, before, critical, critical + step, grazing - step, grazing), axis=-1
+    )
 
 
 def _zone(inside: Floats, *, n_drop: Floats, ratio: Floats, contact_angle: Floats) -> Floats:

@@ -8,26 +8,31 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from outcouple.contact.droplet import TABLE_FILE, flat_drop_spread, zone_angle
+from outcouple.contact.droplet import LEVELS, TABLE_FILE, reflection_spread, zone_angle
 from outcouple.contact.droptrace import trace_drop
 
 __all__ = ["make_table"]
 
 Floats = NDArray[np.float64]
 
-N_DROP = np.array([1.2, 1.3, 1.4, 1.5, 1.6])
-RATIO = np.array([0.8, 0.88, 0.94, 0.97, 1.0, 1.03, 1.08, 1.15, 1.3, 1.6])
-CONTACT_ANGLE = np.radians([0.25, 0.6, 1.2, 2.5, 5, 8, 12, 18, 25, 35, 45, 60, 75, 90, 105, 120])
-ZONE = np.array(
-    [0, 0.35, 0.6, 0.8, 0.9, 0.96, 1, 1.25, 1.5, 1.75, 1.9, 2, 2.06, 2.15, 2.3, 2.5, 2.75, 3]
-    + [3.15, 3.35, 3.6, 3.8, 3.93, 3.99]
+N_DROP = np.array([1.2, 1.3, 1.43, 1.6])
+RATIO = np.array([0.8, 0.9, 0.96, 1.0, 1.04, 1.12, 1.28, 1.6])
+CONTACT_ANGLE = np.radians([0.25, 0.6, 1.2, 2.5, 5, 8, 12, 17, 22, 28, 35, 45, 60, 75, 90, 105, 120])
+ZONE = np.concatenate(
+    (
+        [0, 0.35, 0.6, 0.8, 0.9, 0.96],
+        [1, 1.25, 1.5, 1.75, 1.9],
+        [2, 2.06, 2.15, 2.3, 2.5, 2.75],
+        [3, 3.25, 3.5, 3.75],
+        [4, 4.2, 4.4, 4.6, 4.8, 4.99],
+    )
 )
 LEAST_GUIDE = 1.05
-REACH = np.array([0.1, 0.2, 0.35, 0.5, 0.65, 0.8, 0.95, 1.1, 1.3, 1.6, 2.0, 2.6, 4.0, np.inf])
+REACH = np.array([0.06, 0.12, 0.2, 0.3, 0.4, 0.5, 0.6, 0.7, 0.8, 0.9, 1.0, 1.15, 1.4, 1.8, 2.5, np.inf])
 
 
 def make_table(*, rays: int = 3000) -> dict[str, NDArray[Any]]:
-    """Trace every node; arrays as `outcouple.contact.droplet.DropTable` names them, kept as 16-bit shares."""
+    """Trace every node; arrays as `DropTable` names them, ``kept`` in whole numbers up to LEVELS."""
     shape = (len(N_DROP), len(RATIO), len(CONTACT_ANGLE), len(ZONE), len(REACH), 2)
     kept = np.zeros(shape)
     for place in np.ndindex(shape[:4]):
@@ -39,7 +44,7 @@ def make_table(*, rays: int = 3000) -> dict[str, NDArray[Any]]:
         "contact_angle": CONTACT_ANGLE,
         "zone": ZONE,
         "reach": reach,
-        "kept": np.round(np.clip(kept, 0, 1) * 65535).astype(np.uint16),
+        "kept": np.round(np.clip(kept, 0, 1) * LEVELS).astype(np.uint16),
     }
 
 
@@ -56,7 +61,7 @@ def _node(n_drop: float, ratio: float, contact_angle: float, zone: float, *, ray
     )
     order = np.argsort(cap.deviation)
     total = np.concatenate((np.zeros((1, 2)), np.cumsum(cap.power[order], axis=0)))
-    spread = float(flat_drop_spread(ratio=ratio, inside=inside, contact_angle=contact_angle))
+    spread = float(reflection_spread(ratio=ratio, inside=inside, contact_angle=contact_angle))
     counted = np.searchsorted(cap.deviation[order], REACH * spread, side="right")
     return np.asarray(total[counted] / (1 - cap.base))
 
