@@ -97,7 +97,8 @@ class Surface:
     axes    (label, unit text, values in SI) per dimension, slowest first
     values  array over the axes, SI
     kind    kind of quantity of the values; unit is the preferred display unit
-    outline share of the axes' area that meets the metric's own limit, where that has a meaning
+    limit   value a contour is drawn at, where one has a meaning
+    marks   named points of a curve: (name, x, y) in SI
     """
 
     name: str
@@ -107,6 +108,7 @@ class Surface:
     kind: str = "number"
     unit: str = ""
     limit: float | None = None
+    marks: tuple[tuple[str, float, float], ...] = ()
 
 
 Curve = Surface
@@ -206,6 +208,7 @@ class StateResult:
     share    optical share of the emitter's power at the read-out, (S, C)
     signal   mean reading, (S, C), in ``unit``
     noise    standard deviation of the reading, (S, C)
+    covers   what lies on each face (of the first build-up where coarse patches make several)
     """
 
     name: str
@@ -216,7 +219,7 @@ class StateResult:
     signal: Floats
     noise: Floats
     unit: str
-    object: Mapping[str, Floats] | None = None
+    covers: Mapping[str, Cover]
 
 
 @dataclass(frozen=True)

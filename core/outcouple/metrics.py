@@ -11,10 +11,24 @@ from outcouple.geometry import Geometry, Metric
 __all__ = ["COMMON", "CONTINUOUS", "metrics_of"]
 
 COMMON: tuple[Metric, ...] = (
-    Metric("signal", "signal", "current", "uA", "none", "mean reading of a state; of its faintest channel", "state"),
+    Metric(
+        "signal",
+        "signal",
+        "current",
+        "uA",
+        "none",
+        "mean reading of a state; of its faintest channel",
+        "state",
+    ),
     Metric("noise", "noise", "current", "nA", "lower", "standard deviation of the reading", "state"),
     Metric(
-        "signal_to_noise", "signal over noise", "number", "", "higher", "reading over its standard deviation", "state"
+        "signal_to_noise",
+        "signal over noise",
+        "number",
+        "",
+        "higher",
+        "reading over its standard deviation",
+        "state",
     ),
     Metric(
         "optical_share",
@@ -95,15 +109,49 @@ COMMON: tuple[Metric, ...] = (
         "lower",
         "optical power that equals the noise of the darkest state",
     ),
-    Metric("response_time", "response time", "time", "ms", "lower", "time from a change to the confirmed decision"),
+    Metric(
+        "response_time",
+        "response time",
+        "time",
+        "ms",
+        "lower",
+        "time from a change to the confirmed decision",
+    ),
 )
 
 CONTINUOUS: tuple[Metric, ...] = (
-    Metric("slope", "slope", "number", "1/{unit}", "higher", "largest change of the relative reading with {label}"),
-    Metric("best_bias", "best bias point", "{kind}", "{unit}", "none", "{label} at which the reading changes most"),
-    Metric("resolution", "resolution", "{kind}", "{unit}", "lower", "noise over slope at the state that resolves least", "state"),
     Metric(
-        "best_resolution", "best resolution", "{kind}", "{unit}", "lower", "noise over slope at the best bias point"
+        "slope",
+        "slope",
+        "number",
+        "1/{unit}",
+        "higher",
+        "largest change of the relative reading with {label}",
+    ),
+    Metric(
+        "best_bias",
+        "best bias point",
+        "{kind}",
+        "{unit}",
+        "none",
+        "{label} at which the reading changes most",
+    ),
+    Metric(
+        "resolution",
+        "resolution",
+        "{kind}",
+        "{unit}",
+        "lower",
+        "noise over slope at the state that resolves least",
+        "state",
+    ),
+    Metric(
+        "best_resolution",
+        "best resolution",
+        "{kind}",
+        "{unit}",
+        "lower",
+        "noise over slope at the best bias point",
     ),
     Metric(
         "resolution_density",

@@ -82,7 +82,8 @@ def decide(scores: Sequence[Score], settings: Any, given: Floats | None = None) 
             of_span[score.name] = side * _kth(score.mean - level, need) / span
         seen[score.name] = np.sum(score.mean > level, axis=1).astype(float)
     miss = {
-        score.name: 1 - confirmed_probability(tail_probability(-sigma[score.name]), settings.confirm, settings.window)
+        score.name: 1
+        - confirmed_probability(tail_probability(-sigma[score.name]), settings.confirm, settings.window)
         for score in present
     }
     alarms = _stack([_alarms(score, level, settings) for score in absent])
@@ -137,6 +138,8 @@ def _level(
 
 def _alarms(score: Score, level: Floats, settings: Any) -> Floats:
     """False alarms per year of one absent state: rate times the chance that any channel confirms."""
-    one = confirmed_probability(tail_probability((level - score.mean) / score.noise), settings.confirm, settings.window)
+    one = confirmed_probability(
+        tail_probability((level - score.mean) / score.noise), settings.confirm, settings.window
+    )
     any_channel = -np.expm1(np.sum(np.log1p(-np.minimum(one, 1 - 1e-16)), axis=1))
     return np.asarray(any_channel * settings.rate * SECONDS_PER_YEAR)

@@ -7,7 +7,7 @@ from dataclasses import dataclass, field
 from typing import Any
 
 from outcouple.design.states import Requirement, State
-from outcouple.fields import Section
+from outcouple.fields import Section, leaf_text, leaves
 from outcouple.geometry import Geometry
 from outcouple.hooks import Host
 from outcouple.materials import Catalogue
@@ -54,10 +54,14 @@ class Design:
     given: frozenset[Path] = field(default_factory=frozenset)
     file: str = ""
 
+    def unverified(self) -> tuple[str, ...]:
+        """Decisive inputs that the file leaves at their defaults."""
+        return tuple(
+            leaf.name for leaf in leaves(type(self.sections)) if leaf.deciding and leaf.path not in self.given
+        )
+
     def text(self, path: Path) -> str:
         """The text of a leaf as the user wrote it, or its default's."""
-        from outcouple.fields import leaf_text
-
         here: Any = self.raw
         for key in path:
             here = here.get(key) if isinstance(here, Mapping) else None

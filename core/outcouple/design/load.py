@@ -50,7 +50,11 @@ def parse_design(text: str, *, file: str = "design.toml", host: Host | None = No
 
 
 def design_from_mapping(
-    data: Mapping[str, Any], *, source: TomlSource | None = None, file: str = "design", host: Host | None = None
+    data: Mapping[str, Any],
+    *,
+    source: TomlSource | None = None,
+    file: str = "design",
+    host: Host | None = None,
 ) -> Design:
     """A design from plain data in the shape of the file (texts with units)."""
     host = host or build_host()
@@ -90,7 +94,9 @@ def _geometry(data: Mapping[str, Any], host: Host, problems: list[Problem]) -> G
     if name not in host.geometries:
         left = next((out for out in host.left_out if out.plugin == name), None)
         hint = f"its plugin was left out: {left.why}" if left else f"one of: {allowed}"
-        problems.append(Problem(("geometry",), name, f"unknown geometry{nearest(name, host.geometries)}", hint))
+        problems.append(
+            Problem(("geometry",), name, f"unknown geometry{nearest(name, host.geometries)}", hint)
+        )
         return None
     return host.geometry(name)
 
@@ -98,9 +104,7 @@ def _geometry(data: Mapping[str, Any], host: Host, problems: list[Problem]) -> G
 @lru_cache(maxsize=64)
 def design_model(geometry: type[Geometry]) -> type[Section]:
     """The pydantic model of all sections of one geometry's design file."""
-    own = {
-        name: (info.annotation, info) for name, info in geometry.Parameters.model_fields.items()
-    }
+    own = {name: (info.annotation, info) for name, info in geometry.Parameters.model_fields.items()}
     model: type[Section] = create_model(  # type: ignore[call-overload]
         f"{geometry.__name__}Design",
         __base__=Section,
@@ -123,7 +127,9 @@ def _sections(data: Mapping[str, Any], geometry: Geometry, problems: list[Proble
         if key not in model.model_fields:
             allowed = [*HEADER, *model.model_fields, *PARTS]
             problems.append(
-                Problem((key,), None, f"unknown section{nearest(key, allowed)}", f"allowed: {', '.join(allowed)}")
+                Problem(
+                    (key,), None, f"unknown section{nearest(key, allowed)}", f"allowed: {', '.join(allowed)}"
+                )
             )
             del own[key]
     try:

@@ -46,7 +46,12 @@ class Parts:
         allowed = list(allowed)
         for key in table:
             if key not in allowed:
-                self.wrong((*path, key), None, f"unknown key{nearest(key, allowed)}", f"allowed: {', '.join(allowed)}")
+                self.wrong(
+                    (*path, key),
+                    None,
+                    f"unknown key{nearest(key, allowed)}",
+                    f"allowed: {', '.join(allowed)}",
+                )
 
     @property
     def leaves(self) -> Mapping[Path, Leaf]:
@@ -81,7 +86,9 @@ def read_states(given: Any, parts: Parts) -> tuple[State, ...]:
             parts.wrong(path, name, "a state needs a name", 'write name = "dry"')
             continue
         if name in seen:
-            parts.wrong((*path, "name"), name, "there is another state of this name", "names of states must differ")
+            parts.wrong(
+                (*path, "name"), name, "there is another state of this name", "names of states must differ"
+            )
         seen.add(name)
         found.extend(_state(row, name, path, parts))
     return tuple(found)
@@ -131,7 +138,7 @@ def _levels(presets: Iterable[Touching]) -> tuple[str, ...]:
 
 def _expect(given: Any, path: Path, parts: Parts) -> str | float:
     measurand = parts.geometry.measurand
-    number = f' or a quantity for {".".join(measurand)}' if measurand else ""
+    number = f" or a quantity for {'.'.join(measurand)}" if measurand else ""
     if given in ("absent", "present"):
         return str(given)
     if given is None:
@@ -142,7 +149,12 @@ def _expect(given: Any, path: Path, parts: Parts) -> str | float:
         try:
             return parse_leaf(leaf, given)
         except UserMistake as error:
-            parts.wrong(path, given, str(error), f'or one of: "absent", "present"{nearest(given, ["absent", "present"])}')
+            parts.wrong(
+                path,
+                given,
+                str(error),
+                f'or one of: "absent", "present"{nearest(given, ["absent", "present"])}',
+            )
             return "absent"
     hint = nearest(given, ["absent", "present"]) if isinstance(given, str) else ""
     parts.wrong(path, given, f"unknown expectation{hint}", f'one of: "absent", "present"{number}')
@@ -161,11 +173,18 @@ def _faces(row: Mapping[str, Any], path: Path, parts: Parts) -> dict[str, Touchi
             found = {face: found.get(face, rest) for face in wetted}
     own = row.get("faces", {})
     if not isinstance(own, Mapping):
-        parts.wrong((*path, "faces"), own, "faces is a table: face = what touches it", f"faces: {', '.join(wetted)}")
+        parts.wrong(
+            (*path, "faces"), own, "faces is a table: face = what touches it", f"faces: {', '.join(wetted)}"
+        )
         return found
     for face, given in own.items():
         if face not in wetted:
-            parts.wrong((*path, "faces", face), None, f"unknown face{nearest(face, wetted)}", f"faces: {', '.join(wetted)}")
+            parts.wrong(
+                (*path, "faces", face),
+                None,
+                f"unknown face{nearest(face, wetted)}",
+                f"faces: {', '.join(wetted)}",
+            )
             continue
         preset = _preset(given, (*path, "faces", face), parts)
         if preset is not None:
@@ -183,10 +202,17 @@ def _preset(given: Any, path: Path, parts: Parts) -> Touching | None:
             given = {"what": "immersed", "liquid": given}
         else:
             names = [*known, *parts.catalogue.names()]
-            parts.wrong(path, given, f"neither a contact nor a material{nearest(given, names)}", f"contacts: {', '.join(known)}")
+            parts.wrong(
+                path,
+                given,
+                f"neither a contact nor a material{nearest(given, names)}",
+                f"contacts: {', '.join(known)}",
+            )
             return None
     if not isinstance(given, Mapping):
-        parts.wrong(path, given, "what touches is a name or a table", 'write "dry", "water" or { what = "droplets" }')
+        parts.wrong(
+            path, given, "what touches is a name or a table", 'write "dry", "water" or { what = "droplets" }'
+        )
         return None
     what = given.get("what", "patches" if "patches" in given else None)
     if what not in known:
@@ -228,7 +254,9 @@ def _changes(given: Any, path: Path, parts: Parts) -> dict[Path, float]:
         leaf = parts.leaves.get(dotted)
         if leaf is None or leaf.structural:
             names = [".".join(key) for key, one in parts.leaves.items() if not one.structural]
-            parts.wrong((*path, *dotted), None, f"not a number of this design{nearest('.'.join(dotted), names)}", "")
+            parts.wrong(
+                (*path, *dotted), None, f"not a number of this design{nearest('.'.join(dotted), names)}", ""
+            )
             continue
         try:
             found[dotted] = parse_leaf(leaf, value)
@@ -267,7 +295,7 @@ def _requirement(
         return None
     limits = {key: row[key] for key in ("at_least", "at_most") if key in row}
     if len(limits) != 1:
-        parts.wrong(path, None, "a requirement needs one limit", 'write at_least = ... or at_most = ...')
+        parts.wrong(path, None, "a requirement needs one limit", "write at_least = ... or at_most = ...")
         return None
     ((key, text),) = limits.items()
     try:
@@ -278,7 +306,12 @@ def _requirement(
     state = row.get("state", "")
     names = [name for state in states for name in (state.name, state.family)]
     if state and state not in names:
-        parts.wrong((*path, "state"), state, f"no such state{nearest(str(state), names)}", f"states: {', '.join(dict.fromkeys(names))}")
+        parts.wrong(
+            (*path, "state"),
+            state,
+            f"no such state{nearest(str(state), names)}",
+            f"states: {', '.join(dict.fromkeys(names))}",
+        )
     over = row.get("over", "nominal")
     if over not in ("nominal", "corners", "yield"):
         parts.wrong((*path, "over"), over, "unknown scope", 'one of: "nominal", "corners", "yield"')

@@ -11,7 +11,11 @@ class Environment(Section):
     """Where the sensor works."""
 
     temperature: float = quantity(
-        "20 degC", "temperature", ge="2 K", le="800 K", describe="temperature of the sensor and of what touches it",
+        "20 degC",
+        "temperature",
+        ge="2 K",
+        le="800 K",
+        describe="temperature of the sensor and of what touches it",
         deciding=True,
     )
     ambient: str = choice(
@@ -39,7 +43,13 @@ class Emitter(Section):
     """The lamp: one LED or a row of equal ones."""
 
     wavelength: float = quantity(
-        "850 nm", "length", ge="350 nm", le="1100 nm", unit="nm", describe="peak wavelength in vacuum", deciding=True
+        "850 nm",
+        "length",
+        ge="350 nm",
+        le="1100 nm",
+        unit="nm",
+        describe="peak wavelength in vacuum",
+        deciding=True,
     )
     linewidth: float = quantity(
         "40 nm",
@@ -51,7 +61,12 @@ class Emitter(Section):
         reference="typical of infrared LEDs, common practice, no source",
     )
     power: float = quantity(
-        "10 mW", "power", ge="0 W", le="100 W", describe="optical power sent out, all emitters together", deciding=True,
+        "10 mW",
+        "power",
+        ge="0 W",
+        le="100 W",
+        describe="optical power sent out, all emitters together",
+        deciding=True,
         slider="log",
     )
     half_angle: float = quantity(
@@ -70,4 +85,6 @@ class Emitter(Section):
         ["none", "s", "p"],
         describe="s: field across the plane of incidence of the sensor's cross-section; p: in it",
     )
-    kind: str = choice("led", ["led", "laser"], describe="a laser falls under other safety rules and is not screened here")
+    kind: str = choice(
+        "led", ["led", "laser"], describe="a laser falls under other safety rules and is not screened here"
+    )

@@ -10,8 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.contact.cover import Cover
-from outcouple.fields import Overlay, Section, quantity
-from outcouple.geometry import Geometry
+from outcouple.fields import Section, quantity
 from outcouple.touching import Touching
 
 __all__ = ["ObjectPlace", "Requirement", "State"]
@@ -22,9 +21,15 @@ Floats = NDArray[np.float64]
 class ObjectPlace(Section):
     """An object of limited size on the touched face."""
 
-    diameter: float = quantity("9 mm", "length", ge="0.1 mm", le="500 mm", describe="diameter of the object's footprint")
-    x: float | None = quantity(None, "length", optional=True, ge="-5 m", le="5 m", describe="x of its centre; the middle")
-    y: float | None = quantity(None, "length", optional=True, ge="-5 m", le="5 m", describe="y of its centre; the middle")
+    diameter: float = quantity(
+        "9 mm", "length", ge="0.1 mm", le="500 mm", describe="diameter of the object's footprint"
+    )
+    x: float | None = quantity(
+        None, "length", optional=True, ge="-5 m", le="5 m", describe="x of its centre; the middle"
+    )
+    y: float | None = quantity(
+        None, "length", optional=True, ge="-5 m", le="5 m", describe="y of its centre; the middle"
+    )
 
 
 @dataclass(frozen=True)
@@ -55,7 +60,7 @@ class State:
         """What the light of this state depends on beyond the design."""
         return tuple(sorted(self.changes.items()))
 
-    def covers(self, p: Overlay, geometry: Geometry) -> Mapping[str, Cover]:
+    def covers(self, p: Any) -> Mapping[str, Cover]:
         """Face -> cover under parameters ``p``; one preset gives one cover object for all its faces."""
         views = p.states[self.family].touching
         built: dict[int, Cover] = {}
@@ -67,7 +72,7 @@ class State:
             found[face] = built[id(preset)]
         return found
 
-    def place(self, p: Overlay, samples: int) -> Mapping[str, Floats]:
+    def place(self, p: Any, samples: int) -> Mapping[str, Floats]:
         """Diameter and place of the object, each (S,); the middle of the face is x = y = 0."""
         view = p.states[self.family].object
         values = {"diameter": view.diameter, "x": view.x, "y": view.y}
@@ -104,7 +109,9 @@ class Requirement:
 
     def met(self, value: Any) -> Any:
         """True where a value keeps the limit; nan never does."""
-        return np.asarray(value) >= self.limit if self.at_least is not None else np.asarray(value) <= self.limit
+        return (
+            np.asarray(value) >= self.limit if self.at_least is not None else np.asarray(value) <= self.limit
+        )
 
     def margin(self, value: Any) -> Any:
         """Distance to the limit in the metric's own unit, positive where it is met."""

@@ -53,7 +53,9 @@ def ledger_of(laid: LaidState, channel: int = 0, sample: int = 0) -> Ledger:
     if stray:
         returned["reaches the detector beside the faces"] = stray
     received = float(np.sum(laid.weights * _channel(laid.share[_clip(sample, laid.share.shape[0])], channel)))
-    return Ledger({k: v for k, v in losses.items() if v != 0.0}, {k: v for k, v in returned.items() if v}, received)
+    return Ledger(
+        {k: v for k, v in losses.items() if v != 0.0}, {k: v for k, v in returned.items() if v}, received
+    )
 
 
 def _clip(at: int, size: int) -> int:
@@ -92,7 +94,10 @@ def _way_losses(laid: LaidState, way: Way, channel: int, sample: int) -> Iterato
             for store in (survival.drawn, survival.entered, survival.turned)
         )
         if column == through:
-            yield "reflected before the last face", _total(laid, _rays(survival.after, sample, channel), sample)
+            yield (
+                "reflected before the last face",
+                _total(laid, _rays(survival.after, sample, channel), sample),
+            )
             entered_rays = _rays(survival.entered[column], sample, channel)
             yield from _past(laid, entered_rays, channel, sample)
             entered = 0.0
@@ -100,8 +105,17 @@ def _way_losses(laid: LaidState, way: Way, channel: int, sample: int) -> Iterato
         for label, share in (
             (f"enters what touches the {face} face", entered),
             (f"turned away by drops on the {face} face", turned),
-            (f"absorbed in films on the {face} face", drawn - entered - turned - (_total(
-                laid, _rays(survival.entered[column], sample, channel), sample) if column == through else 0.0)),
+            (
+                f"absorbed in films on the {face} face",
+                drawn
+                - entered
+                - turned
+                - (
+                    _total(laid, _rays(survival.entered[column], sample, channel), sample)
+                    if column == through
+                    else 0.0
+                ),
+            ),
         ):
             found[label] = found.get(label, 0.0) + share
     for found in faces.values():

@@ -30,11 +30,15 @@ def _worst(values: Mapping[str, Floats], samples: int, *, highest: bool) -> Metr
 
 
 def _faintest(row: StateRow, values: Floats) -> Floats:
-    return np.asarray(np.min(np.broadcast_to(values, np.broadcast_shapes(values.shape, row.reading.mean.shape)), axis=1))
+    return np.asarray(
+        np.min(np.broadcast_to(values, np.broadcast_shapes(values.shape, row.reading.mean.shape)), axis=1)
+    )
 
 
 def _loudest(row: StateRow, values: Floats) -> Floats:
-    return np.asarray(np.max(np.broadcast_to(values, np.broadcast_shapes(values.shape, row.reading.mean.shape)), axis=1))
+    return np.asarray(
+        np.max(np.broadcast_to(values, np.broadcast_shapes(values.shape, row.reading.mean.shape)), axis=1)
+    )
 
 
 def _per_state(table: Table, of: Callable[[StateRow], Floats], *, highest: bool) -> MetricValue:
@@ -61,12 +65,18 @@ def _optical_share(table: Table) -> Found:
 def _worst_ratio(table: Table) -> Found:
     if table.design.geometry.reading != "level":
         return Missing("this sensor reads changes, not levels; see its touch metrics")
-    absent = {row.laid.state.name: row.reading.mean for row in table.binary if row.laid.state.expect == "absent"}
-    present = {row.laid.state.name: row.reading.mean for row in table.binary if row.laid.state.expect == "present"}
+    absent = {
+        row.laid.state.name: row.reading.mean for row in table.binary if row.laid.state.expect == "absent"
+    }
+    present = {
+        row.laid.state.name: row.reading.mean for row in table.binary if row.laid.state.expect == "present"
+    }
     if not absent or not present:
         return NOT_BINARY
     bright, dark = (absent, present) if table.design.geometry.present_reads == "low" else (present, absent)
-    least = _worst({name: np.min(mean, axis=1) for name, mean in bright.items()}, table.samples, highest=False)
+    least = _worst(
+        {name: np.min(mean, axis=1) for name, mean in bright.items()}, table.samples, highest=False
+    )
     most = _worst({name: np.max(mean, axis=1) for name, mean in dark.items()}, table.samples, highest=True)
     with np.errstate(divide="ignore", invalid="ignore"):
         ratio = np.where(most.values > 0, least.values / most.values, np.inf)
@@ -78,7 +88,9 @@ def _margin_sigma(table: Table) -> Found:
 
 
 def _margin_span(table: Table) -> Found:
-    return NOT_BINARY if table.decided is None else _worst(table.decided.of_span, table.samples, highest=False)
+    return (
+        NOT_BINARY if table.decided is None else _worst(table.decided.of_span, table.samples, highest=False)
+    )
 
 
 def _false_alarms(table: Table) -> Found:
@@ -101,7 +113,10 @@ def _headroom(table: Table) -> Found:
 
 
 def _ambient_ratio(table: Table) -> Found:
-    loudest = np.max(np.stack([np.broadcast_to(_loudest(row, row.reading.mean), (table.samples,)) for row in table.rows]), axis=0)
+    loudest = np.max(
+        np.stack([np.broadcast_to(_loudest(row, row.reading.mean), (table.samples,)) for row in table.rows]),
+        axis=0,
+    )
 
     def of(row: StateRow) -> Floats:
         with np.errstate(divide="ignore", invalid="ignore"):
@@ -111,7 +126,9 @@ def _ambient_ratio(table: Table) -> Found:
 
 
 def _noise_equivalent_power(table: Table) -> Found:
-    noise = _per_state(table, lambda row: _loudest(row, row.reading.noise / row.reading.per_watt), highest=False)
+    noise = _per_state(
+        table, lambda row: _loudest(row, row.reading.noise / row.reading.per_watt), highest=False
+    )
     return MetricValue(noise.values, noise.at)
 
 
@@ -146,7 +163,9 @@ def _slope(table: Table, curve: ContinuousCurve) -> Found:
 
 def _best_at(curve: ContinuousCurve) -> NDArray[np.int64]:
     with np.errstate(divide="ignore"):
-        return np.asarray(np.argmin(np.where(curve.slope != 0, curve.noise / np.abs(curve.slope), np.inf), axis=1))
+        return np.asarray(
+            np.argmin(np.where(curve.slope != 0, curve.noise / np.abs(curve.slope), np.inf), axis=1)
+        )
 
 
 def _best_bias(table: Table, curve: ContinuousCurve) -> Found:

@@ -13,13 +13,13 @@ from outcouple.contact.media import Media
 from outcouple.contact.response import Answer, answer, answer_notes
 from outcouple.design import Design, State
 from outcouple.evaluate.transport import Survival, received, survive
-from outcouple.fields import Overlay
+from outcouple.evaluate.overlay import View
 from outcouple.geometry import Setting
 from outcouple.light import Light
 from outcouple.notes import Note, merge_notes
 from outcouple.optics import spectrum_nodes
 
-__all__ = ["LaidState", "Way", "lay_state", "spectrum_of"]
+__all__ = ["LaidState", "Way", "lay_state", "setting_of", "trial_share"]
 
 Floats = NDArray[np.float64]
 
@@ -51,59 +51,100 @@ class LaidState:
     ways: tuple[Way, ...]
     notes: tuple[Note, ...] = field(default=())
 
+    @property
+    def p(self) -> View:
+        """The design's parameters as this state sees them."""
+        view: View = self.setting.p
+        return view
 
-def spectrum_of(p: Overlay, nodes: int) -> tuple[Floats, Floats]:
+    @property
+    def wavelengths(self) -> Floats:
+        """Of the emitter's line, (S, L)."""
+        return self.media.wavelengths
+
+    @property
+    def etendue(self) -> Floats:
+        """With which each channel sees the outside, (S, C)."""
+        return self.light.ambient
+
+
+def spectrum_of(p: View, nodes: int) -> tuple[Floats, Floats]:
     """Wavelengths (S, L) and weights (L,) of the emitter's line at its own wavelength and width."""
     wavelengths, weights = spectrum_nodes(p.emitter.wavelength, p.emitter.linewidth, nodes)
     return np.asarray(wavelengths), np.asarray(weights)
 
 
+def setting_of(
+    design: Design,
+    p: View,
+    *,
+    samples: int,
+    nodes: int,
+    breaks_of: Sequence[str],
+    extra: Mapping[str, Floats] | None = None,
+) -> tuple[Setting, Media, Floats]:
+    """What a geometry is given, the media behind it, and the weights (L,) of the emitter's line."""
+    wavelengths, weights = spectrum_of(p, nodes)
+    media = Media(
+        design.catalogue,
+        wavelengths=np.broadcast_to(wavelengths, (samples, nodes)),
+        temperature=np.broadcast_to(p.environment.temperature, (samples,)),
+        linewidth=np.broadcast_to(p.emitter.linewidth, (samples,)),
+        extra=extra,
+    )
+    breaks = tuple(media.centre(name) for name in breaks_of)
+    return Setting(p=p, samples=samples, index=media.centre, breaks=breaks), media, weights
+
+
 def lay_state(
     design: Design,
     state: State,
-    p: Overlay,
+    p: View,
     *,
     samples: int,
     nodes: int,
     breaks_of: Sequence[str],
     lights: dict[object, Light],
-    extra: Mapping[str, Floats] | None = None,
 ) -> LaidState:
     """Follow one state.
 
     p          the design's parameters as this state sees them
     breaks_of  materials whose critical angles the quadrature should respect
     lights     lights already laid out, by what they depend on; filled here
-    extra      trial media: index (S,) by name
     """
-    wavelengths, weights = spectrum_of(p, nodes)
-    temperature = np.broadcast_to(p.environment.temperature, (samples,))
-    media = Media(
-        design.catalogue,
-        wavelengths=np.broadcast_to(wavelengths, (samples, nodes)),
-        temperature=temperature,
-        linewidth=np.broadcast_to(p.emitter.linewidth, (samples,)),
-        extra=extra,
-    )
-    setting = Setting(
-        p=p, samples=samples, index=media.centre, breaks=tuple(media.centre(name) for name in breaks_of)
-    )
+    setting, media, weights = setting_of(design, p, samples=samples, nodes=nodes, breaks_of=breaks_of)
     light = lights.get(state.changes_key)
     if light is None:
         light = lights[state.changes_key] = design.geometry.light(setting)
-    covers = design.geometry.covers(setting, state.covers(p, design.geometry))
+    covers = design.geometry.covers(setting, state.covers(p))
     strips = None
     if light.spot is not None and state.object is not None:
         place = state.place(p, samples)
         strips = light.spot.lengths(place["diameter"], place["x"], place["y"])
-    ways = tuple(
-        _way(share, build, light, media, setting, strips) for share, build in _builds(covers, samples)
-    )
-    total = sum((way.share[:, None, None] * way.received for way in ways), np.zeros((1, 1, 1)))
+    ways = tuple(_way(share, build, light, media, strips) for share, build in _builds(covers, samples))
     notes = [note for cover in covers.values() for note in answer_notes(cover)]
     return LaidState(
-        state, setting, media, light, weights, np.asarray(total), ways, merge_notes([*notes, *media.notes])
+        state, setting, media, light, weights, _sum(ways), ways, merge_notes([*notes, *media.notes])
     )
+
+
+def trial_share(
+    design: Design, base: LaidState, covers: Mapping[str, Cover], extra: Mapping[str, Floats]
+) -> Floats:
+    """Optical share per wavelength node, (S, L, C), of the light of ``base`` answered by covers no state has.
+
+    extra  index (S,) by the name of a trial medium; S may exceed that of ``base`` where the latter is 1
+    """
+    samples = max([base.setting.samples, *(len(index) for index in extra.values())])
+    nodes = base.media.wavelengths.shape[1]
+    _, media, _ = setting_of(design, base.setting.p, samples=samples, nodes=nodes, breaks_of=(), extra=extra)
+    return _sum(
+        tuple(_way(share, build, base.light, media, None) for share, build in _builds(covers, samples))
+    )
+
+
+def _sum(ways: Sequence[Way]) -> Floats:
+    return np.asarray(sum((way.share[:, None, None] * way.received for way in ways), np.zeros((1, 1, 1))))
 
 
 def _builds(covers: Mapping[str, Cover], samples: int) -> Iterator[tuple[Floats, Mapping[str, Cover]]]:
@@ -128,7 +169,6 @@ def _way(
     covers: Mapping[str, Cover],
     light: Light,
     media: Media,
-    setting: Setting,
     strips: Floats | None,
 ) -> Way:
     acceptance = np.asarray(light.acceptance, dtype=float)
@@ -151,7 +191,5 @@ def _way(
     survival = survive(light, answers, strips)
     n_guide = media.index(light.guide)
     absorption = 4 * np.pi * n_guide.imag / media.wavelengths
-    got = received(
-        light, survival, absorption=absorption, diffuser=diffuser, guide=media.centre(light.guide)
-    )
-    return Way(np.broadcast_to(share, (setting.samples,)), covers, survival, diffuser, got)
+    got = received(light, survival, absorption=absorption, diffuser=diffuser, guide=media.centre(light.guide))
+    return Way(np.asarray(share), covers, survival, diffuser, got)

@@ -11,11 +11,11 @@ from numpy.typing import NDArray
 from outcouple.decision.decide import Decided, Score, decide
 from outcouple.design import Design, State
 from outcouple.evaluate.overlay import UNTOUCHED, Samples, View, samples_count, view_of
-from outcouple.evaluate.signals import LaidState, lay_state
-from outcouple.geometry import StateResult
+from outcouple.evaluate.signals import LaidState, lay_state, setting_of
+from outcouple.geometry import Setting, StateResult
 from outcouple.light import Light
 from outcouple.notes import Note, merge_notes
-from outcouple.readout.chain import Reading, read_state
+from outcouple.readout.chain import Reading, read
 from outcouple.touching.clear import Dry
 
 __all__ = ["StateRow", "Table", "tabulate"]
@@ -52,6 +52,13 @@ class Table:
     lights: dict[object, Light]
     media_breaks: tuple[str, ...]
     nodes: int
+    overlaid: Samples
+    setting: Setting
+
+    @property
+    def light(self) -> Light:
+        """The light of the design as it stands, no state's changes applied."""
+        return self.lights[()]
 
     def row(self, name: str) -> StateRow:
         """The row of that state."""
@@ -60,10 +67,16 @@ class Table:
     @property
     def binary(self) -> tuple[StateRow, ...]:
         """Rows of states that expect absent or present and are not faults."""
-        return tuple(row for row in self.rows if isinstance(row.laid.state.expect, str) and row.laid.state.role == "normal")
+        return tuple(
+            row
+            for row in self.rows
+            if isinstance(row.laid.state.expect, str) and row.laid.state.role == "normal"
+        )
 
 
-def tabulate(design: Design, samples: Samples | None = None, *, states: Sequence[State] | None = None) -> Table:
+def tabulate(
+    design: Design, samples: Samples | None = None, *, states: Sequence[State] | None = None
+) -> Table:
     """Follow every state of a design; ``samples`` lays arrays (S,) over numeric inputs (checked by the caller)."""
     samples = samples or {}
     count = samples_count(samples)
@@ -72,6 +85,8 @@ def tabulate(design: Design, samples: Samples | None = None, *, states: Sequence
     breaks, nodes = _media_of(design, chosen, base)
     lights: dict[object, Light] = {}
     views: dict[object, View] = {(): base}
+    setting = setting_of(design, base, samples=count, nodes=nodes, breaks_of=breaks)[0]
+    lights[()] = design.geometry.light(setting)
     laid = [_lay(design, state, samples, count, breaks, nodes, lights, views) for state in chosen]
     untouched_laid = _untouched(design, samples, count, breaks, nodes, lights, views)
     untouched = None if untouched_laid is None else _row(untouched_laid, None, design)
@@ -81,10 +96,17 @@ def tabulate(design: Design, samples: Samples | None = None, *, states: Sequence
     notes = merge_notes(
         [
             *(note for row in rows for note in (*row.laid.notes, *row.reading.notes)),
-            *(note for row in rows for preset in row.laid.state.touching.values() for note in type(preset).notes(preset)),
+            *(
+                note
+                for row in rows
+                for preset in row.laid.state.touching.values()
+                for note in type(preset).notes(preset)
+            ),
         ]
     )
-    return Table(design, base, count, rows, untouched, decided, notes, lights, breaks, nodes)
+    return Table(
+        design, base, count, rows, untouched, decided, notes, lights, breaks, nodes, samples, setting
+    )
 
 
 def _media_of(design: Design, states: Sequence[State], view: View) -> tuple[tuple[str, ...], int]:
@@ -92,7 +114,7 @@ def _media_of(design: Design, states: Sequence[State], view: View) -> tuple[tupl
     media: dict[str, None] = {"air": None}
     films = bool(design.geometry.measurand)
     for state in states:
-        for cover in state.covers(view, design.geometry).values():
+        for cover in state.covers(view).values():
             media.update(dict.fromkeys(cover.media()))
             films = films or any(patch.films for patch in cover.patches)
     return tuple(media), FRINGE_NODES if films else SMOOTH_NODES
@@ -139,7 +161,7 @@ def _untouched(
 
 
 def _row(laid: LaidState, untouched: StateRow | None, design: Design) -> StateRow:
-    reading = read_state(design.geometry.readout, laid)
+    reading = read(design.geometry.readout, laid, laid.share)
     result = StateResult(
         name=laid.state.name,
         expect=laid.state.expect,
@@ -149,6 +171,7 @@ def _row(laid: LaidState, untouched: StateRow | None, design: Design) -> StateRo
         signal=reading.mean,
         noise=reading.noise,
         unit=reading.unit,
+        covers=laid.ways[0].covers,
     )
     return StateRow(laid, reading, result, _score(laid, reading, untouched, design))
 
@@ -176,4 +199,3 @@ def _given_level(design: Design, view: View, rows: Sequence[StateRow]) -> Floats
         if row.laid.state.expect == "absent" and row.laid.state.role == "normal":
             return sign * share[:, None] * row.reading.mean
     return None
-

@@ -179,7 +179,9 @@ def received(
     else:
         signal = np.zeros((1, 1, 1))
     for column in {relight.column for relight in light.relight}:
-        signal = signal + relit(light, survival, column, absorption=absorption, diffuser=diffuser, guide=guide)
+        signal = signal + relit(
+            light, survival, column, absorption=absorption, diffuser=diffuser, guide=guide
+        )
     return np.asarray(signal + light.stray[:, None, :])
 
 

@@ -138,10 +138,14 @@ class Light:
                 raise LightError(f"{name} holds a value that is not finite")
         total = np.sum(np.broadcast_to(self.launch, (self.launch.shape[0], rays)), axis=-1)
         if np.any(self.launch < 0) or np.any(total > 1 + 1e-9):
-            raise LightError(f"launch must be at least 0 and sum to 1 at most; the sum is {float(np.max(total))}")
+            raise LightError(
+                f"launch must be at least 0 and sum to 1 at most; the sum is {float(np.max(total))}"
+            )
         if np.any(self.reach < -1e-12) or np.any(self.reach > 1 + 1e-9):
             raise LightError("reach must lie between 0 and 1")
         if np.any((self.angle < 0) | (self.angle > np.pi / 2)):
             raise LightError("angle must lie between 0 and 90 degrees")
         if self.turns and np.any(~np.isin(self.hits, (0.0, 1.0))):
-            raise LightError("powers (hits other than 0 and 1) are legal only where no plane of incidence turns")
+            raise LightError(
+                "powers (hits other than 0 and 1) are legal only where no plane of incidence turns"
+            )

@@ -42,7 +42,9 @@ class ResidualFilm(Touching):
     """A flat film left behind."""
 
     what: ClassVar[str] = "film"
-    summary: ClassVar[str] = "a flat film left behind, a gas outside; does not switch a totally reflecting face"
+    summary: ClassVar[str] = (
+        "a flat film left behind, a gas outside; does not switch a totally reflecting face"
+    )
 
     liquid: str = name("water", describe="material of the film", what="material")
     thickness: float = quantity(
@@ -77,7 +79,9 @@ class Droplets(Touching):
     contact_angle: float = quantity(
         "60 deg", "angle", ge="0 deg", le="120 deg", describe="contact angle of the drops", deciding=True
     )
-    coarse: bool = flag(False, describe="true: drops are as large as the beam, a way is wholly under them or not")
+    coarse: bool = flag(
+        False, describe="true: drops are as large as the beam, a way is wholly under them or not"
+    )
     gas: str = name("air", describe="gas between the drops", what="material")
 
     @classmethod
@@ -102,7 +106,11 @@ class WrittenPatch(Section):
     films: tuple[WrittenFilm, ...] = ()
     backing: str = name("air", describe="medium behind the films", what="material")
     albedo: float = quantity(
-        "0 %", "ratio", ge="0 %", le="100 %", describe="share of the light entering the backing that comes back diffusely"
+        "0 %",
+        "ratio",
+        ge="0 %",
+        le="100 %",
+        describe="share of the light entering the backing that comes back diffusely",
     )
     drops: bool = flag(False, describe="true: the backing sits as drops on the face")
     contact_angle: float = quantity("60 deg", "angle", ge="0 deg", le="120 deg", describe="of the drops")

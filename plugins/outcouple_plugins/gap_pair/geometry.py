@@ -47,8 +47,22 @@ class GapPair(Geometry):
     measurand: ClassVar[tuple[str, ...]] = ("gap", "distance")
     jobs: ClassVar[tuple[str, ...]] = ("displacement", "force")
     metrics: ClassVar[tuple[Metric, ...]] = (
-        Metric("gap_at_half", "gap of half transmission", "length", "nm", "none", "width at which half of the light crosses"),
-        Metric("force_resolution", "force resolution", "force", "mN", "lower", "stiffness times the resolution of the gap"),
+        Metric(
+            "gap_at_half",
+            "gap of half transmission",
+            "length",
+            "nm",
+            "none",
+            "width at which half of the light crosses",
+        ),
+        Metric(
+            "force_resolution",
+            "force resolution",
+            "force",
+            "mN",
+            "lower",
+            "stiffness times the resolution of the gap",
+        ),
         Metric(
             "thermal_error",
             "thermal error",
@@ -58,7 +72,12 @@ class GapPair(Geometry):
             "change of the gap over the allowed drift of temperature, read as displacement",
         ),
         Metric(
-            "tilt_spread", "spread by tilt", "length", "nm", "lower", "half of the difference of the gap across the beam"
+            "tilt_spread",
+            "spread by tilt",
+            "length",
+            "nm",
+            "lower",
+            "half of the difference of the gap across the beam",
         ),
         Metric(
             "error_over_resolution",
@@ -105,7 +124,9 @@ class GapPair(Geometry):
         gap = setting.p.gap
         wedge = gap.tilt * gap.beam
         spread = setting.spread(np.sqrt(gap.roughness**2 + wedge**2 / 12))
-        film = Film(gap.medium, setting.spread(gap.distance), "normal" if np.any(spread > 0) else "none", spread)
+        film = Film(
+            gap.medium, setting.spread(gap.distance), "normal" if np.any(spread > 0) else "none", spread
+        )
         return {"gap": Cover((Patch(1.0, setting.p.pair.second_material, (film,)),))}
 
     def measure(self, names: Sequence[str], results: Results) -> Mapping[str, MetricValue | Missing]:
@@ -114,7 +135,9 @@ class GapPair(Geometry):
 
     def response(self, setting: Setting) -> ResponseAxis:
         """Signal against the gap."""
-        return ResponseAxis("gap", "length", "nm", 0.0, float(setting.p.emitter.wavelength[0]), "parameter", self.measurand)
+        return ResponseAxis(
+            "gap", "length", "nm", 0.0, float(setting.p.emitter.wavelength[0]), "parameter", self.measurand
+        )
 
     def notes(self, setting: Setting) -> tuple[Note, ...]:
         """Cautions on fringes below the critical angle and on the gap's blur."""
@@ -155,7 +178,9 @@ def _beam(setting: Setting, n_guide: Floats, bonded: bool) -> tuple[Vector, Floa
     n_in = 1.0 if bonded else n_guide[:, None, None]
     x, y = np.sin(polar) * np.cos(azimuth) / n_in, np.sin(polar) * np.sin(azimuth) / n_in
     z = np.sqrt(1 - x**2 - y**2)
-    flat = [np.broadcast_to(array, weight.shape).reshape(setting.samples, -1) for array in (x, y, z, cos, weight)]
+    flat = [
+        np.broadcast_to(array, weight.shape).reshape(setting.samples, -1) for array in (x, y, z, cos, weight)
+    ]
     return Vector(*flat[:3]), flat[3], flat[4]
 
 
@@ -227,10 +252,17 @@ def _view(setting: Setting) -> View:
         back = foot + step * [1, -1]
         over = np.array([at * half, gap])
         rays.append(RayPath(np.array([foot - step, foot, back]), (-1, 0, -1), (0.0, incidence, 0.0)))
-        rays.append(RayPath(np.array([foot - step, foot, over, over + step]), (-1, -2, -1, -1), (0.0, incidence, 0.0, 0.0)))
+        rays.append(
+            RayPath(
+                np.array([foot - step, foot, over, over + step]), (-1, -2, -1, -1), (0.0, incidence, 0.0, 0.0)
+            )
+        )
     return View(
         "cross-section",
-        (Outline("guide", "first prism", below), Outline("guide", "second prism (gap drawn 1000 times wider)", above)),
+        (
+            Outline("guide", "first prism", below),
+            Outline("guide", "second prism (gap drawn 1000 times wider)", above),
+        ),
         tuple(rays),
     )
 

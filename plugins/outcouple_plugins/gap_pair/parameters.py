@@ -10,7 +10,9 @@ __all__ = ["Gap", "Pair", "Parameters"]
 class Pair(Section):
     """The two prisms."""
 
-    material: str = name("crown glass", describe="material of the first prism", what="material", deciding=True)
+    material: str = name(
+        "crown glass", describe="material of the first prism", what="material", deciding=True
+    )
     second_material: str = name("crown glass", describe="material of the second prism", what="material")
     incidence: float = quantity(
         "45 deg",
@@ -21,7 +23,9 @@ class Pair(Section):
         deciding=True,
     )
     coupling: str = choice(
-        "air", ["air", "bonded"], describe="air: the beam enters and leaves through flat faces at right angles to its axis"
+        "air",
+        ["air", "bonded"],
+        describe="air: the beam enters and leaves through flat faces at right angles to its axis",
     )
 
 
@@ -39,12 +43,26 @@ class Gap(Section):
     )
     medium: str = name("air", describe="medium in the gap", what="material")
     roughness: float = quantity(
-        "0 nm", "length", ge="0 nm", le="10 um", unit="nm", describe="standard deviation of the width over the beam"
+        "0 nm",
+        "length",
+        ge="0 nm",
+        le="10 um",
+        unit="nm",
+        describe="standard deviation of the width over the beam",
     )
-    tilt: float = quantity("0 urad", "angle", ge="0 rad", le="1 deg", unit="urad", describe="wedge between the faces")
-    beam: float = quantity("5 mm", "length", gt="0 mm", le="100 mm", describe="width of the beam along the wedge")
+    tilt: float = quantity(
+        "0 urad", "angle", ge="0 rad", le="1 deg", unit="urad", describe="wedge between the faces"
+    )
+    beam: float = quantity(
+        "5 mm", "length", gt="0 mm", le="100 mm", describe="width of the beam along the wedge"
+    )
     stiffness: float = quantity(
-        "2 N/um", "stiffness", gt="0 N/m", le="1e9 N/m", unit="N/um", describe="of the flexure that closes the gap"
+        "2 N/um",
+        "stiffness",
+        gt="0 N/m",
+        le="1e9 N/m",
+        unit="N/um",
+        describe="of the flexure that closes the gap",
     )
     thermal_drift: float = quantity(
         "12 nm/K",

@@ -67,7 +67,9 @@ def lobe_directions(
     local = (low + width * place).reshape(*v.shape, -1)
     weight = (width * slope).reshape(*v.shape, -1) * wv[..., None] * 2
     density = lobe_density(
-        radius[..., None] * np.cos(local), half_angle=half_angle[:, None, None], exponent=exponent[:, None, None]
+        radius[..., None] * np.cos(local),
+        half_angle=half_angle[:, None, None],
+        exponent=exponent[:, None, None],
     )
     share = weight * density
     share = share / np.sum(share, axis=(1, 2), keepdims=True)

@@ -208,7 +208,7 @@ def _relights(setting: Setting, rays: int) -> tuple[Relight, ...]:
                 column=column,
                 feed=np.ones((1, 1, rays)),
                 share=(np.minimum(share, 1.0) * exit_share)[:, None],
-                sine=np.sqrt(1 - inward**2)[:, None],
+                sine=np.sqrt(np.clip(1 - inward**2, 0, 1))[:, None],
                 length=np.broadcast_to(distance[:, None, None], (setting.samples, 1, 1)),
             )
         )

@@ -12,7 +12,12 @@ class Prism(Section):
 
     material: str = name("polycarbonate", describe="material of the prism", what="material", deciding=True)
     base: float = quantity(
-        "8 mm", "length", ge="1 mm", le="60 mm", describe="width of the base, across the two faces", deciding=True
+        "8 mm",
+        "length",
+        ge="1 mm",
+        le="60 mm",
+        describe="width of the base, across the two faces",
+        deciding=True,
     )
     face_angle: float = quantity(
         "45 deg",
@@ -23,7 +28,11 @@ class Prism(Section):
         "180 deg minus three times it, equal only at 45 deg (an apex of 90 deg)",
     )
     stem: float = quantity(
-        "0 mm", "length", ge="0 mm", le="200 mm", describe="straight length between the base plane and the faces"
+        "0 mm",
+        "length",
+        ge="0 mm",
+        le="200 mm",
+        describe="straight length between the base plane and the faces",
     )
     crosstalk: float = quantity(
         "2 %",
@@ -41,9 +50,15 @@ class Layout(Section):
     """Emitter and detector, discs on the base plane; x runs across the faces from the middle of the base."""
 
     emitter_position: float = quantity(
-        "-2 mm", "length", ge="-30 mm", le="30 mm", describe="x of the emitter's centre; the emitter face is at negative x"
+        "-2 mm",
+        "length",
+        ge="-30 mm",
+        le="30 mm",
+        describe="x of the emitter's centre; the emitter face is at negative x",
     )
-    emitter_radius: float = quantity("0.5 mm", "length", ge="10 um", le="20 mm", describe="radius of the emitting disc")
+    emitter_radius: float = quantity(
+        "0.5 mm", "length", ge="10 um", le="20 mm", describe="radius of the emitting disc"
+    )
     emitter_tilt: float = quantity(
         "0 deg",
         "angle",
@@ -54,7 +69,9 @@ class Layout(Section):
     detector_position: float = quantity(
         "2 mm", "length", ge="-30 mm", le="30 mm", describe="x of the detector's centre"
     )
-    detector_radius: float = quantity("1 mm", "length", ge="10 um", le="20 mm", describe="radius of the detector")
+    detector_radius: float = quantity(
+        "1 mm", "length", ge="10 um", le="20 mm", describe="radius of the detector"
+    )
     detector_half_angle: float = quantity(
         "60 deg",
         "angle",

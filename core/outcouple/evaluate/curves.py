@@ -1,0 +1,108 @@
+"""Curves: a continuous sensor's reading against its measurand, and every sensor's main response."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+import numpy as np
+from numpy.typing import NDArray
+
+from outcouple.contact.cover import immersed
+from outcouple.design import State
+from outcouple.evaluate.overlay import view_of
+from outcouple.evaluate.signals import LaidState, lay_state, trial_share
+from outcouple.evaluate.table import Table
+from outcouple.geometry import ContinuousCurve, Curve, ResponseAxis
+from outcouple.readout.chain import Reading, read
+
+__all__ = ["continuous_curve", "response_curve"]
+
+Floats = NDArray[np.float64]
+
+POINTS = 121
+TRIAL = "(trial liquid)"
+
+
+def continuous_curve(table: Table) -> ContinuousCurve | None:
+    """Reading over the span of the states' numbers; None where no state carries one."""
+    rows = [row for row in table.rows if isinstance(row.laid.state.expect, float)]
+    if not rows:
+        return None
+    numbers = np.array(sorted(float(row.laid.state.expect) for row in rows))
+    low, high = numbers[0], numbers[-1]
+    margin = 0.1 * (high - low) if high > low else 0.1 * abs(low)
+    grid = np.unique(np.concatenate([np.linspace(max(low - margin, 0.0), high + margin, POINTS), numbers]))
+    laid, reading = _along(table, rows[0].laid.state, table.design.geometry.measurand, grid)
+    shape = (table.samples, len(grid))
+    signal, noise = (
+        np.broadcast_to(np.min(array, axis=1), (table.samples * len(grid),)).reshape(shape)
+        for array in (reading.mean, reading.noise)
+    )
+    share = np.min(np.sum(laid.weights[:, None] * laid.share, axis=1), axis=1)
+    share = np.broadcast_to(share, (table.samples * len(grid),)).reshape(shape)
+    return ContinuousCurve(grid, share, signal, noise, np.gradient(signal, grid, axis=1, edge_order=2))
+
+
+def _along(table: Table, state: State, path: tuple[str, ...], grid: Floats) -> tuple[LaidState, Reading]:
+    """One state with a parameter running over a grid, for every sample: samples outermost."""
+    free = replace(state, changes={key: value for key, value in state.changes.items() if key != path})
+    samples = {key: np.repeat(values, len(grid)) for key, values in table.overlaid.items()}
+    samples[path] = np.tile(grid, table.samples)
+    view = view_of(table.design, samples, free.changes)
+    laid = lay_state(
+        table.design,
+        free,
+        view,
+        samples=table.samples * len(grid),
+        nodes=table.nodes,
+        breaks_of=table.media_breaks,
+        lights={},
+    )
+    return laid, read(table.design.geometry.readout, laid, laid.share)
+
+
+def response_curve(table: Table, axis: ResponseAxis) -> Curve:
+    """The main response of a nominal design (samples = 1), with its states marked."""
+    spaced = np.geomspace if axis.logarithmic else np.linspace
+    grid = np.asarray(spaced(axis.start, axis.stop, POINTS))
+    base = table.rows[0].laid
+    if axis.medium == "immersed":
+        covers = {face: immersed(TRIAL) for face in set(base.light.faces)}
+        share = trial_share(table.design, base, covers, {TRIAL: grid})
+        reading = read(table.design.geometry.readout, base, share)
+        marks = _index_marks(table)
+    else:
+        _, reading = _along(table, base.state, axis.path, grid)
+        marks = tuple(
+            (row.laid.state.name, float(row.laid.state.expect), float(np.min(row.reading.mean[0])))
+            for row in table.rows
+            if isinstance(row.laid.state.expect, float)
+        )
+    values = np.broadcast_to(np.min(reading.mean, axis=1), grid.shape)
+    return Curve(
+        name="response",
+        label=f"reading against {axis.label}",
+        axes=((axis.label, axis.unit, grid),),
+        values=np.array(values),
+        kind="current" if reading.unit == "A" else "electrons",
+        unit=reading.unit,
+        marks=marks,
+    )
+
+
+def _index_marks(table: Table) -> tuple[tuple[str, float, float], ...]:
+    """States whose faces carry one clear medium all over, at its index."""
+    found = []
+    for row in table.rows:
+        media = {
+            patch.backing
+            for way in row.laid.ways
+            for cover in way.covers.values()
+            for patch in cover.patches
+            if not patch.films and isinstance(patch.backing, str) and not np.any(patch.albedo)
+        }
+        whole = all(len(cover.patches) == 1 for way in row.laid.ways for cover in way.covers.values())
+        if whole and len(media) == 1:
+            index = float(row.laid.media.centre(str(media.pop()))[0])
+            found.append((row.laid.state.name, index, float(np.min(row.reading.mean[0]))))
+    return tuple(found)

@@ -1,0 +1,121 @@
+"""What a colleague would say first: the verdict as a consequence, the state that decides it, and what limits."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+
+import numpy as np
+
+from outcouple.design import Design
+from outcouple.evaluate.failures import consequence
+from outcouple.evaluate.ledger import ledger_of
+from outcouple.evaluate.table import StateRow, Table
+from outcouple.geometry import MetricValue, Missing
+from outcouple.outcome import Judged, Verdict
+from outcouple.quantities import format_quantity
+
+__all__ = ["headline_of", "limiting_of", "worst_state_of"]
+
+
+def worst_state_of(table: Table, judged: Sequence[Judged]) -> str:
+    """The state that decides: of the requirement missed by most, else the one with the least margin, else the first."""
+    names = {row.laid.state.name for row in table.rows}
+    missed = [one for one in judged if one.verdict == "fail" and one.shortfall is not None]
+    for one in sorted(missed, key=lambda found: -float(found.shortfall or 0)):
+        for part in reversed(one.at.split(" : ")):
+            if part in names:
+                return part
+    if table.decided is not None:
+        return table.decided.worst()
+    return table.rows[0].laid.state.name
+
+
+def limiting_of(table: Table, state: str) -> str:
+    """What keeps the deciding state from doing better, in a few words."""
+    row = table.row(state)
+    floor = _floor(table, row)
+    if floor:
+        return floor
+    total = row.reading.variance[0]
+    at = int(np.argmax(total))
+    shares = {
+        cause: float(np.broadcast_to(variance, row.reading.variance.shape)[0, at] / total[at])
+        for cause, variance in row.reading.variances.items()
+        if total[at] > 0
+    }
+    if not shares:
+        return ""
+    cause = max(shares, key=lambda name: shares[name])
+    return f"limited by {cause}, {shares[cause]:.0%} of the noise power"
+
+
+def _floor(table: Table, row: StateRow) -> str:
+    """Where a state should be dark: what the light it still gets consists of."""
+    dark = "present" if table.design.geometry.present_reads == "low" else "absent"
+    if row.laid.state.expect != dark or table.design.geometry.reading != "level":
+        return ""
+    ledger = ledger_of(row.laid)
+    parts = dict(ledger.returned)
+    parts["reflection at the faces"] = ledger.received - sum(ledger.returned.values())
+    label = max(parts, key=lambda name: parts[name])
+    if ledger.received <= 0:
+        return ""
+    words = {
+        "reaches the detector beside the faces": "crosstalk beside the faces",
+        "reflection at the faces": "what the faces still reflect",
+    }
+    what = words.get(label, "light sent back diffusely" if "diffusely" in label else label)
+    return f"limited by {what}, {parts[label] / ledger.received:.0%} of the light in {row.laid.state.name!r}"
+
+
+def headline_of(
+    design: Design,
+    table: Table,
+    verdict: Verdict,
+    judged: Sequence[Judged],
+    found: Mapping[str, MetricValue | Missing],
+    limiting: str,
+) -> str:
+    """One sentence: the verdict as a consequence."""
+    missed = sorted(
+        (one for one in judged if one.verdict == "fail"),
+        key=lambda one: -float(one.shortfall if one.shortfall is not None else 0),
+    )
+    if missed:
+        first = missed[0]
+        reads = _misread(design, table, first)
+        rest = f"; {limiting}" if limiting else ""
+        return f"FAIL: {reads}{_against(first)}{rest}."
+    if verdict == "open":
+        waiting = ", ".join(f"{one.label} ({one.why})" for one in judged if one.verdict == "open")
+        return f"OPEN: nothing is missed, but not everything was evaluated: {waiting}."
+    if verdict == "none stated":
+        margin = found.get("margin_sigma")
+        told = (
+            f"; the least margin is {float(margin.values[0]):.3g} sigma ({margin.at})"
+            if isinstance(margin, MetricValue)
+            else ""
+        )
+        return f"NO VERDICT: the design states no requirements{told}."
+    tight = min(judged, key=lambda one: float(one.margin or 0) / (abs(one.limit) or 1.0))
+    return f"PASS: all {len(judged)} requirements are met; closest is {_against(tight)}."
+
+
+def _against(one: Judged) -> str:
+    where = f" ({one.at})" if one.at else ""
+    value = "unknown" if one.value is None else format_quantity(one.value, one.kind, unit=one.unit or None)
+    return f"{one.label} {value}{where}, needs {one.sense} {format_quantity(one.limit, one.kind, unit=one.unit or None)}"
+
+
+def _misread(design: Design, table: Table, one: Judged) -> str:
+    """ "milk reads dry (dangerous: ...); " where the state named lies on the wrong side of the level."""
+    if table.decided is None:
+        return ""
+    absent, present = design.geometry.words
+    for part in reversed(one.at.split(" : ")):
+        sigma = table.decided.sigma.get(part)
+        if sigma is not None and float(sigma[0]) < 0:
+            expect = table.row(part).laid.state.expect
+            reads, kind = (absent, "absent") if expect == "present" else (present, "present")
+            return f"{part} reads {reads}{consequence(design, table, kind)}; "
+    return ""
