@@ -10,12 +10,11 @@ from numpy.typing import NDArray
 
 from outcouple.design import Design
 from outcouple.design.load import design_model
-from outcouple.errors import UserMistake
 from outcouple.evaluate.judge import value_for
-from outcouple.evaluate.overlay import check_samples
 from outcouple.evaluate.table import Table, tabulate
 from outcouple.fields import Leaf, leaves
 from outcouple.geometry import MetricValue, Missing
+from outcouple.metrics import metrics_of
 from outcouple.outcome import Advice, Judged
 from outcouple.quantities import format_quantity
 
@@ -85,43 +84,54 @@ def advise(
     judged: Sequence[Judged],
     found: Mapping[str, MetricValue | Missing],
 ) -> tuple[Advice, ...]:
-    """The few inputs whose step of 20 % moves the worst margin most, best first."""
+    """The few inputs whose step of a fifth moves the worst margin most, best first."""
     from outcouple.evaluate.batch import measure
 
-    steps = _steps(design)
-    names = [one.metric for one in design.requirements if found.get(one.metric) is not None] or [
-        "margin_sigma"
-    ]
     states = [(row.laid.state.name, row.laid.state.family) for row in table.rows]
-    before, _ = worst_margin(design, found, states)
-    if not steps or not np.isfinite(before[0]):
+    before, owners = worst_margin(design, found, states)
+    steps = _steps(design)
+    if not steps or not np.isfinite(before[0]) or not owners[0]:
         return ()
+    samples = _samples(steps)
+    names = tuple(dict.fromkeys([*(one.metric for one in design.requirements if one.metric in found), owners[0]]))
+    measured = measure(tabulate(design, samples), names)
+    after, _ = worst_margin(design, measured, states)
+    gains = np.broadcast_to(after, (len(steps),)) - before[0]
+    best: dict[tuple[str, ...], int] = {}
+    for at in np.argsort(-gains):
+        if np.isfinite(gains[at]) and gains[at] > 1e-6 * max(abs(before[0]), 1e-6) and len(best) < KEPT:
+            best.setdefault(steps[at][0].path, int(at))
+    watched = found[owners[0]]
+    if not isinstance(watched, MetricValue):
+        return ()
+    moved = measured[owners[0]]
+    return tuple(
+        _advice(design, steps[at], owners[0], watched, moved, at)
+        for at in best.values()
+        if isinstance(moved, MetricValue)
+    )
+
+
+def _samples(steps: Sequence[tuple[Leaf, float, float]]) -> dict[tuple[str, ...], Floats]:
+    """One sample per step: every input at its value but the one that steps."""
     columns: dict[tuple[str, ...], Floats] = {}
     for at, (leaf, value, stepped) in enumerate(steps):
-        column = columns.setdefault(leaf.path, np.full(len(steps), value))
-        column[at] = stepped
-    try:
-        check_samples(design, columns)
-    except UserMistake:
-        return ()
-    after, _ = worst_margin(design, measure(tabulate(design, columns), names), states)
-    gains = np.broadcast_to(after, (len(steps),)) - before[0]
-    best = [at for at in np.argsort(-gains) if np.isfinite(gains[at]) and gains[at] > 1e-9 * abs(before[0])]
-    seen: dict[tuple[str, ...], Advice] = {}
-    for at in best:
-        leaf, value, stepped = steps[at]
-        if leaf.path not in seen and len(seen) < KEPT:
-            seen[leaf.path] = _advice(leaf, value, stepped, float(before[0]), float(after[at]), design)
-    return tuple(seen.values())
+        columns.setdefault(leaf.path, np.full(len(steps), value))[at] = stepped
+    return columns
 
 
-def _advice(leaf: Leaf, value: float, stepped: float, before: float, after: float, design: Design) -> Advice:
-    path = ".".join(leaf.path)
+def _advice(
+    design: Design,
+    step: tuple[Leaf, float, float],
+    name: str,
+    watched: MetricValue,
+    moved: MetricValue,
+    at: int,
+) -> Advice:
+    leaf, value, stepped = step
+    metric = metrics_of(design.geometry)[name]
     old, new = (format_quantity(x, leaf.kind, unit=leaf.unit or None) for x in (value, stepped))
-    if design.requirements:
-        text = f"{path} from {old} to {new}: worst margin {before:+.0%} -> {after:+.0%} of its limit"
-        metric = "worst margin"
-    else:
-        text = f"{path} from {old} to {new}: worst margin {before:.3g} -> {after:.3g} sigma"
-        metric = "margin_sigma"
-    return Advice(path, old, new, metric, before, after, text)
+    before, after = float(watched.values[0]), float(np.broadcast_to(moved.values, (at + 1,))[at] if len(moved.values) == 1 else moved.values[at])
+    shown = [format_quantity(x, metric.kind, unit=metric.unit or None) for x in (before, after)]
+    text = f"{leaf.name} from {old} to {new}: {metric.label} {shown[0]} -> {shown[1]}"
+    return Advice(leaf.name, old, new, name, before, after, text)

@@ -29,9 +29,7 @@ def continuous_curve(table: Table) -> ContinuousCurve | None:
     if not rows:
         return None
     numbers = np.array(sorted(float(row.laid.state.expect) for row in rows))
-    low, high = numbers[0], numbers[-1]
-    margin = 0.1 * (high - low) if high > low else 0.1 * abs(low)
-    grid = np.unique(np.concatenate([np.linspace(max(low - margin, 0.0), high + margin, POINTS), numbers]))
+    grid = _grid(numbers)
     laid, reading = _along(table, rows[0].laid.state, table.design.geometry.measurand, grid)
     shape = (table.samples, len(grid))
     signal, noise = (
@@ -41,6 +39,16 @@ def continuous_curve(table: Table) -> ContinuousCurve | None:
     share = np.min(np.sum(laid.weights[:, None] * laid.share, axis=1), axis=1)
     share = np.broadcast_to(share, (table.samples * len(grid),)).reshape(shape)
     return ContinuousCurve(grid, share, signal, noise, np.gradient(signal, grid, axis=1, edge_order=2))
+
+
+def _grid(numbers: Floats) -> Floats:
+    """Points from a little below the least number to a little above the largest, the numbers among them."""
+    low, high = numbers[0], numbers[-1]
+    margin = 0.1 * (high - low) if high > low else 0.1 * abs(low)
+    start, stop = max(low - margin, 0.0), high + margin
+    even = np.linspace(start, stop, POINTS)
+    far = np.min(np.abs(even[:, None] - numbers), axis=1) > 0.25 * (stop - start) / POINTS
+    return np.sort(np.concatenate([even[far], np.unique(numbers)]))
 
 
 def _along(table: Table, state: State, path: tuple[str, ...], grid: Floats) -> tuple[LaidState, Reading]:

@@ -17,10 +17,12 @@ from outcouple.evaluate.ledger import ledger_of
 from outcouple.evaluate.notes import design_notes
 from outcouple.evaluate.rays import ray_powers
 from outcouple.evaluate.table import StateRow, Table, tabulate
+from outcouple.fields import leaves
 from outcouple.geometry import Curve, Metric, MetricValue, Missing
 from outcouple.metrics import metrics_of
 from outcouple.notes import merge_notes
 from outcouple.outcome import MetricResult, Outcome, Stage, StateOutcome
+from outcouple.quantities import format_quantity
 from outcouple.version import VERSION
 
 __all__ = ["evaluate"]
@@ -152,15 +154,13 @@ def _state(row: StateRow, table: Table, views: bool) -> StateOutcome:
     at = int(np.argmin(mean))
     score = row.score
     pick = int(np.argmax(score.mean[0])) if score is not None else 0
-    words = table.design.geometry.words
-    word = words[("absent", "present").index(state.expect)] if isinstance(state.expect, str) else ""
     losses, stages = _stages(row, at)
     sign = -1.0 if table.design.geometry.present_reads == "low" else 1.0
     return StateOutcome(
         name=state.name,
         family=state.family,
         expect=state.expect,
-        word=word,
+        word=_word(table, state.expect),
         signal=float(mean[at]),
         noise=float(noise[at]),
         unit=reading.unit,
@@ -173,6 +173,15 @@ def _state(row: StateRow, table: Table, views: bool) -> StateOutcome:
         role=state.role,
         rays=ray_powers(table, row) if views else {},
     )
+
+
+def _word(table: Table, expect: str | float) -> str:
+    """What people read for an expectation: the geometry's word, or the measurand's value."""
+    geometry = table.design.geometry
+    if isinstance(expect, str):
+        return geometry.words[("absent", "present").index(expect)]
+    leaf = next(leaf for leaf in leaves(geometry.Parameters) if leaf.path == geometry.measurand)
+    return format_quantity(expect, leaf.kind, unit=leaf.unit or None)
 
 
 def _stages(row: StateRow, channel: int) -> tuple[dict[str, float], tuple[Stage, ...]]:

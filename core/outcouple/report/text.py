@@ -103,7 +103,7 @@ def _states(outcome: Outcome) -> str:
         rows.append(
             (
                 state.name,
-                state.word or _number(state),
+                state.word,
                 format_quantity(state.signal, kind),
                 format_quantity(state.noise, kind),
                 f"{state.share:.3%}" if state.share >= 1e-5 else f"{state.share:.2e}",
@@ -119,10 +119,6 @@ def _states(outcome: Outcome) -> str:
             kind = "current" if outcome.level_kind == "A" else "electrons"
             level = f"\n  level: {format_quantity(outcome.level, kind)}"
     return "States\n" + table(rows, right=(2, 3, 4, 5, 6)) + level
-
-
-def _number(state: StateOutcome) -> str:
-    return f"{state.expect:.4g}" if isinstance(state.expect, float) else ""
 
 
 def _of(metric: MetricResult | None, state: StateOutcome, form: str) -> str:
