@@ -258,9 +258,7 @@ def crossing_rate(z: ArrayLike, *, bandwidth: ArrayLike) -> Floats:
     )
 
 
-def crossing_threshold(
-    *, events_per_year: ArrayLike, bandwidth: ArrayLike, channels: ArrayLike = 1
-) -> Floats:
+def crossing_threshold(*, events_per_year: ArrayLike, bandwidth: ArrayLike, channels: ArrayLike = 1) -> Floats:
     """The z of `crossing_rate` for so many crossings per year, all channels together.
 
     >>> [round(float(crossing_threshold(events_per_year=1, bandwidth=b)), 1) for b in (10, 1e3, 1e5)]

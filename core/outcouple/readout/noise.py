@@ -91,9 +91,7 @@ class NoiseBudget:
     def plus(self, cause: str, variance: ArrayLike) -> NoiseBudget:
         """The budget with a further cause; a cause already there grows."""
         more = np.asarray(variance, dtype=float)
-        return NoiseBudget(
-            {**self.variances, cause: self.variances.get(cause, np.zeros(())) + more}, self.unit
-        )
+        return NoiseBudget({**self.variances, cause: self.variances.get(cause, np.zeros(())) + more}, self.unit)
 
     def scaled(self, factor: ArrayLike, unit: str | None = None) -> NoiseBudget:
         """The budget of ``factor`` times the reading (variances times its square)."""
@@ -116,9 +114,7 @@ class NoiseBudget:
             return "no noise"
         names, shares = self.limiting()
         cause = str(np.atleast_2d(names)[sample, pick])
-        return f"limited by {CAUSES.get(cause, cause)}, {np.atleast_2d(shares)[sample, pick]:.0%}".replace(
-            "%", " %"
-        )
+        return f"limited by {CAUSES.get(cause, cause)}, {np.atleast_2d(shares)[sample, pick]:.0%}".replace("%", " %")
 
     def equivalent_power(self, responsivity: ArrayLike) -> Floats:
         """Noise-equivalent power [W]: optical power whose reading equals the standard deviation.
@@ -163,9 +159,7 @@ def thermal_current_density(resistance: ArrayLike, *, temperature: ArrayLike) ->
 
 def thermal_variance(resistance: ArrayLike, *, temperature: ArrayLike, bandwidth: ArrayLike) -> Floats:
     """Thermal current noise variance [A^2] of a resistor in a noise bandwidth [Hz]."""
-    return np.asarray(
-        thermal_current_density(resistance, temperature=temperature) ** 2 * np.asarray(bandwidth)
-    )
+    return np.asarray(thermal_current_density(resistance, temperature=temperature) ** 2 * np.asarray(bandwidth))
 
 
 def shot_equals_thermal_voltage(temperature: ArrayLike) -> Floats:
@@ -184,9 +178,7 @@ def ktc_voltage(capacitance: ArrayLike, *, temperature: ArrayLike) -> Floats:
 
 def ktc_charge(capacitance: ArrayLike, *, temperature: ArrayLike) -> Floats:
     """The same as a charge [electrons]: sqrt(k T C) / q."""
-    return np.asarray(
-        np.sqrt(BOLTZMANN * np.asarray(temperature) * np.asarray(capacitance, dtype=float)) / CHARGE
-    )
+    return np.asarray(np.sqrt(BOLTZMANN * np.asarray(temperature) * np.asarray(capacitance, dtype=float)) / CHARGE)
 
 
 def intensity_variance(signal: ArrayLike, *, density: ArrayLike, bandwidth: ArrayLike) -> Floats:
