@@ -13,7 +13,7 @@ if TYPE_CHECKING:
     from outcouple.geometry import Geometry
     from outcouple.hooks import Host
 
-__all__ = ["command", "starter_text"]
+__all__ = ["command"]
 
 
 @click.command("new")
@@ -24,6 +24,7 @@ def command(job: str | None, out: str | None) -> int:
 
     Never overwrites a file; prints the next command.
     """
+    from outcouple.design.starter import starter_text
     from outcouple.hooks import build_host
 
     host = build_host()
@@ -63,40 +64,3 @@ def _for_job(job: str, jobs: dict[str, Geometry], host: Host) -> Geometry:
             f"unknown job or geometry {job!r}{nearest(job, names)}; there are: {', '.join(names)}"
         )
     return jobs[job]
-
-
-def starter_text(geometry: Geometry, job: str) -> str:
-    """The text of a starter design: the inputs that decide, commented, then states and requirements."""
-    from outcouple.design import design_model
-    from outcouple.fields import Leaf, leaves
-
-    sections: dict[str, list[Leaf]] = {}
-    for leaf in leaves(design_model(type(geometry))):
-        if leaf.deciding and leaf.default_text:
-            sections.setdefault(leaf.path[0], []).append(leaf)
-    lines = [
-        f"# {geometry.name}: {geometry.summary}.",
-        "# Every value below is a default; change what you know. `outcouple budget` reads this file.",
-        "",
-        f'title = "{job.capitalize()}, first draft"',
-        f'geometry = "{geometry.name}"',
-        "",
-    ]
-    for section, found in sections.items():
-        lines.append(f"[{section}]")
-        for leaf in found:
-            value = (
-                leaf.default_text
-                if leaf.what in ("count", "flag") or (leaf.kind == "number")
-                else f'"{leaf.default_text}"'
-            )
-            bounds = (
-                f" ({leaf.bounds})"
-                if leaf.bounds
-                else f" (one of: {', '.join(leaf.choices)})"
-                if leaf.choices
-                else ""
-            )
-            lines.append(f"{leaf.path[-1]} = {value}  # {leaf.describe}{bounds}")
-        lines.append("")
-    return "\n".join(lines) + "\n" + geometry.starter(job)

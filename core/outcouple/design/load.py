@@ -9,17 +9,15 @@ from typing import Any
 
 from pydantic import ValidationError, create_model
 
-from outcouple.decision.settings import Decision
 from outcouple.design.design import Design, Path
 from outcouple.design.parts import Parts, read_requirements, read_states, read_tolerances, read_materials
 from outcouple.design.problems import Problem, collect, raise_problems
-from outcouple.design.sections import Emitter, Environment
+from outcouple.design.sections import READOUTS, Decision, Emitter, Environment
 from outcouple.design.toml_source import TomlSource
 from outcouple.errors import UserMistake, nearest
 from outcouple.fields import Section
 from outcouple.geometry import Geometry
 from outcouple.hooks import Host, build_host
-from outcouple.readout.settings import READOUTS
 
 __all__ = ["design_from_mapping", "design_model", "load_design", "parse_design"]
 

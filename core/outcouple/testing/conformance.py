@@ -2,15 +2,14 @@
 
 from __future__ import annotations
 
-import tempfile
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, field, replace
-from pathlib import Path
 from typing import Any
 
 import numpy as np
 
-from outcouple.design import Design, design_from_mapping, load_design
+from outcouple.design import Design, design_from_mapping, parse_design
+from outcouple.design.starter import starter_text
 from outcouple.errors import UserMistake
 from outcouple.evaluate import evaluate, evaluate_batch
 from outcouple.evaluate.ledger import ledger_of
@@ -86,17 +85,12 @@ def _entry(geometry: Geometry) -> Any:
 
 def _designs(geometry: Geometry, host: Host, report: Report) -> Iterator[tuple[str, Design]]:
     """The geometry's starters, one per job; they must be whole designs."""
-    from outcouple.cli.new_command import starter_text
-
     for job in geometry.jobs or ("draft",):
-        with tempfile.TemporaryDirectory() as folder:
-            file = Path(folder) / "starter.toml"
-            file.write_text(starter_text(geometry, job), encoding="utf-8")
-            try:
-                design = load_design(file, host=host)
-            except UserMistake as mistake:
-                report.check(f"starter for {job} loads", False, str(mistake))
-                continue
+        try:
+            design = parse_design(starter_text(geometry, job), file="starter.toml", host=host)
+        except UserMistake as mistake:
+            report.check(f"starter for {job} loads", False, str(mistake))
+            continue
         report.check(f"starter for {job} loads", True)
         yield job, design
 

@@ -1,42 +1,10 @@
-"""Sections every design file shares: where the sensor stands and what shines into it."""
+"""The ``[emitter]`` section: the lamp."""
 
 from __future__ import annotations
 
 from outcouple.fields import Section, choice, quantity
 
-__all__ = ["Emitter", "Environment"]
-
-
-class Environment(Section):
-    """Where the sensor works."""
-
-    temperature: float = quantity(
-        "20 degC",
-        "temperature",
-        ge="2 K",
-        le="800 K",
-        describe="temperature of the sensor and of what touches it",
-        deciding=True,
-    )
-    ambient: str = choice(
-        "none",
-        ["none", "daylight", "sun", "incandescent", "led lamps", "fluorescent"],
-        describe="kind of light from outside",
-    )
-    illuminance: float = quantity(
-        "0 lx", "illuminance", ge="0 lx", le="200 klx", describe="of that light on the sensor", unit="lx"
-    )
-    irradiance: float | None = quantity(
-        None,
-        "irradiance",
-        ge="0 W/m2",
-        le="2000 W/m2",
-        optional=True,
-        describe="of that light within the detector's own band, measured; wins over the illuminance",
-    )
-    explosive: str = choice(
-        "no", ["no", "yes"], describe="an explosive atmosphere may be present (fuel, solvent, oxygen, dust)"
-    )
+__all__ = ["Emitter"]
 
 
 class Emitter(Section):
