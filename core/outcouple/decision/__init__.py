@@ -1,9 +1,9 @@
 """Readings to verdicts: levels, error rates, failure directions, cautions.
 
 The room knows no optics and no design file. `detection` turns margins in standard deviations into false alarms, misses
-and times; `three_way` adds fault bands; `failure_modes` tells which way each failure errs for a demand; `cautions` holds
-what a result must say about eyes, explosive atmospheres, overfill and people. `decide` joins levels and states for
-`outcouple.evaluate`.
+and times; `three_way` adds fault bands; `failure_modes` tells which way each failure errs for a demand; `cautions`
+holds what a result must say about eyes, explosive atmospheres, overfill and people. `decide` joins levels and states
+for `outcouple.evaluate`.
 """
 
 from outcouple.decision.detection import (
