@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 
 from outcouple.geometry import Setting
 from outcouple.light import Light, Relight, Vector
-from outcouple.optics import gauss_legendre, interface
+from outcouple.optics import interface
 
 from outcouple_plugins.prism_switch.directions import Directions, lobe_directions
 from outcouple_plugins.prism_switch.ways import Interval, WayTrace, Wedge, trace_way
@@ -19,7 +19,8 @@ __all__ = ["COLUMNS", "apex_height", "prism_light"]
 Floats = NDArray[np.float64]
 
 SLICES = 8
-"""Slices of the emitting disc across y."""
+"""Slices of the emitting disc across y, per direction."""
+GOLDEN = 0.6180339887498949
 COLUMNS = ("emitter", "detector", "emitter")
 """Faces of the hit columns: the two-hit way in either order fits into three."""
 EMITTER, DETECTOR = -1, 1
@@ -84,15 +85,19 @@ def _start(directions: Directions, n_guide: Floats, bonded: bool, polarization: 
     return _Start(direction, s_vector, q, directions.weight * mean, directions.weight * (1 - mean))
 
 
-def _slices(setting: Setting) -> tuple[Interval, Floats, Floats]:
-    """The emitting disc in slices across y: x0 range (S, 1, Y), y0, and the disc's share per metre of slice."""
+def _slices(setting: Setting, rays: int) -> tuple[Interval, Floats, Floats]:
+    """The emitting disc in slices across y: x0 range (S, K, Y), y0, and the disc's share per metre of slice.
+
+    Every direction has its slices a little elsewhere (golden-ratio steps), so that slices and directions never beat.
+    """
     layout = setting.p.layout
-    t, w = gauss_legendre(SLICES)
-    phi = t * np.pi / 2
+    shift = (np.arange(rays) * GOLDEN % 1.0)[:, None]
+    phi = (np.arange(SLICES) + shift) / SLICES * np.pi - np.pi / 2
     radius = setting.spread(layout.emitter_radius)[:, None, None]
     centre = setting.spread(layout.emitter_position)[:, None, None]
     half = radius * np.cos(phi)
-    per_metre = w * np.pi / 2 * np.cos(phi) / (np.pi * radius)
+    # A pi/Y midpoint rule in phi; cos^2 sums exactly over any equal spacing, so a whole disc counts 1.
+    per_metre = np.cos(phi) / (SLICES * radius)
     return Interval(centre - half, centre + half), radius * np.sin(phi), per_metre
 
 
@@ -104,7 +109,7 @@ def _traces(setting: Setting, start: _Start) -> list[tuple[WayTrace, Floats, Flo
         apex_height(setting)[:, None, None],
         setting.spread(p.prism.face_angle)[:, None, None],
     )
-    slices, y0, per_metre = _slices(setting)
+    slices, y0, per_metre = _slices(setting, start.weight.shape[1])
     found = []
     for sides, _ in WAYS:
         trace = trace_way(
