@@ -7,6 +7,7 @@ from dataclasses import replace
 
 from outcouple.fields import leaves
 from outcouple.geometry import Geometry, Metric
+from outcouple.quantities import kind_of
 
 __all__ = ["COMMON", "CONTINUOUS", "metrics_of"]
 
@@ -123,7 +124,7 @@ CONTINUOUS: tuple[Metric, ...] = (
     Metric(
         "slope",
         "slope",
-        "number",
+        "1/{kind}",
         "1/{unit}",
         "higher",
         "largest change of the relative reading with {label}",
@@ -156,8 +157,8 @@ CONTINUOUS: tuple[Metric, ...] = (
     Metric(
         "resolution_density",
         "resolution per root bandwidth",
-        "number",
-        "{si}/rtHz",
+        "{kind}/rtHz",
+        "{unit}/rtHz",
         "lower",
         "resolution at the best bias point divided by the square root of the noise bandwidth",
     ),
@@ -191,18 +192,14 @@ def metrics_of(geometry: Geometry) -> Mapping[str, Metric]:
 
 def _continuous(geometry: Geometry) -> dict[str, Metric]:
     leaf = next(leaf for leaf in leaves(geometry.Parameters) if leaf.path == geometry.measurand)
-    words = {
-        "unit": leaf.unit,
-        "si": leaf.si_unit,
-        "kind": leaf.kind,
-        "label": leaf.path[-1].replace("_", " "),
-    }
-    return {
-        metric.name: replace(
-            metric,
-            kind=metric.kind.format(**words),
-            unit=metric.unit.format(**words),
-            meaning=metric.meaning.format(**words),
-        )
-        for metric in CONTINUOUS
-    }
+    words = {"unit": leaf.unit, "kind": leaf.kind, "label": leaf.path[-1].replace("_", " ")}
+    return {metric.name: _worded(metric, words) for metric in CONTINUOUS}
+
+
+def _worded(metric: Metric, words: Mapping[str, str]) -> Metric:
+    """The metric for one measurand; where its own unit makes no derived unit (1/degC), the derived kind's own."""
+    kind = kind_of(metric.kind.format(**words))
+    unit = metric.unit.format(**words)
+    return replace(
+        metric, kind=kind.name, unit=unit if unit in kind.units else kind.unit, meaning=metric.meaning.format(**words)
+    )

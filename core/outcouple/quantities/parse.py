@@ -1,4 +1,4 @@
-"""Texts with units to SI numbers."""
+"""From "6 mm" to 0.006, and the many ways a quantity can be written wrongly."""
 
 from __future__ import annotations
 
@@ -7,99 +7,137 @@ import re
 from functools import lru_cache
 
 from outcouple.errors import UserMistake, nearest
-from outcouple.quantities.units import KINDS, Kind, kind_of
+from outcouple.quantities.table import KINDS, Kind, kind_of
 
-__all__ = ["parse"]
+__all__ = ["parse", "unit_of"]
 
-PATTERN = re.compile(r"([-+]?(?:\d+\.?\d*|\.\d+)(?:[eE][-+]?\d+)?)\s*(.*)")
-SAME = str.maketrans(
-    {"\u00b5": "u", "\u03bc": "u", "\u2212": "-", "\u00b2": "2", "\u00b3": "3", "\u00a0": " "}
+_FORM = re.compile(r"\s*([+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?)\s*(.*?)\s*", re.DOTALL)
+_NOT_FINITE = re.compile(r"\s*[+-]?(nan|inf|infinity)\b", re.IGNORECASE)
+_COMMA = re.compile(r"\s*([+-]?[0-9]+),([0-9]+)\s*(.*?)\s*", re.DOTALL)
+
+# both micro signs, both ohm signs, typographic minus, superscripts, roots and dots
+_SIGNS = str.maketrans(
+    {"µ": "u", "μ": "u", "Ω": "ohm", "\u2126": "ohm", "−": "-", "²": "2", "³": "3", "√": "rt", "·": ".", "\u00a0": " "}
+)  # fmt: skip
+_SPELLINGS = (
+    (re.compile(r"°(?=[CF])|°"), "deg"),
+    (re.compile(r"\s+"), ""),
+    (re.compile(r"\^"), ""),
+    (re.compile(r"\*"), "."),
+    (re.compile(r"Ohm"), "ohm"),
+    (re.compile(r"sqrt\(?Hz\)?"), "rtHz"),
+    (re.compile(r"(?<![A-Za-z])([num]?)l(?=/|$)"), r"\1L"),
 )
 
 
-def parse(text: str | int | float, kind: str) -> float:
-    """The SI value of a quantity as a person writes it: "6 mm", "-20 degC", "35 %".
+def parse(given: object, kind: str | Kind, *, unit: str = "") -> float:
+    """The SI value of a quantity as a person writes it.
 
-    A plain number is taken only by kinds without a unit. Both micro signs and the typographic minus are known. UserMistake says
-    what is wrong and what to write instead.
+    given  text with a unit ("6 mm", "-20 degC", "35 %"), or a number where the kind needs no unit
+    kind   name of the kind (see ``kind_of``) or the kind
+    unit   unit suggested where one is missing; the kind's own by default
 
-    >>> parse("6 mm", "length")
-    0.006
-    >>> parse("-20 degC", "temperature")
-    253.15
+    Raises UserMistake saying what is wrong, without naming ``given`` again unless that helps.
+
+    >>> parse("6 mm", "length"), parse("−20 °C", "temperature"), parse("35 %", "ratio")
+    (0.006, 253.15, 0.35)
+    >>> parse("30", "angle")
+    Traceback (most recent call last):
+    ...
+    outcouple.errors.UserMistake: unit missing; write "30 deg"
     """
-    if isinstance(text, bool):
-        raise UserMistake(f"a truth value is no quantity; {_want(kind_of(kind))}")
-    return _parse(text, kind)
+    kind = kind_of(kind) if isinstance(kind, str) else kind
+    if isinstance(given, str):
+        return _parse_text(given, kind.name, unit or kind.unit)
+    if isinstance(given, bool) or not isinstance(given, int | float):
+        raise UserMistake(f"{kind.a_label} is wanted{_such_as(kind, unit)}")
+    if not math.isfinite(given):
+        raise UserMistake("not a finite number")
+    if not kind.plain:
+        raise UserMistake(f'unit missing; write "{given} {unit or kind.unit}"')
+    return _checked(float(given), kind)
+
+
+def unit_of(text: str, kind: Kind) -> str:
+    """The unit a valid quantity text is written in, as the table spells it."""
+    match = _FORM.fullmatch(text.translate(_SIGNS))
+    return _spelled(match[2], kind) if match else ""
 
 
 @lru_cache(maxsize=4096)
-def _parse(text: str | int | float, name: str) -> float:
-    kind = kind_of(name)
-    if isinstance(text, int | float):
-        return _bare(float(text), repr(text), kind)
-    if not isinstance(text, str):
-        raise UserMistake(f"{type(text).__name__} is no quantity; {_want(kind)}")
-    given = text.strip().translate(SAME)
-    match = PATTERN.fullmatch(given)
+def _parse_text(text: str, kind_name: str, unit: str) -> float:
+    kind = kind_of(kind_name)
+    match = _FORM.fullmatch(text if text.isascii() else text.translate(_SIGNS))
     if match is None:
-        raise UserMistake(_no_number(given, kind))
-    number, unit = (
-        float(match[1]),
-        match[2].strip().replace("√Hz", "rtHz").replace("^", "").replace("Ohm", "ohm"),
-    )
-    unit = unit.replace("*", ".").replace("·", ".")
+        raise UserMistake(_no_number(text, kind, unit))
+    number = float(match[1])
+    name = match[2] if match[2] in kind.units else _spelled(match[2], kind)
+    if name not in kind.units:
+        raise UserMistake(_wrong_unit(text, match[1], match[2], kind, unit))
     if not math.isfinite(number):
         raise UserMistake("too large to be a number")
-    if not unit:
-        return _bare(number, match[1], kind)
-    if unit not in kind.units:
-        raise UserMistake(_wrong_unit(match[1], unit, given, kind))
-    factor, offset = kind.units[unit]
-    return _rounded(number, factor, offset)
+    return _checked(_to_si(number, kind, name), kind)
 
 
-def _rounded(number: float, factor: float, offset: float) -> float:
-    """factor * number + offset without the last digit's noise of a decimal factor (6 mm is 0.006)."""
-    if offset:
-        return round(number * factor + offset, 10)
-    inverse = 1 / factor
-    return (
-        number / round(inverse)
-        if factor < 1 and abs(inverse - round(inverse)) < 1e-6 * inverse
-        else number * factor
-    )
+def _to_si(number: float, kind: Kind, name: str) -> float:
+    try:
+        value = float(kind.units[name].to_si(number))
+    except OverflowError:
+        value = math.inf
+    if not math.isfinite(value):
+        raise UserMistake("too large to be a number")
+    return value
 
 
-def _bare(number: float, given: str, kind: Kind) -> float:
-    if not math.isfinite(number):
-        raise UserMistake(f"{given} is not a finite number")
-    if not kind.bare:
-        unit = kind.shown[min(1, len(kind.shown) - 1)]
-        raise UserMistake(f'unit missing; write "{given} {unit}"')
-    if kind.name == "count" and number != int(number):
-        raise UserMistake(f"{given} is not a whole number")
-    return number
+def _checked(value: float, kind: Kind) -> float:
+    if kind.name == "count" and not value.is_integer():
+        raise UserMistake("a whole number is wanted")
+    if kind.name == "temperature" and value < 0.0:
+        raise UserMistake("below absolute zero (-273.15 degC)")
+    return value
 
 
-def _want(kind: Kind) -> str:
-    units = ", ".join(unit for unit in kind.units if unit)
-    return f"{kind.label} is wanted" + (f" (units: {units})" if units else "")
+def _spelled(name: str, kind: Kind) -> str:
+    """The unit as the table spells it, or as it stands where the table has nothing like it."""
+    for pattern, spelling in _SPELLINGS:
+        name = pattern.sub(spelling, name)
+    if name not in kind.units and name.endswith("e"):
+        return f"{name}-"
+    return name
 
 
-def _no_number(given: str, kind: Kind) -> str:
-    if re.match(r"[-+]?(nan|inf)", given, re.IGNORECASE):
-        return f"not a finite number; {_want(kind)}"
-    if re.match(r"[-+]?\d+,\d", given):
-        return f'write a decimal point: "{given.replace(",", ".", 1)}"'
-    return f"does not begin with a number; {_want(kind)}"
+def _such_as(kind: Kind, unit: str) -> str:
+    return "" if kind.plain and not (unit or kind.unit) else f', as text such as "1 {unit or kind.unit}"'
 
 
-def _wrong_unit(number: str, unit: str, given: str, kind: Kind) -> str:
-    for other in KINDS.values():
-        if unit in other.units and other.name != kind.name:
-            return f'"{given}" is {other.label}; {_want(kind)}'
-    if re.fullmatch(r",\d+.*", unit):
-        return f'write a decimal point: "{given.replace(",", ".", 1)}"'
-    guess = nearest(unit, [name for name in kind.units if name])
-    return f"unknown unit {unit!r}{guess}; {_want(kind)}"
+def _no_number(text: str, kind: Kind, unit: str) -> str:
+    if not text.strip():
+        return f"empty; {kind.a_label} is wanted{_such_as(kind, unit)}"
+    if _NOT_FINITE.match(text):
+        return "not a finite number"
+    return f"no number; {kind.a_label} is wanted{_such_as(kind, unit)}"
+
+
+def _wrong_unit(text: str, number: str, name: str, kind: Kind, unit: str) -> str:
+    if not name:
+        return f'unit missing; write "{number} {unit}"'
+    comma = _COMMA.fullmatch(text)
+    if comma:
+        whole, part, rest = comma.groups()
+        tail = f" {rest}" if rest else ""
+        other = f' or "{whole}{part}{tail}"' if len(part) == 3 else ""
+        return f'comma in the number; write "{whole}.{part}{tail}"{other}'
+    for other_kind in map(kind_of, KINDS):
+        if _spelled(name, other_kind) in other_kind.units:
+            return f'"{text.strip()}" is {other_kind.a_label}; {kind.a_label} is wanted'
+    if name[0] in "0123456789.,_+-±" or re.search(r"\s[0-9]", name):
+        return f"not one number with a unit; {kind.a_label} is wanted{_such_as(kind, unit)}"
+    allowed = [known for known in kind.units if known]
+    names = f"; units of {kind.a_label}: {', '.join(allowed)}" if allowed else f"; {kind.a_label} is wanted"
+    return f'unknown unit "{name}"{_near_unit(name, allowed)}{names}'
+
+
+def _near_unit(name: str, allowed: list[str]) -> str:
+    """Like ``nearest``, but mPa and MPa, which differ by their capitals alone, are both offered."""
+    alike = [unit for unit in allowed if unit.lower() == name.lower()]
+    return f" (did you mean {' or '.join(map(repr, alike))}?)" if alike else nearest(name, allowed)

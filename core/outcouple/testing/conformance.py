@@ -18,7 +18,7 @@ from outcouple.fields import Leaf, leaves
 from outcouple.geometry import Geometry, MetricValue
 from outcouple.hooks import Host, build_host
 from outcouple.metrics import metrics_of
-from outcouple.quantities import KINDS
+from outcouple.quantities import is_kind
 
 __all__ = ["Report", "check_geometry"]
 
@@ -101,7 +101,7 @@ def _check_description(geometry: Geometry, report: Report) -> None:
     names = [metric.name for metric in geometry.metrics]
     report.check("metric names differ", len(set(names)) == len(names))
     for metric in metrics_of(geometry).values():
-        report.check(f"metric {metric.name} has a known kind", metric.kind in KINDS, metric.kind)
+        report.check(f"metric {metric.name} has a known kind", is_kind(metric.kind), metric.kind)
         report.check(f"metric {metric.name} says what it means", bool(metric.meaning and metric.label))
     for leaf in leaves(geometry.Parameters):
         report.check(f"input {leaf.name} is described", bool(leaf.describe))
