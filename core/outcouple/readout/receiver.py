@@ -43,7 +43,7 @@ def stage_moments(stage: Transimpedance, modulation: Modulation, *, memory: Arra
     White input noise leaves the stage with the correlation sum c_i exp(-p_i |t|) of its two poles, f^2
     noise with c_i -> -c_i p_i^2 / (2 pi)^2; the reading's weights turn each exponential into a closed form
     (`_kernel`). Exact for white and rising noise. The 1/f part ignores the stage's roll-off; its rising
-    part holds to a few percent for a stage much faster than the reading.
+    part holds to a few percent for a stage much faster than the reading (a third for a single on-off pair).
 
     memory  time [s] a steady reading keeps its zero (`Modulation.flicker_number`)
     """

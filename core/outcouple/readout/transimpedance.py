@@ -220,9 +220,9 @@ def _margin(
     a = r * np.asarray(feedback)
     b = a + r * np.asarray(input_capacitance)
     middle = 1 - (g * a) ** 2
-    # The root of the quadratic in the form that cancels nowhere.
-    root = np.sqrt(middle**2 + 4 * (b * g) ** 2)
-    square = np.where(middle >= 0, 2 * g**2 / (middle + root), (root - middle) / (2 * b**2))
+    # The positive root of the quadratic, in the form that cancels nowhere.
+    large = np.abs(middle) + np.sqrt(middle**2 + 4 * (b * g) ** 2)
+    square = np.where(middle >= 0, 2 * g**2 / large, large / (2 * b**2))
     w = np.sqrt(square)
     return np.asarray(np.pi / 2 - np.arctan(w * b) + np.arctan(w * a))
 
