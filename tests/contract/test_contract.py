@@ -41,7 +41,7 @@ def design(host, geometry, states, **more):
     return design_from_mapping({"geometry": geometry, "states": states, **more}, host=host)
 
 
-TOUCH = {"name": "finger", "expect": "present", "touching": "glycerol", "object": {"diameter": "9 mm", "y": "0 mm"}}
+TOUCH = {"name": "finger", "expect": "present", "touching": "hydraulic oil", "object": {"diameter": "9 mm", "y": "0 mm"}}
 CLEAR = {"name": "clear", "expect": "absent"}
 MILKY = {
     "name": "milky",

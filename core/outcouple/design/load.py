@@ -10,7 +10,8 @@ from typing import Any
 from pydantic import ValidationError, create_model
 
 from outcouple.design.design import Design, Path
-from outcouple.design.parts import Parts, read_requirements, read_states, read_tolerances, read_materials
+from outcouple.design.own_materials import with_own_materials
+from outcouple.design.parts import Parts, read_requirements, read_states, read_tolerances
 from outcouple.design.problems import Problem, collect, raise_problems
 from outcouple.design.sections import READOUTS, Decision, Emitter, Environment
 from outcouple.design.toml_source import TomlSource
@@ -60,7 +61,7 @@ def design_from_mapping(
     geometry = _geometry(data, host, problems)
     if geometry is None:
         raise_problems(problems, source, file)
-    catalogue = read_materials(data.get("materials", {}), host.catalogue, problems)
+    catalogue = with_own_materials(data.get("materials", {}), host.catalogue, problems)
     sections = _sections(data, geometry, problems)
     parts = Parts(geometry, host, catalogue, sections, problems)
     states = read_states(data.get("states"), parts)

@@ -1,60 +1,69 @@
-"""``[materials.<name>]``: a user's own rows for the catalogue."""
+"""``[materials.<name>]``: a user's own rows for the catalogue, their quantities read, everything else as the catalogue takes it."""
 
 from __future__ import annotations
 
 from collections.abc import Mapping
 from typing import Any
 
-from pydantic import ValidationError
-
-from outcouple.design.problems import Problem, collect
+from outcouple.design.problems import Problem
 from outcouple.errors import UserMistake
-from outcouple.fields import Section, choice, quantity
-from outcouple.materials import Catalogue, material_from_mapping
+from outcouple.materials import Catalogue
+from outcouple.quantities import parse
 
-__all__ = ["OwnMaterial", "material_rows"]
+__all__ = ["with_own_materials"]
 
-
-class OwnMaterial(Section):
-    """A material by a constant index; tables and formulas are taken as plain lists."""
-
-    index: float | None = quantity(
-        None, "number", optional=True, ge=1, le=5, describe="absolute index, constant over wavelength"
-    )
-    dn_dt: float = quantity(
-        "0 1/K", "per_kelvin", ge="-0.01 1/K", le="0.01 1/K", describe="change of the index with temperature"
-    )
-    temperature: float = quantity(
-        "20 degC", "temperature", ge="1 K", le="2000 K", describe="temperature the index holds at"
-    )
-    absorption: float = quantity(
-        "0 1/m", "attenuation", ge="0 1/m", le="1e9 1/m", describe="internal attenuation of power"
-    )
-    uncertainty: float = quantity(0, "number", ge=0, le=1, describe="of the index")
-    kind: str = choice("liquid", ["solid", "liquid", "gas", "tissue", "metal"], describe="what it is")
-    source: str = "the user's own value"
-    wavelengths: tuple[str, ...] = ()
-    indices: tuple[float, ...] = ()
-    kappas: tuple[float, ...] = ()
-    sellmeier: tuple[tuple[float, float], ...] = ()
-    cauchy: tuple[float, ...] = ()
+QUANTITIES: Mapping[str, str] = {
+    "wavelengths": "length",
+    "at_wavelength": "length",
+    "absorption_wavelengths": "length",
+    "wavelength_range": "length",
+    "reference_temperature": "temperature",
+    "temperature_range": "temperature",
+    "dn_dT": "per_kelvin",
+    "absorption": "attenuation",
+}
+"""Keys whose values carry units in a design file, alone or in a list."""
 
 
-def material_rows(table: Any, catalogue: Catalogue, problems: list[Problem]) -> dict[str, Any]:
-    """Checked rows by name, as the catalogue takes them."""
+def with_own_materials(table: Any, catalogue: Catalogue, problems: list[Problem]) -> Catalogue:
+    """The catalogue with a user's rows; what cannot be taken is added to ``problems`` and left out."""
     if not isinstance(table, Mapping):
-        problems.append(
-            Problem(("materials",), table, "materials are written as [materials.<name>] tables", "")
-        )
-        return {}
-    found = {}
+        problems.append(Problem(("materials",), table, "materials are written as [materials.<name>] tables"))
+        return catalogue
+    rows: dict[str, dict[str, Any]] = {}
     for name, row in table.items():
-        path = ("materials", str(name))
-        try:
-            own = OwnMaterial.model_validate(row)
-            found[str(name)] = material_from_mapping(str(name), own.model_dump(exclude_defaults=False))
-        except ValidationError as error:
-            problems.extend(collect(error, OwnMaterial, path))
-        except UserMistake as mistake:
-            problems.append(Problem(path, None, str(mistake), ""))
-    return found
+        if not isinstance(row, Mapping):
+            problems.append(Problem(("materials", name), row, "a material is a table", "write [materials.<name>]"))
+            continue
+        before = len(problems)
+        read = {key: _read(key, value, ("materials", name, key), problems) for key, value in row.items()}
+        if len(problems) == before:
+            rows[name] = read
+    for name, row in rows.items():
+        catalogue = _added(name, row, catalogue, problems)
+    return catalogue
+
+
+def _read(key: str, value: Any, path: tuple[str, ...], problems: list[Problem]) -> Any:
+    kind = QUANTITIES.get(key)
+    if kind is None:
+        return value
+    try:
+        return [parse(one, kind) for one in value] if isinstance(value, list) else parse(value, kind)
+    except UserMistake as mistake:
+        problems.append(Problem(path, value, str(mistake)))
+        return None
+
+
+def _added(name: str, row: Mapping[str, Any], catalogue: Catalogue, problems: list[Problem]) -> Catalogue:
+    try:
+        grown = catalogue.with_materials({name: row})
+        grown.lookup(name)
+    except UserMistake as mistake:
+        for line in mistake.lines:
+            where, _, text = line.partition(": ")
+            key = where.removeprefix(f"materials.{name}").removeprefix(".")
+            path = ("materials", name, key) if key else ("materials", name)
+            problems.append(Problem(path, row.get(key), text or where))
+        return catalogue
+    return grown

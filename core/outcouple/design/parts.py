@@ -8,7 +8,6 @@ from typing import Any
 
 from pydantic import ValidationError
 
-from outcouple.metrics import metrics_of
 from outcouple.design.design import Path, Tolerance
 from outcouple.design.problems import Problem, collect
 from outcouple.design.states import ObjectPlace, Requirement, State
@@ -17,10 +16,11 @@ from outcouple.fields import Leaf, Section, leaves, parse_leaf
 from outcouple.geometry import Geometry
 from outcouple.hooks import Host
 from outcouple.materials import Catalogue
+from outcouple.metrics import metrics_of
 from outcouple.quantities import parse
 from outcouple.touching import Touching
 
-__all__ = ["Parts", "read_materials", "read_requirements", "read_states", "read_tolerances"]
+__all__ = ["Parts", "read_requirements", "read_states", "read_tolerances"]
 
 STATE_KEYS = ("name", "expect", "touching", "faces", "object", "set", "role", "describe")
 REQUIREMENT_KEYS = ("metric", "at_least", "at_most", "state", "over", "area", "share", "describe")
@@ -59,15 +59,6 @@ class Parts:
         from outcouple.design.load import design_model
 
         return {leaf.path: leaf for leaf in leaves(design_model(type(self.geometry)))}
-
-
-def read_materials(table: Any, catalogue: Catalogue, problems: list[Problem]) -> Catalogue:
-    """The catalogue with ``[materials.<name>]`` added."""
-    from outcouple.design.own_materials import material_rows
-
-    if not table:
-        return catalogue
-    return catalogue.with_materials(material_rows(table, catalogue, problems))
 
 
 def read_states(given: Any, parts: Parts) -> tuple[State, ...]:
@@ -167,7 +158,7 @@ def _faces(row: Mapping[str, Any], path: Path, parts: Parts) -> dict[str, Touchi
     found: dict[str, Touching] = {}
     base = _preset(row.get("touching", "dry"), (*path, "touching"), parts)
     if base is not None:
-        found = {face: base for face in parts.geometry.faces_for(has_object="object" in row)}
+        found = dict.fromkeys(parts.geometry.faces_for(has_object="object" in row), base)
         rest = _preset("dry", (*path, "touching"), parts)
         if rest is not None:
             found = {face: found.get(face, rest) for face in wetted}
