@@ -1,8 +1,8 @@
 """What things are made of: index and absorption by name, wavelength and temperature.
 
-The room promises absolute (vacuum) complex indices, n + i kappa with kappa > 0 absorbing, SI throughout, numpy alone. A
-value outside the range of its source is still given; ``Material.notes`` carries the caution. Nothing here is global but the
-shipped catalogue, which never changes: ``Catalogue.with_materials`` gives a larger one.
+The room promises absolute (vacuum) complex indices, n + i kappa with kappa > 0 absorbing, SI throughout, numpy alone.
+A value outside the range of its source is still given; ``Material.notes`` carries the caution. Nothing here is global
+but the shipped catalogue, which never changes: ``Catalogue.with_materials`` gives a larger one.
 """
 
 from __future__ import annotations

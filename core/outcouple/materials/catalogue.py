@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
+import json
 import re
-import tomllib
 from collections.abc import Callable, Iterator, Mapping
 from functools import cache
 from importlib.resources import files
@@ -22,9 +22,9 @@ FILES = ("solids", "liquids", "gases", "skin", "metals")
 class Catalogue:
     """Materials by name and alias; capitals, hyphens and spaces do not matter.
 
-    A catalogue does not change: ``with_materials`` gives a new one that looks in the old one for what it lacks. Rows become
-    materials when they are first asked for. Mixtures with water go by solute and mass share: "sugar 50 %", "50 % ethylene
-    glycol", "sea water 3.5 %" (see ``aqueous``).
+    A catalogue does not change: ``with_materials`` gives a new one that looks in the old one for what it lacks. Rows
+    become materials when they are first asked for. Solutions in water go by solute and mass share: "sugar 50 %",
+    "50 % ethylene glycol", "sea water 3.5 %" (see ``solution_names``).
     """
 
     def __init__(self, entries: Mapping[str, Entry], beneath: Catalogue | None = None) -> None:
@@ -52,15 +52,15 @@ class Catalogue:
 
     def unknown(self, name: object) -> tuple[str, str]:
         """What to say about a name that is not known: message and hint."""
-        from outcouple.materials.aqueous import share_problem
+        from outcouple.materials.solution_names import named_problem
 
-        problem = share_problem(name) if isinstance(name, str) else None
+        problem = named_problem(name) if isinstance(name, str) else None
         if problem:
             return problem
         return f"unknown material{nearest(str(name), self._all_names())}", "outcouple list materials shows them all"
 
     def names(self) -> tuple[str, ...]:
-        """Names of all materials, without aliases and mixtures, sorted."""
+        """Names of all materials, without aliases and solutions, sorted."""
         own = set(self._entries)
         return tuple(sorted(own | set(self._beneath.names()) if self._beneath else own, key=str.casefold))
 
@@ -87,7 +87,7 @@ class Catalogue:
     def _find(self, name: str) -> Material | None:
         proper = self._keys.get(_key(name))
         if proper is None:
-            return self._beneath._find(name) if self._beneath else self._mixture(name)
+            return self._beneath._find(name) if self._beneath else self._solution(name)
         if proper not in self._found:
             entry = self._entries[proper]
             self._found[proper] = entry if isinstance(entry, Material) else self._build(proper, entry)
@@ -117,10 +117,10 @@ class Catalogue:
 
         return find
 
-    def _mixture(self, name: str) -> Material | None:
-        from outcouple.materials.aqueous import mixture_named
+    def _solution(self, name: str) -> Material | None:
+        from outcouple.materials.solution_names import named_solution
 
-        return mixture_named(name, self.lookup)
+        return named_solution(name, self.lookup)
 
     def _all_names(self) -> list[str]:
         own = [text for name in self._entries for text in (name, *_aliases(self._entries[name]))]
@@ -141,5 +141,5 @@ def builtin_catalogue() -> Catalogue:
     folder = files("outcouple") / "data" / "materials"
     entries: dict[str, Entry] = {}
     for stem in FILES:
-        entries.update(tomllib.loads((folder / f"{stem}.toml").read_text(encoding="utf-8")))
+        entries.update(json.loads((folder / f"{stem}.json").read_text(encoding="utf-8")))
     return Catalogue(entries)

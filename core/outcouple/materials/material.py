@@ -119,7 +119,8 @@ class Material:
 
     def _range_note(self, values: Floats, span: Span, what: str, show: Callable[[float], str]) -> Note:
         outside = (values < span[0]) | (values > span[1])
-        text = f"The index of {self.name} is known for {what}s from {show(span[0])} to {show(span[1])}; it is extrapolated."
+        known = f"{what}s from {show(span[0])} to {show(span[1])}"
+        text = f"The index of {self.name} is known for {known}; it is extrapolated."
         return Note("material-range", text, trigger=_extremes(values, outside, show), where=outside)
 
     def _absorption_note(self, values: Floats, absorbs: Absorption) -> Note:

@@ -4,7 +4,8 @@ Keys, numbers in SI; exactly one of the ways marked * gives the index:
 
     * index                  a number; with ``based_on`` the value the other material's dispersion is scaled to
     * wavelengths, index     a table: wavelengths [m], rising, and an index for each
-    * sellmeier              [[B, C], ...]: n^2 = 1 + sum B w^2 / (w^2 - C), w in um, C in um^2; ``sellmeier_offset`` is added
+    * sellmeier              [[B, C], ...]: n^2 = 1 + sum B w^2 / (w^2 - C), w in um, C in um^2;
+                             ``sellmeier_offset`` is added
     * resonances             [[B, r], ...]: the same law with C = r^2, r in um
     * cauchy                 [A, B, C, ...]: n = A + B / w^2 + C / w^4 + ..., w in um
     * series, square_series  [[c, p], ...]: n or n^2 = sum c w^p, w in um
@@ -47,7 +48,7 @@ Floats = NDArray[np.float64]
 Row = Mapping[str, Any]
 
 SODIUM_D = 589.3e-9
-"""Mean of the two sodium lines [m], in air as handbooks mean it; in vacuum 0.16 nm more, which no value here can tell."""
+"""Mean of the two sodium lines [m], in air as handbooks have it; in vacuum 0.16 nm more, 6e-6 in index."""
 
 WAYS = ("index", "sellmeier", "resonances", "cauchy", "series", "square_series", "gas", "based_on", "law")
 KEYS = (

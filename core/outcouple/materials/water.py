@@ -35,7 +35,8 @@ def water_density(temperature: ArrayLike) -> Floats:
 
     Within 2e-3 kg/m3 of IAPWS-95 from 0 to 99 degC (6e-7 in index); colder, supercooled water is an extrapolation.
 
-    Reference: G. S. Kell, J. Chem. Eng. Data 20, 97 (1975), doi 10.1021/je60064a005, eq. 16, temperatures taken to IPTS-68.
+    Reference: G. S. Kell, J. Chem. Eng. Data 20, 97 (1975), doi 10.1021/je60064a005, eq. 16, temperatures taken to
+    IPTS-68.
 
     >>> float(water_density(293.15))
     998.206
