@@ -9,7 +9,7 @@ import numpy as np
 from outcouple.contact.cover import Cover, Film, Patch
 from outcouple.fields import Section, name, quantity
 from outcouple.geometry import Geometry
-from outcouple.light import Light, Relight, Spot
+from outcouple.light import Light, Relight, Spot, Strips
 
 
 class Plate(Section):
@@ -59,7 +59,7 @@ class ChordStub(Geometry):
             centre = start + share * (end - start)
             offset = np.linspace(-2e-3, 2e-3, 5)
             miss = centre[:, :, None] + offset - y_at[:, None, None]
-            return 2 * np.sqrt(np.maximum((diameter[:, None, None] / 2) ** 2 - miss**2, 0.0))
+            return Strips(2 * np.sqrt(np.maximum((diameter[:, None, None] / 2) ** 2 - miss**2, 0.0))[:, :, None, :])
 
         way = np.hypot(width[:, None], end - start)[:, :, None] / np.cos(elevation)
         hits = np.zeros((setting.samples, channels, rays, 2))
@@ -106,7 +106,7 @@ class CameraStub(Geometry):
             polarization=np.zeros((1, rays)),
             read="drawn",
             relight=(Relight(0, np.full((1, 1, rays), 0.05), np.full((1, 1), 1e-3), np.full((1, 1), 0.1)),),
-            spot=Spot(0, hop, lambda diameter, x, y: diameter[:, None, None] * np.ones((1, 1, 3))),
+            spot=Spot(0, hop, lambda diameter, x, y: Strips(diameter[:, None, None, None] * np.ones((1, 1, 1, 3)))),
             entry={"reflected at the edge": np.full(1, 0.2)},
         )
 

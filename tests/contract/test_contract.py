@@ -138,11 +138,16 @@ def test_a_flat_film_changes_nothing_beyond_the_critical_angle_and_drops_do(host
     assert drops < 0.7 * dry
 
 
-def test_milky_liquid_leaves_a_floor_that_clear_liquid_does_not(host):
-    states = [CLEAR, MILKY, {"name": "water", "expect": "present", "touching": "water"}]
+def test_milky_liquid_adds_light_in_proportion_to_what_it_sends_back(host):
+    def milky(albedo):
+        touching = {"patches": [{"backing": "water", "albedo": f"{albedo} %"}]}
+        return {"name": f"milky {albedo}", "expect": "present", "touching": touching}
+
+    states = [CLEAR, milky(0), milky(20), milky(40)]
     quiet = {"prism": {"crosstalk": "0 %"}, "emitter": {"half_angle": "3 deg"}}
-    _, milky, water = (row.result.share[0, 0] for row in tabulate(design(host, "prism-switch", states, **quiet)).rows)
-    assert milky > 5 * water
+    _, clear, pale, white = (row.result.share[0, 0] for row in tabulate(design(host, "prism-switch", states, **quiet)).rows)
+    assert clear < pale < white
+    assert white - clear == pytest.approx(2 * (pale - clear), rel=1e-12)
 
 
 def test_a_continuous_sensor_has_slope_and_resolution_and_no_level(host):
@@ -165,7 +170,8 @@ def test_a_batch_equals_single_designs(host, geometry):
 
 
 def test_a_state_may_change_parameters_and_the_object_may_be_sampled(host):
-    states = [CLEAR, TOUCH, {"name": "dead", "expect": "absent", "role": "fault", "set": {"emitter.power": "0 mW"}}]
+    skin = TOUCH | {"touching": {"patches": [{"backing": "hydraulic oil", "albedo": "60 %"}]}}
+    states = [CLEAR, skin, {"name": "dead", "expect": "absent", "role": "fault", "set": {"emitter.power": "0 mW"}}]
     one = design(host, "camera-stub", states)
     table = tabulate(one, {("states", "finger", "object", "diameter"): np.array([3e-3, 9e-3])})
     assert table.row("dead").reading.mean.max() == 0

@@ -72,7 +72,8 @@ def _elements(table: Table) -> int:
     """Array elements one sample of a design needs at its widest."""
     light = next(iter(table.lights.values()))
     channels = max(light.hits.shape[1], light.length.shape[1])
-    return int(table.nodes * light.rays * max(channels, len(light.faces)) + light.reach[0].size)
+    nodes = max(len(row.laid.weights) for row in table.rows)
+    return int(nodes * light.rays * max(channels, len(light.faces)) + light.reach[0].size)
 
 
 def _signals(table: Table) -> dict[str, Floats]:

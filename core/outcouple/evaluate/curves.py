@@ -11,7 +11,7 @@ from outcouple.contact.cover import immersed
 from outcouple.design import State
 from outcouple.evaluate.overlay import view_of
 from outcouple.evaluate.signals import LaidState, lay_state, trial_share
-from outcouple.evaluate.table import Table
+from outcouple.evaluate.table import Table, nodes_for
 from outcouple.geometry import ContinuousCurve, Curve, ResponseAxis
 from outcouple.readout.chain import Reading, read
 
@@ -62,7 +62,7 @@ def _along(table: Table, state: State, path: tuple[str, ...], grid: Floats) -> t
         free,
         view,
         samples=table.samples * len(grid),
-        nodes=table.nodes,
+        nodes=nodes_for(table.design, free, view),
         breaks_of=table.media_breaks,
         lights={},
     )

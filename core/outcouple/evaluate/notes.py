@@ -18,5 +18,5 @@ ESTIMATE = Note(
 
 
 def design_notes(design: Design, table: Table) -> tuple[Note, ...]:
-    """The estimate's own caution, the geometry's, and those of the design's purpose and conditions."""
-    return (ESTIMATE, *design.geometry.notes(table.setting))
+    """The estimate's own caution, and those of the design's purpose and conditions."""
+    return (ESTIMATE,)

@@ -18,7 +18,7 @@ from outcouple.notes import Note, merge_notes
 from outcouple.readout.chain import Reading, read
 from outcouple.touching.clear import Dry
 
-__all__ = ["StateRow", "Table", "tabulate"]
+__all__ = ["StateRow", "Table", "nodes_for", "tabulate"]
 
 Floats = NDArray[np.float64]
 
@@ -51,7 +51,6 @@ class Table:
     notes: tuple[Note, ...]
     lights: dict[object, Light]
     media_breaks: tuple[str, ...]
-    nodes: int
     overlaid: Samples
     setting: Setting
 
@@ -68,33 +67,30 @@ class Table:
     def binary(self) -> tuple[StateRow, ...]:
         """Rows of states that expect absent or present and are not faults."""
         return tuple(
-            row
-            for row in self.rows
-            if isinstance(row.laid.state.expect, str) and row.laid.state.role == "normal"
+            row for row in self.rows if isinstance(row.laid.state.expect, str) and row.laid.state.role == "normal"
         )
 
 
-def tabulate(
-    design: Design, samples: Samples | None = None, *, states: Sequence[State] | None = None
-) -> Table:
+def tabulate(design: Design, samples: Samples | None = None, *, states: Sequence[State] | None = None) -> Table:
     """Follow every state of a design; ``samples`` lays arrays (S,) over numeric inputs (checked by the caller)."""
     samples = samples or {}
     count = samples_count(samples)
     chosen = tuple(design.states if states is None else states)
     base = view_of(design, samples)
-    breaks, nodes = _media_of(design, chosen, base)
+    breaks = _media_of(design, chosen, base)
     lights: dict[object, Light] = {}
     views: dict[object, View] = {(): base}
-    setting = setting_of(design, base, samples=count, nodes=nodes, breaks_of=breaks)[0]
+    setting = setting_of(design, base, samples=count, nodes=SMOOTH_NODES, breaks_of=breaks)[0]
     lights[()] = design.geometry.light(setting)
-    laid = [_lay(design, state, samples, count, breaks, nodes, lights, views) for state in chosen]
-    untouched_laid = _untouched(design, samples, count, breaks, nodes, lights, views)
+    laid = [_lay(design, state, samples, count, breaks, lights, views) for state in chosen]
+    untouched_laid = _untouched(design, samples, count, breaks, lights, views)
     untouched = None if untouched_laid is None else _row(untouched_laid, None, design)
     rows = tuple(_row(one, untouched, design) for one in laid)
     scores = [row.score for row in rows if row.score is not None and row.laid.state.role == "normal"]
     decided = decide(scores, base.decision, _given_level(design, base, rows))
     notes = merge_notes(
         [
+            *design.geometry.notes(setting),
             *(note for row in rows for note in (*row.laid.notes, *row.reading.notes)),
             *(
                 note
@@ -104,20 +100,24 @@ def tabulate(
             ),
         ]
     )
-    return Table(
-        design, base, count, rows, untouched, decided, notes, lights, breaks, nodes, samples, setting
-    )
+    return Table(design, base, count, rows, untouched, decided, notes, lights, breaks, samples, setting)
 
 
-def _media_of(design: Design, states: Sequence[State], view: View) -> tuple[tuple[str, ...], int]:
-    """Materials whose critical angles matter, and how many wavelength nodes the faces ask for."""
+def _media_of(design: Design, states: Sequence[State], view: View) -> tuple[str, ...]:
+    """Materials whose critical angles matter to the quadrature of the light."""
     media: dict[str, None] = {"air": None}
-    films = bool(design.geometry.measurand)
     for state in states:
         for cover in state.covers(view).values():
             media.update(dict.fromkeys(cover.media()))
-            films = films or any(patch.films for patch in cover.patches)
-    return tuple(media), FRINGE_NODES if films else SMOOTH_NODES
+    return tuple(media)
+
+
+def nodes_for(design: Design, state: State, view: View) -> int:
+    """Wavelength nodes a state needs: more where a film may show fringes."""
+    films = bool(design.geometry.measurand) or any(
+        patch.films for cover in state.covers(view).values() for patch in cover.patches
+    )
+    return FRINGE_NODES if films else SMOOTH_NODES
 
 
 def _lay(
@@ -126,7 +126,6 @@ def _lay(
     samples: Samples,
     count: int,
     breaks: Sequence[str],
-    nodes: int,
     lights: dict[object, Light],
     views: dict[object, View],
 ) -> LaidState:
@@ -137,7 +136,7 @@ def _lay(
         state,
         views[state.changes_key],
         samples=count,
-        nodes=nodes,
+        nodes=nodes_for(design, state, views[state.changes_key]),
         breaks_of=breaks,
         lights=lights,
     )
@@ -148,7 +147,6 @@ def _untouched(
     samples: Samples,
     count: int,
     breaks: Sequence[str],
-    nodes: int,
     lights: dict[object, Light],
     views: dict[object, View],
 ) -> LaidState | None:
@@ -157,11 +155,13 @@ def _untouched(
         return None
     dry = Dry()
     state = State(UNTOUCHED, UNTOUCHED, "absent", dict.fromkeys(design.geometry.wetted, dry))
-    return _lay(design, state, samples, count, breaks, nodes, lights, views)
+    return _lay(design, state, samples, count, breaks, lights, views)
 
 
 def _row(laid: LaidState, untouched: StateRow | None, design: Design) -> StateRow:
     reading = read(design.geometry.readout, laid, laid.share)
+    score = _score(laid, reading, untouched, design)
+    changes = design.geometry.reading == "change" and score is not None
     result = StateResult(
         name=laid.state.name,
         expect=laid.state.expect,
@@ -172,8 +172,11 @@ def _row(laid: LaidState, untouched: StateRow | None, design: Design) -> StateRo
         noise=reading.noise,
         unit=reading.unit,
         covers=laid.ways[0].covers,
+        change=score.mean if score is not None and changes else None,
+        change_noise=score.noise if score is not None and changes else None,
+        place=None if laid.state.object is None else laid.state.place(laid.p, laid.setting.samples),
     )
-    return StateRow(laid, reading, result, _score(laid, reading, untouched, design))
+    return StateRow(laid, reading, result, score)
 
 
 def _score(laid: LaidState, reading: Reading, untouched: StateRow | None, design: Design) -> Score | None:

@@ -107,7 +107,10 @@ class PrismSwitch(Geometry):
 
     def measure(self, names: Sequence[str], results: Results) -> Mapping[str, MetricValue | Missing]:
         """The prism's own metrics among ``names``."""
-        return {name: _MEASURES[name](results) for name in names if name in _MEASURES}
+        found = {name: _MEASURES[name](results) for name in names if name in _MEASURES}
+        if "lowest_index" in names or "highest_index" in names:
+            found.update(zip(("lowest_index", "highest_index"), _window(results), strict=True))
+        return {name: found[name] for name in names if name in found}
 
     def views(self, setting: Setting) -> tuple[View, ...]:
         """Cross-section with rays of the lobe."""
@@ -196,13 +199,14 @@ def _dry_angle_margin(results: Results) -> MetricValue | Missing:
     return MetricValue(stack[pick, np.arange(stack.shape[1])], names[int(pick[0])], found)
 
 
-GRID = np.linspace(1.0, 2.2, 241)
+GRID = np.linspace(1.0, 2.2, 81)
 
 
-def _window(results: Results) -> tuple[Floats, Floats] | None:
-    """First and last index at which a clear liquid reads below the level, per sample (nan where none does)."""
+def _window(results: Results) -> tuple[MetricValue | Missing, MetricValue | Missing]:
+    """First and last index at which a clear liquid reads below the level, to about 0.002."""
     if results.decision is None or results.setting.samples != 1:
-        return None
+        open_window = Missing("needs a decision between dry and wet, one design at a time")
+        return open_window, open_window
     level = float(-results.decision.level[0, 0])
     covers = dict.fromkeys(("emitter", "detector"), Cover((Patch(1.0, "(trial)"),)))
     share = results.trial(covers, {"(trial)": GRID})[:, 0]
@@ -210,34 +214,21 @@ def _window(results: Results) -> tuple[Floats, Floats] | None:
     reading = share * float(dry.signal[0, 0] / dry.share[0, 0])
     below = np.flatnonzero(reading < level)
     if below.size == 0:
-        return np.full(1, np.nan), np.full(1, np.nan)
+        nothing = Missing("no clear liquid reads below the level")
+        return nothing, nothing
     first, last = int(below[0]), int(below[-1])
-    return _crossing(reading, level, first - 1, first), _crossing(reading, level, last, last + 1)
+    return (
+        MetricValue(_crossing(reading, level, first - 1, first)),
+        MetricValue(_crossing(reading, level, last, last + 1)),
+    )
 
 
 def _crossing(reading: Floats, level: float, left: int, right: int) -> Floats:
+    """Index between two grid points at which the reading passes the level; the grid's end where it does not."""
     if left < 0 or right >= GRID.size:
-        return np.array([GRID[max(left, 0) if left >= 0 else right]])
+        return GRID[[min(max(left, 0), GRID.size - 1)]]
     part = (reading[left] - level) / (reading[left] - reading[right])
     return np.array([GRID[left] + part * (GRID[right] - GRID[left])])
-
-
-def _lowest(results: Results) -> MetricValue | Missing:
-    window = _window(results)
-    return (
-        Missing("needs a decision between dry and wet, one design at a time")
-        if window is None
-        else MetricValue(window[0])
-    )
-
-
-def _highest(results: Results) -> MetricValue | Missing:
-    window = _window(results)
-    return (
-        Missing("needs a decision between dry and wet, one design at a time")
-        if window is None
-        else MetricValue(window[1])
-    )
 
 
 def _liquid(results: Results) -> str | None:
@@ -280,8 +271,6 @@ def _one_hit_share(results: Results) -> MetricValue:
 
 _MEASURES = {
     "dry_angle_margin": _dry_angle_margin,
-    "lowest_index": _lowest,
-    "highest_index": _highest,
     "film_effect": _film_effect,
     "droplet_effect": _droplet_effect,
     "one_hit_share": _one_hit_share,

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
 
 import numpy as np
 from numpy.typing import NDArray
@@ -66,7 +66,7 @@ def prism_light(setting: Setting) -> Light:
     )
     start = _start(directions, n_guide, bonded, p.emitter.polarization)
     traces = _traces(setting, start)
-    return _assemble(setting, start, traces, n_guide, bonded)
+    return _assemble(setting, start, traces, bonded)
 
 
 def _start(directions: Directions, n_guide: Floats, bonded: bool, polarization: str) -> _Start:
@@ -128,62 +128,85 @@ def _traces(setting: Setting, start: _Start) -> list[tuple[WayTrace, Floats, Flo
     return found
 
 
+@dataclass(frozen=True)
+class _Rays:
+    """The rays of one way, (S, K) and (S, K, H)."""
+
+    launch: Floats
+    reach: Floats
+    length: Floats
+    polarization: Floats
+    angle: Floats
+    hits: Floats
+    turn: Floats
+
+
+def _way_rays(
+    setting: Setting, start: _Start, columns: tuple[int, ...], found: tuple[WayTrace, Floats, Floats], bonded: bool
+) -> _Rays | None:
+    """The rays of a way, those left out that no sample launches; None where none is left."""
+    trace, follows, lands = found
+    launch = start.weight * np.minimum(follows, 1.0)
+    used = np.any(launch > 0, axis=0)
+    if not np.any(used):
+        return None
+    shape = (launch.shape[0], int(np.sum(used)), len(COLUMNS))
+    angle, hits, turn = np.zeros(shape), np.zeros(shape), np.zeros(shape)
+    for at, column in enumerate(columns):
+        angle[:, :, column] = np.arccos(trace.cosines[at][:, used, 0])
+        hits[:, :, column] = 1.0
+        turn[:, :, column] = np.broadcast_to(trace.turns[at][:, :, 0], launch.shape)[:, used]
+    landing = np.minimum(np.where(follows > 0, lands / np.where(follows > 0, follows, 1.0), 0.0), 1.0)
+    reach = landing[:, used] * _exit(setting, trace.exit[:, used, 0], bonded)
+    length = np.mean(trace.middle, axis=-1)[:, used]
+    return _Rays(launch[:, used], reach, length, start.polarization[:, used], angle, hits, turn)
+
+
 def _assemble(
-    setting: Setting,
-    start: _Start,
-    traces: list[tuple[WayTrace, Floats, Floats]],
-    n_guide: Floats,
-    bonded: bool,
+    setting: Setting, start: _Start, traces: list[tuple[WayTrace, Floats, Floats]], bonded: bool
 ) -> Light:
-    samples, rays = start.weight.shape
-    launch, reach, angle, hits, turn, length = [], [], [], [], [], []
-    for (_, columns), (trace, follows, lands) in zip(WAYS, traces, strict=True):
-        incidence, made, turned = (np.zeros((samples, rays, len(COLUMNS))) for _ in range(3))
-        for at, column in enumerate(columns):
-            incidence[:, :, column] = np.arccos(trace.cosines[at])[:, :, 0]
-            made[:, :, column] = 1.0
-            turned[:, :, column] = trace.turns[at][:, :, 0]
-        landing = np.where(follows > 0, lands / np.where(follows > 0, follows, 1.0), 0.0)
-        launch.append(start.weight * np.minimum(follows, 1.0))
-        reach.append(np.minimum(landing, 1.0) * _exit(setting, trace.exit[:, :, 0], n_guide, bonded))
-        angle.append(incidence)
-        hits.append(made)
-        turn.append(turned)
-        length.append(np.mean(trace.middle, axis=-1))
-    launch.append(np.maximum(start.weight - sum(launch), 0.0))
-    for store, last in ((reach, np.zeros((samples, rays))), (length, np.zeros((samples, rays)))):
-        store.append(last)
-    for store in (angle, hits, turn):
-        store.append(np.zeros((samples, rays, len(COLUMNS))))
-    total = np.concatenate(launch, axis=1)
-    landing_share = np.concatenate(reach, axis=1)
-    capture = np.sum(total * landing_share, axis=1)
+    ways = [
+        way
+        for (_, columns), found in zip(WAYS, traces, strict=True)
+        if (way := _way_rays(setting, start, columns, found, bonded)) is not None
+    ]
+    ways.append(_others(start, ways))
+    joined = _Rays(*(np.concatenate([getattr(way, field.name) for way in ways], axis=1) for field in fields(_Rays)))
+    capture = np.sum(joined.launch * joined.reach, axis=1)
     layout = setting.p.layout
     radius = setting.spread(layout.detector_radius)
-    height = apex_height(setting)
     return Light(
         guide=setting.p.prism.material,
         faces=COLUMNS,
-        launch=total,
-        reach=landing_share[:, None, :],
-        angle=np.concatenate(angle, axis=1),
-        hits=np.concatenate(hits, axis=1)[:, None, :, :],
-        turn=np.concatenate(turn, axis=1),
-        length=np.concatenate(length, axis=1)[:, None, :],
-        polarization=np.concatenate([start.polarization] * (len(WAYS) + 1), axis=1),
-        relight=_relights(setting, rays * (len(WAYS) + 1)),
+        launch=joined.launch,
+        reach=joined.reach[:, None, :],
+        angle=joined.angle,
+        hits=joined.hits[:, None, :, :],
+        turn=joined.turn,
+        length=joined.length[:, None, :],
+        polarization=joined.polarization,
+        relight=_relights(setting, joined.launch.shape[1]),
         stray=(setting.spread(setting.p.prism.crosstalk) * capture)[:, None],
         ambient=(np.pi**2 * radius**2 * np.sin(setting.spread(layout.detector_half_angle)) ** 2)[:, None],
         entry={
             "reflected at the base on the way in": np.sum(start.reflected, axis=1),
             "leaves the emitter away from the base": 1 - np.sum(start.weight + start.reflected, axis=1),
         },
-        acceptance=np.arctan(radius / height),
+        acceptance=np.arctan(radius / apex_height(setting)),
     )
 
 
-def _exit(setting: Setting, cosine: Floats, n_guide: Floats, bonded: bool) -> Floats:
+def _others(start: _Start, ways: list[_Rays]) -> _Rays:
+    """Everything that goes another way, as one ray that meets no face and reaches nothing."""
+    samples = start.weight.shape[0]
+    left = np.sum(start.weight, axis=1) - sum((np.sum(way.launch, axis=1) for way in ways), np.zeros(samples))
+    flat, deep = np.zeros((samples, 1)), np.zeros((samples, 1, len(COLUMNS)))
+    return _Rays(np.maximum(left, 0.0)[:, None], flat, flat, flat, deep, deep, deep)
+
+
+def _exit(setting: Setting, cosine: Floats, bonded: bool) -> Floats:
     """Transmission of the base on the way out, zero beyond the detector's half-angle."""
+    n_guide = setting.index(setting.p.prism.material)
     sine = np.sqrt(np.maximum(1 - cosine**2, 0.0))
     outside = sine if bonded else n_guide[:, None] * sine
     taken = outside <= np.sin(setting.spread(setting.p.layout.detector_half_angle))[:, None]
@@ -195,7 +218,7 @@ def _exit(setting: Setting, cosine: Floats, n_guide: Floats, bonded: bool) -> Fl
 
 def _relights(setting: Setting, rays: int) -> tuple[Relight, ...]:
     """A lit patch of each face seen by the detector: cos cos A / (pi r^2), straight through the base."""
-    p, n_guide = setting.p, setting.index(setting.p.prism.material)
+    p = setting.p
     alpha = setting.spread(p.prism.face_angle)
     area = np.pi * setting.spread(p.layout.detector_radius) ** 2
     found = []
@@ -207,7 +230,7 @@ def _relights(setting: Setting, rays: int) -> tuple[Relight, ...]:
         inward = np.maximum((-side * np.sin(alpha) * dx + np.cos(alpha) * z) / distance, 0.0)
         down = z / distance
         share = inward * down * area / (np.pi * distance**2)
-        exit_share = _exit(setting, down[:, None], n_guide, p.layout.coupling == "bonded")[:, 0]
+        exit_share = _exit(setting, down[:, None], p.layout.coupling == "bonded")[:, 0]
         found.append(
             Relight(
                 column=column,
