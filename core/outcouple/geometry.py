@@ -209,6 +209,9 @@ class StateResult:
     signal   mean reading, (S, C), in ``unit``
     noise    standard deviation of the reading, (S, C)
     covers   what lies on each face (of the first build-up where coarse patches make several)
+    change, change_noise  where readings are changes: relative change against the untouched sensor, present always positive,
+             and its standard deviation (infinite where a channel is blind), (S, C); else None
+    place    diameter, x and y of the object, each (S,), or None
     """
 
     name: str
@@ -220,6 +223,9 @@ class StateResult:
     noise: Floats
     unit: str
     covers: Mapping[str, Cover]
+    change: Floats | None = None
+    change_noise: Floats | None = None
+    place: Mapping[str, Floats] | None = None
 
 
 @dataclass(frozen=True)

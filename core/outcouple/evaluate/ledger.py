@@ -43,6 +43,9 @@ def ledger_of(laid: LaidState, channel: int = 0, sample: int = 0) -> Ledger:
     for label, share in light.entry.items():
         losses[label] = float(_at(share, sample))
     losses["stays at the emitter"] = 1.0 - float(np.sum(_at(light.launch, sample))) - sum(losses.values())
+    if light.parted:
+        reach = _reach(laid, channel, sample)
+        losses["takes other ways or passes the detector"] = float(np.sum(_at(light.launch, sample) * (1 - reach)))
     for way in laid.ways:
         part = float(_at(way.share, sample))
         for label, share in _way_losses(laid, way, channel, sample):
@@ -53,9 +56,7 @@ def ledger_of(laid: LaidState, channel: int = 0, sample: int = 0) -> Ledger:
     if stray:
         returned["reaches the detector beside the faces"] = stray
     received = float(np.sum(laid.weights * _channel(laid.share[_clip(sample, laid.share.shape[0])], channel)))
-    return Ledger(
-        {k: v for k, v in losses.items() if v != 0.0}, {k: v for k, v in returned.items() if v}, received
-    )
+    return Ledger({k: v for k, v in losses.items() if v != 0.0}, {k: v for k, v in returned.items() if v}, received)
 
 
 def _clip(at: int, size: int) -> int:
@@ -77,9 +78,16 @@ def _rays(array: Floats, sample: int, channel: int) -> Floats:
     return one[:, _clip(channel, one.shape[1]), :]
 
 
-def _total(laid: LaidState, per_ray: Floats, sample: int) -> float:
-    """Launch-weighted sum of an (L, K) array over rays and the emitter's line."""
+def _reach(laid: LaidState, channel: int, sample: int) -> Floats:
+    reach = _at(laid.light.reach, sample)
+    return np.asarray(reach[_clip(channel, reach.shape[0])])
+
+
+def _total(laid: LaidState, per_ray: Floats, channel: int, sample: int) -> float:
+    """Sum of an (L, K) array over rays, weighted by launch, and the emitter's line; the channel's own share where ways part."""
     launch = _at(laid.light.launch, sample)
+    if laid.light.parted:
+        launch = launch * _reach(laid, channel, sample)
     spectral = np.sum(np.broadcast_to(per_ray, (len(laid.weights), launch.size)) * launch, axis=-1)
     return float(np.sum(laid.weights * spectral))
 
@@ -90,13 +98,13 @@ def _way_losses(laid: LaidState, way: Way, channel: int, sample: int) -> Iterato
     through = len(light.faces) - 1 if light.read == "through" else -1
     for column, face in enumerate(light.faces):
         drawn, entered, turned = (
-            _total(laid, _rays(store[column], sample, channel), sample)
+            _total(laid, _rays(store[column], sample, channel), channel, sample)
             for store in (survival.drawn, survival.entered, survival.turned)
         )
         if column == through:
             yield (
                 "reflected before the last face",
-                _total(laid, _rays(survival.after, sample, channel), sample),
+                _total(laid, _rays(survival.after, sample, channel), channel, sample),
             )
             entered_rays = _rays(survival.entered[column], sample, channel)
             yield from _past(laid, entered_rays, channel, sample)
@@ -111,7 +119,7 @@ def _way_losses(laid: LaidState, way: Way, channel: int, sample: int) -> Iterato
                 - entered
                 - turned
                 - (
-                    _total(laid, _rays(survival.entered[column], sample, channel), sample)
+                    _total(laid, _rays(survival.entered[column], sample, channel), channel, sample)
                     if column == through
                     else 0.0
                 ),
@@ -129,12 +137,12 @@ def _past(laid: LaidState, rays: Floats, channel: int, sample: int) -> Iterator[
     light = laid.light
     absorption = 4 * np.pi * laid.media.index(light.guide).imag / laid.media.wavelengths
     transmission = _rays(along(light.length, absorption), sample, channel)
-    yield "absorbed in the guide", _total(laid, rays * (1 - transmission), sample)
+    yield "absorbed in the guide", _total(laid, rays * (1 - transmission), channel, sample)
     if light.read == "drawn":
-        yield "stays in the guide", _total(laid, rays * transmission, sample)
-        return
-    reach = _at(light.reach, sample)[_clip(channel, light.reach.shape[1])]
-    yield "passes the detector", _total(laid, rays * transmission * (1 - reach), sample)
+        yield "stays in the guide", _total(laid, rays * transmission, channel, sample)
+    elif not light.parted:
+        reach = _reach(laid, channel, sample)
+        yield "passes the detector", _total(laid, rays * transmission * (1 - reach), channel, sample)
 
 
 def _way_returns(laid: LaidState, way: Way, channel: int, sample: int) -> Iterator[tuple[str, float]]:

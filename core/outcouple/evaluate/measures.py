@@ -30,9 +30,12 @@ def _worst(values: Mapping[str, Floats], samples: int, *, highest: bool) -> Metr
 
 
 def _faintest(row: StateRow, values: Floats) -> Floats:
-    return np.asarray(
-        np.min(np.broadcast_to(values, np.broadcast_shapes(values.shape, row.reading.mean.shape)), axis=1)
-    )
+    """Least over the channels that see the untouched sensor at all."""
+    spread = np.broadcast_to(values, np.broadcast_shapes(values.shape, row.reading.mean.shape))
+    if row.score is not None:
+        blind = np.isinf(np.broadcast_to(row.score.noise, spread.shape))
+        spread = np.where(blind & ~np.all(blind, axis=1, keepdims=True), np.inf, spread)
+    return np.asarray(np.min(spread, axis=1))
 
 
 def _loudest(row: StateRow, values: Floats) -> Floats:
@@ -65,18 +68,12 @@ def _optical_share(table: Table) -> Found:
 def _worst_ratio(table: Table) -> Found:
     if table.design.geometry.reading != "level":
         return Missing("this sensor reads changes, not levels; see its touch metrics")
-    absent = {
-        row.laid.state.name: row.reading.mean for row in table.binary if row.laid.state.expect == "absent"
-    }
-    present = {
-        row.laid.state.name: row.reading.mean for row in table.binary if row.laid.state.expect == "present"
-    }
+    absent = {row.laid.state.name: row.reading.mean for row in table.binary if row.laid.state.expect == "absent"}
+    present = {row.laid.state.name: row.reading.mean for row in table.binary if row.laid.state.expect == "present"}
     if not absent or not present:
         return NOT_BINARY
     bright, dark = (absent, present) if table.design.geometry.present_reads == "low" else (present, absent)
-    least = _worst(
-        {name: np.min(mean, axis=1) for name, mean in bright.items()}, table.samples, highest=False
-    )
+    least = _worst({name: np.min(mean, axis=1) for name, mean in bright.items()}, table.samples, highest=False)
     most = _worst({name: np.max(mean, axis=1) for name, mean in dark.items()}, table.samples, highest=True)
     with np.errstate(divide="ignore", invalid="ignore"):
         ratio = np.where(most.values > 0, least.values / most.values, np.inf)
@@ -88,9 +85,7 @@ def _margin_sigma(table: Table) -> Found:
 
 
 def _margin_span(table: Table) -> Found:
-    return (
-        NOT_BINARY if table.decided is None else _worst(table.decided.of_span, table.samples, highest=False)
-    )
+    return NOT_BINARY if table.decided is None else _worst(table.decided.of_span, table.samples, highest=False)
 
 
 def _false_alarms(table: Table) -> Found:
@@ -127,7 +122,7 @@ def _ambient_ratio(table: Table) -> Found:
 
 def _noise_equivalent_power(table: Table) -> Found:
     noise = _per_state(
-        table, lambda row: _loudest(row, row.reading.noise / row.reading.per_watt), highest=False
+        table, lambda row: _loudest(row, row.reading.noise / row.reading.per_watt.reshape(-1, 1)), highest=False
     )
     return MetricValue(noise.values, noise.at)
 
@@ -163,9 +158,7 @@ def _slope(table: Table, curve: ContinuousCurve) -> Found:
 
 def _best_at(curve: ContinuousCurve) -> NDArray[np.int64]:
     with np.errstate(divide="ignore"):
-        return np.asarray(
-            np.argmin(np.where(curve.slope != 0, curve.noise / np.abs(curve.slope), np.inf), axis=1)
-        )
+        return np.asarray(np.argmin(np.where(curve.slope != 0, curve.noise / np.abs(curve.slope), np.inf), axis=1))
 
 
 def _best_bias(table: Table, curve: ContinuousCurve) -> Found:

@@ -15,7 +15,7 @@ from outcouple.design import Design, State
 from outcouple.evaluate.overlay import View
 from outcouple.evaluate.transport import Survival, received, survive
 from outcouple.geometry import Setting
-from outcouple.light import Light
+from outcouple.light import Light, Strips
 from outcouple.notes import Note, merge_notes
 from outcouple.optics import spectrum_nodes
 
@@ -120,17 +120,15 @@ def lay_state(
     strips = None
     if light.spot is not None and state.object is not None:
         place = state.place(p, samples)
-        strips = light.spot.lengths(place["diameter"], place["x"], place["y"])
+        if light.spot.placed is not None:
+            light = light.spot.placed(place["diameter"], place["x"], place["y"])
+        strips = None if light.spot is None else light.spot.strips(place["diameter"], place["x"], place["y"])
     ways = tuple(_way(share, build, light, media, strips) for share, build in _builds(covers, samples))
     notes = [note for cover in covers.values() for note in answer_notes(cover)]
-    return LaidState(
-        state, setting, media, light, weights, _sum(ways), ways, merge_notes([*notes, *media.notes])
-    )
+    return LaidState(state, setting, media, light, weights, _sum(ways), ways, merge_notes([*notes, *media.notes]))
 
 
-def trial_share(
-    design: Design, base: LaidState, covers: Mapping[str, Cover], extra: Mapping[str, Floats]
-) -> Floats:
+def trial_share(design: Design, base: LaidState, covers: Mapping[str, Cover], extra: Mapping[str, Floats]) -> Floats:
     """Optical share per wavelength node, (S, L, C), of the light of ``base`` answered by covers no state has.
 
     extra  index (S,) by the name of a trial medium; S may exceed that of ``base`` where the latter is 1
@@ -138,9 +136,7 @@ def trial_share(
     samples = max([base.setting.samples, *(len(index) for index in extra.values())])
     nodes = base.media.wavelengths.shape[1]
     _, media, _ = setting_of(design, base.setting.p, samples=samples, nodes=nodes, breaks_of=(), extra=extra)
-    return _sum(
-        tuple(_way(share, build, base.light, media, None) for share, build in _builds(covers, samples))
-    )
+    return _sum(tuple(_way(share, build, base.light, media, None) for share, build in _builds(covers, samples)))
 
 
 def _sum(ways: Sequence[Way]) -> Floats:
@@ -169,7 +165,7 @@ def _way(
     covers: Mapping[str, Cover],
     light: Light,
     media: Media,
-    strips: Floats | None,
+    strips: Strips | None,
 ) -> Way:
     acceptance = np.asarray(light.acceptance, dtype=float)
     known: dict[tuple[int, bytes], Answer] = {}

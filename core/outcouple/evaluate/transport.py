@@ -13,7 +13,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.contact.response import Answer
-from outcouple.light import Light
+from outcouple.light import Light, Strips
 
 __all__ = ["Survival", "mean_power", "received", "survive"]
 
@@ -56,18 +56,18 @@ def mean_power(reflectance: Floats, hits: Floats) -> Floats:
     return np.asarray(base * (1 - part + part * reflectance))
 
 
-def survive(light: Light, answers: Sequence[Answer | None], strips: Floats | None = None) -> Survival:
+def survive(light: Light, answers: Sequence[Answer | None], strips: Strips | None = None) -> Survival:
     """Carry every ray through the hit columns.
 
     answers  one per hit column, arrays (S, L, K); None for a column that reflects all
-    strips   metres of contact of the object on the spot's face, per channel and strip across its beam, (S, C, B)
+    strips   contact of the object on the spot's face
     """
     if light.turns:
         return _coherent(light, answers)
     return _powers(light, answers, strips)
 
 
-def _powers(light: Light, answers: Sequence[Answer | None], strips: Floats | None) -> Survival:
+def _powers(light: Light, answers: Sequence[Answer | None], strips: Strips | None) -> Survival:
     q = light.polarization[:, None, None, :]
     s, p = (1 + q) / 2, (1 - q) / 2
     drawn, entered, back, turned = [], [], [], []
@@ -89,24 +89,46 @@ def _powers(light: Light, answers: Sequence[Answer | None], strips: Floats | Non
     return Survival(s + p, tuple(drawn), tuple(entered), tuple(back), tuple(turned))
 
 
-def _on_spot(light: Light, column: int, strips: Floats | None) -> bool:
+def _on_spot(light: Light, column: int, strips: Strips | None) -> bool:
     return strips is not None and light.spot is not None and light.spot.column == column
 
 
-def _is_hit(light: Light, column: int, strips: Floats | None) -> bool:
-    return bool(np.any(strips if _on_spot(light, column, strips) else light.hits[..., column]))
+def _is_hit(light: Light, column: int, strips: Strips | None) -> bool:
+    if strips is not None and _on_spot(light, column, strips):
+        return bool(np.any(strips.lengths))
+    return bool(np.any(light.hits[..., column]))
 
 
-def _kept(light: Light, reflectance: Floats, column: int, strips: Floats | None) -> Floats:
+def _kept(light: Light, reflectance: Floats, column: int, strips: Strips | None) -> Floats:
     """Survival of one column's hits, (S, L, C|1, K)."""
-    if strips is None or light.spot is None or light.spot.column != column:
+    if strips is None or light.spot is None or not _on_spot(light, column, strips):
+        if np.all(reflectance >= 1.0):
+            return np.ones((1, 1, 1, 1))
         return mean_power(reflectance[:, :, None, :], light.hits[:, None, :, :, column])
-    touched = np.any(strips > 0, axis=(0, 2))
-    hits = strips[:, touched, :, None] / light.spot.hop[:, None, None, :]
-    part = np.mean(mean_power(reflectance[:, :, None, None, :], hits[:, None]), axis=3)
-    kept = np.ones((*part.shape[:2], strips.shape[1], part.shape[-1]))
-    kept[:, :, touched, :] = part
-    return kept
+    return 1.0 - _taken(strips, light.spot.hop, reflectance)
+
+
+def _taken(strips: Strips, hop: Floats, reflectance: Floats) -> Floats:
+    """Share of every ray that the object takes, (S, L, C, K); only channels that it touches are worked on."""
+    samples, channels, bundles, across = strips.lengths.shape
+    touched = np.any(strips.lengths > 0, axis=(0, 2, 3))
+    lengths = strips.lengths[:, touched]
+    weight = np.full((1, 1, 1, 1), 1 / across) if strips.weight is None else strips.weight
+    if weight.shape[1] > 1:
+        weight = weight[:, touched]
+    rays = reflectance.shape[-1]
+    split = (bundles, rays // bundles)
+    # (S, L, C, W, B, K/W)
+    bounce = np.broadcast_to(reflectance, (*reflectance.shape[:2], rays)).reshape(*reflectance.shape[:2], 1, *split)
+    pitch = np.broadcast_to(hop, (hop.shape[0], rays)).reshape(hop.shape[0], 1, *split)
+    lost: Floats = np.zeros((1, 1, 1, 1, 1))
+    for strip in range(across):
+        hits = lengths[..., strip][..., None] / pitch
+        share = np.broadcast_to(weight, (*weight.shape[:3], across))[..., strip]
+        lost = lost + share[:, None, ..., None] * (1 - mean_power(bounce, hits[:, None]))
+    taken = np.zeros((max(samples, lost.shape[0]), lost.shape[1], channels, rays))
+    taken[:, :, touched] = lost.reshape(*lost.shape[:3], rays)
+    return taken
 
 
 def _share(part: Floats, reflectance: Floats) -> Floats:
@@ -179,9 +201,7 @@ def received(
     else:
         signal = np.zeros((1, 1, 1))
     for column in {relight.column for relight in light.relight}:
-        signal = signal + relit(
-            light, survival, column, absorption=absorption, diffuser=diffuser, guide=guide
-        )
+        signal = signal + relit(light, survival, column, absorption=absorption, diffuser=diffuser, guide=guide)
     return np.asarray(signal + light.stray[:, None, :])
 
 

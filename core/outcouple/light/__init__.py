@@ -8,7 +8,7 @@ nothing else.
 from __future__ import annotations
 
 from outcouple.light.emission import cone_share, lobe_density
-from outcouple.light.layout import Light, LightError, Relight, Spot
+from outcouple.light.layout import Light, LightError, Relight, Spot, Strips
 from outcouple.light.rays import Vector, turn_between
 
 __all__ = [
@@ -16,6 +16,7 @@ __all__ = [
     "LightError",
     "Relight",
     "Spot",
+    "Strips",
     "Vector",
     "cone_share",
     "lobe_density",

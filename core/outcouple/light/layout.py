@@ -12,7 +12,7 @@ from typing import Literal
 import numpy as np
 from numpy.typing import NDArray
 
-__all__ = ["Floats", "Light", "LightError", "Read", "Relight", "Spot"]
+__all__ = ["Floats", "Light", "LightError", "Read", "Relight", "Spot", "Strips"]
 
 Floats = NDArray[np.float64]
 Read = Literal["kept", "through", "drawn"]
@@ -42,18 +42,34 @@ class Relight:
 
 
 @dataclass(frozen=True)
+class Strips:
+    """Contact of an object on the ways of every channel, in strips across the beam.
+
+    lengths  metres of contact in each strip, zero where it passes beside the object, (S, C, W, B): W bundles of
+             rays that go different ways (the rays stand bundle by bundle, K / W each), B strips
+    weight   share of the bundle's light in each strip, broadcast against ``lengths``; what is missing to 1 passes
+             beside the object. None: B equal strips
+    """
+
+    lengths: Floats
+    weight: Floats | None = None
+
+
+@dataclass(frozen=True)
 class Spot:
     """An object that lies somewhere on one face.
 
     column   index of the hit column that the object covers; its ``hits`` are ignored while an object lies there
     hop      metres between two hits of ray k on that face, measured along the way, shape (S, K)
-    lengths  (diameter (S,), x (S,), y (S,)) -> metres of contact on channel c's way, shape (S, C, B): B strips across the
-             beam, each of equal weight, zero where a strip passes beside the object
+    strips   (diameter (S,), x (S,), y (S,)) -> contact on the ways of every channel
+    placed   (diameter, x, y) -> the light for an object lying there, for read-outs that look at the place itself (a
+             camera); None where the light does not depend on it
     """
 
     column: int
     hop: Floats
-    lengths: Callable[[Floats, Floats, Floats], Floats]
+    strips: Callable[[Floats, Floats, Floats], Strips]
+    placed: Callable[[Floats, Floats, Floats], Light] | None = None
 
 
 @dataclass(frozen=True)
@@ -79,6 +95,7 @@ class Light:
     ambient       etendue with which channel c sees the outside [m2 sr], (S, C)
     entry         named shares of the emitter's power lost before launch, each (S,); they and launch sum to 1
     acceptance    half-angle about the specular way, inside the guide, that still reaches the read-out [rad], (S,)
+    parted        True: the channels' ways part before the faces (chords), so a channel's ledger follows its own share
     height        height of the hit above the lowest point of the wetted part [m], (S, K, H), for partly covered tips; or None
     """
 
@@ -98,6 +115,7 @@ class Light:
     ambient: Floats = field(default_factory=lambda: np.zeros((1, 1)))
     entry: Mapping[str, Floats] = field(default_factory=dict)
     acceptance: Floats = field(default_factory=lambda: np.full(1, np.pi / 2))
+    parted: bool = False
     height: Floats | None = None
 
     @property
@@ -138,14 +156,10 @@ class Light:
                 raise LightError(f"{name} holds a value that is not finite")
         total = np.sum(np.broadcast_to(self.launch, (self.launch.shape[0], rays)), axis=-1)
         if np.any(self.launch < 0) or np.any(total > 1 + 1e-9):
-            raise LightError(
-                f"launch must be at least 0 and sum to 1 at most; the sum is {float(np.max(total))}"
-            )
+            raise LightError(f"launch must be at least 0 and sum to 1 at most; the sum is {float(np.max(total))}")
         if np.any(self.reach < -1e-12) or np.any(self.reach > 1 + 1e-9):
             raise LightError("reach must lie between 0 and 1")
         if np.any((self.angle < 0) | (self.angle > np.pi / 2)):
             raise LightError("angle must lie between 0 and 90 degrees")
         if self.turns and np.any(~np.isin(self.hits, (0.0, 1.0))):
-            raise LightError(
-                "powers (hits other than 0 and 1) are legal only where no plane of incidence turns"
-            )
+            raise LightError("powers (hits other than 0 and 1) are legal only where no plane of incidence turns")
