@@ -161,8 +161,8 @@ def test_whole_mains_periods_null_the_ripple() -> None:
     assert nulled < drifting < plain / 100
 
 
-def test_design_figures_of_the_naive_model_table() -> None:
-    """Figures computed for this design by an independent hand calculation, two digits printed."""
+def test_figures_worked_by_hand() -> None:
+    """Sunlight on a fast stage and amplifier noise through a large diode, worked by hand to two digits."""
     # 190 uA of sunlight in 100 kHz: 2.5 nA rms of shot noise
     quick = Transimpedance(100e3, 0.05e-12, 1e9, 10e-12)
     budget = receiver_budget(quick, Modulation("steady", 1 / 200e3), signal=0.0, ambient=190e-6)

@@ -33,7 +33,7 @@ Floats = NDArray[np.float64]
 
 LOCAL: Final = "local codes and a licensed professional"
 EYE_DISTANCE: Final = 0.2
-"""Distance [m] at which lamps are assessed (200 mm; job practice after the IEC 62471 family)."""
+"""Distance [m] at which lamps are assessed (200 mm, usual after the IEC 62471 family; from memory)."""
 EYE_TIME: Final = 1000.0
 """Exposure [s] beyond which the limit for the cornea no longer falls."""
 
