@@ -138,7 +138,7 @@ def _expect(given: Any, path: Path, parts: Parts) -> str | float:
     if measurand and isinstance(given, str):
         leaf = parts.leaves[measurand]
         try:
-            return parse_leaf(leaf, given)
+            return float(parse_leaf(leaf, given))
         except UserMistake as error:
             parts.wrong(
                 path,

@@ -1,103 +1,82 @@
-"""A design file's text with the place of everything in it."""
+"""A design file's text: its data, and the place of every key and value in it."""
 
 from __future__ import annotations
 
 import re
 import tomllib
+from bisect import bisect_right
 from functools import cached_property
-from typing import Any
+from typing import Any, Literal, NoReturn
 
+from outcouple.design.toml_places import Places, places_of
 from outcouple.errors import UserMistake
 
 __all__ = ["TomlSource"]
 
 Path = tuple[str, ...]
 
-HEADER = re.compile(r"\s*(\[\[?)\s*([^\]]+?)\s*\]\]?\s*(#.*)?$")
-KEY = re.compile(
-    r"\s*((?:\"[^\"]*\"|'[^']*'|[A-Za-z0-9_-]+)(?:\s*\.\s*(?:\"[^\"]*\"|'[^']*'|[A-Za-z0-9_-]+))*)\s*=\s*"
+UNQUOTED = re.compile(
+    r"(\s*[^=#\s][^=#]*?\s*=\s*)([+-]?[0-9][0-9.,]*(?:[eE][+-]?[0-9]+)?\s*[^\s\d,\]}#\"'][^,\]}#\"']*)"
 )
-PART = re.compile(r"\"([^\"]*)\"|'([^']*)'|([A-Za-z0-9_-]+)")
-INLINE = re.compile(
-    r"(?<=[{,])\s*((?:\"[^\"]*\"|'[^']*'|[A-Za-z0-9_-]+)(?:\s*\.\s*(?:\"[^\"]*\"|[A-Za-z0-9_-]+))*)\s*=\s*"
-)
+"""A number with a unit that lacks its quotes: ``base = 6 mm``."""
 
 
 class TomlSource:
-    """Parsed data and places. Raises UserMistake ``file:line:column: ...`` for text that is not TOML.
+    """The parsed data of a design file, and where everything stands.
 
-    Places are found line by line: tables, arrays of tables, dotted and quoted keys, and keys of inline tables written on
-    one line. A path that is not in the file takes the place of the nearest table around it.
+    text, name  content and name of the file
+    data        what tomllib reads
+
+    Raises UserMistake ``name:line:column not TOML: ...`` for text that is not TOML. Places are looked for only when one
+    is asked for, so a good file costs no more than parsing.
     """
 
     def __init__(self, text: str, name: str) -> None:
-        self.text = text
+        self.text = text.removeprefix("\ufeff")
         self.name = name
         try:
-            self.data: dict[str, Any] = tomllib.loads(text)
-        except tomllib.TOMLDecodeError as error:
-            raise UserMistake(self._syntax(str(error))) from None
+            self.data: dict[str, Any] = tomllib.loads(self.text)
+        except RecursionError:
+            raise UserMistake(f"{name}: not TOML that can be read: nested too deeply") from None
+        except ValueError as error:  # TOMLDecodeError, and Python's own limit on digits
+            self._refuse(str(error))
 
-    def _syntax(self, message: str) -> str:
-        found = re.search(r"\(at line (\d+), column (\d+)\)", message)
-        plain = re.sub(r"\s*\(at .*\)", "", message)
-        if found:
-            return f"{self.name}:{found[1]}:{found[2]}: not TOML: {plain[:1].lower()}{plain[1:]}"
-        lines = self.text.count("\n") + 1
-        return f"{self.name}:{lines}:1: not TOML: {plain[:1].lower()}{plain[1:]}"
+    def position(self, path: Path, *, part: Literal["key", "value"] = "key") -> tuple[int, int]:
+        """Line and column (from 1) of a key or of its value, or of the nearest table around a path that is not there.
 
-    def position(self, path: Path) -> tuple[int, int]:
-        """Line and column (from 1) of a key, or of the nearest table around it."""
+        Rows of arrays count from 0: ("states", "1", "name").
+        """
         for size in range(len(path), 0, -1):
-            if path[:size] in self._places:
-                return self._places[path[:size]]
+            place = self._places.get(".".join(path[:size]))
+            if place is not None:
+                return self._line_column(place[part == "value" and size == len(path)])
         return (1, 1)
 
+    def line_text(self, line: int) -> str:
+        """The text of a line (from 1), empty past the end."""
+        lines = self.text.splitlines()
+        return lines[line - 1] if 0 < line <= len(lines) else ""
+
     @cached_property
-    def _places(self) -> dict[Path, tuple[int, int]]:
-        places: dict[Path, tuple[int, int]] = {}
-        counts: dict[Path, int] = {}
-        table: Path = ()
-        for number, line in enumerate(self.text.split("\n"), 1):
-            header = HEADER.match(line)
-            if header:
-                table = self._table(_parts(header[2]), header[1] == "[[", counts)
-                places.setdefault(table, (number, line.index("[") + 1))
-                continue
-            key = KEY.match(line)
-            if key:
-                path = (*table, *_parts(key[1]))
-                self._add(places, path, table, number, key.start(1) + 1)
-                self._inline(places, path, line, key.end(), number)
-        return places
+    def _places(self) -> Places:
+        return places_of(self.text)
 
-    @staticmethod
-    def _table(parts: Path, array: bool, counts: dict[Path, int]) -> Path:
-        """The path of a header with the index of the running element of every array of tables on it."""
-        path: Path = ()
-        for at, part in enumerate(parts):
-            path = (*path, part)
-            last = at == len(parts) - 1
-            if last and array:
-                counts[path] = counts.get(path, -1) + 1
-            if path in counts:
-                path = (*path, str(counts[path]))
-        return path
+    @cached_property
+    def _starts(self) -> list[int]:
+        return [0, *(match.end() for match in re.finditer("\n", self.text))]
 
-    @staticmethod
-    def _add(places: dict[Path, tuple[int, int]], path: Path, table: Path, line: int, column: int) -> None:
-        for size in range(len(table) + 1, len(path) + 1):
-            places.setdefault(path[:size], (line, column))
+    def _line_column(self, offset: int) -> tuple[int, int]:
+        line = bisect_right(self._starts, offset)
+        return (line, offset - self._starts[line - 1] + 1)
 
-    @staticmethod
-    def _inline(places: dict[Path, tuple[int, int]], path: Path, line: str, start: int, number: int) -> None:
-        if start < len(line) and line[start] in "{[":
-            for found in INLINE.finditer(line, start):
-                places.setdefault((*path, *_parts(found[1])), (number, found.start(1) + 1))
+    def _refuse(self, message: str) -> NoReturn:
+        found = re.search(r"\(at line (\d+), column (\d+)\)", message)
+        line, column = (int(found[1]), int(found[2])) if found else self._line_column(len(self.text))
+        said = re.sub(r"\s*\(at .*\)$", "", message)
+        said = said[:1].lower() + said[1:]
+        raise UserMistake(f"{self.name}:{line}:{column} not TOML: {said}{self._repair(line)}")
 
-
-def _parts(dotted: str) -> Path:
-    return tuple(
-        next(group for group in match if group is not None)
-        for match in (m.groups() for m in PART.finditer(dotted))
-    )
+    def _repair(self, line: int) -> str:
+        """The usual slip, a quantity without its quotes, with its repaired text."""
+        found = UNQUOTED.match(self.line_text(line))
+        return f'; a quantity is written in quotes: {found[1].strip()} "{found[2].strip()}"' if found else ""

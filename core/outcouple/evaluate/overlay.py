@@ -62,7 +62,7 @@ def check_samples(design: Design, samples: Samples) -> None:
             raise UserMistake(f"states.{family}: no such state; there are: {', '.join(families)}")
         for path, values in leaves.items():
             for model in _models(families[family], path):
-                check_overlay(model, {path[-1:]: values})
+                check_overlay(model, {path[1:] if path[0] == "object" else path: values})
 
 
 def _split(samples: Samples) -> tuple[dict[Path, Floats], dict[str, dict[Path, Floats]]]:
@@ -80,7 +80,8 @@ def _models(state: State, path: Path) -> list[Any]:
     """The models of a state that a path below it speaks of: ("object", leaf), or (leaf,) of every face's preset."""
     if path[0] == "object":
         return [state.object] if state.object is not None else []
-    return list(state.touching.values())
+    presets = list(state.touching.values())
+    return [preset for preset in presets if path[0] in type(preset).model_fields] or presets
 
 
 def view_of(design: Design, samples: Samples, changes: Mapping[Path, float] | None = None) -> View:

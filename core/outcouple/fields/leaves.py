@@ -1,77 +1,140 @@
-"""The leaves of a model: what forms, sweeps, tolerances and documentation need to know about each input."""
+"""What is known about one input: its unit, bounds, meaning, reference."""
 
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator
 from dataclasses import dataclass
-from functools import lru_cache
-from typing import Any
+from typing import Any, Literal
 
-from pydantic import BaseModel
-from pydantic_core import PydanticUndefined
+import numpy as np
 
-from outcouple.fields.models import bounds_text, checked, meta_of
-from outcouple.quantities import format_quantity, parse, si_unit
+from outcouple.quantities import format_number, format_quantity, kind_of, parse, si_unit
 
-__all__ = ["Leaf", "leaf_text", "leaves", "parse_leaf"]
+__all__ = ["Bound", "Leaf", "bound"]
 
 Path = tuple[str, ...]
 
 
 @dataclass(frozen=True)
-class Leaf:
-    """One input.
+class Bound:
+    """A limit of a number: in SI, as a person writes it, and whether the limit itself is left out."""
 
-    path          of section and key
+    value: float
+    text: str
+    open: bool
+
+
+def bound(closed: str | float | None, opened: str | float | None, kind: str) -> Bound | None:
+    """The bound given by one of a closed limit (ge, le) and an open one (gt, lt)."""
+    given = closed if closed is not None else opened
+    if given is None:
+        return None
+    text = given if isinstance(given, str) else format_number(float(given), 12)
+    return Bound(parse(given, kind), text, closed is None)
+
+
+@dataclass(frozen=True)
+class Leaf:
+    """One input of a section.
+
+    path          sections and key, ("prism", "base")
     what          "quantity", "count", "choice", "flag", or what a name stands for ("material")
-    kind, unit, si_unit  of a quantity
-    default_text  as a person writes it; "" where required or unset
-    low, high     bounds in SI (open bounds included), None where there is none
-    bounds        the bounds as a text
-    structural    True for everything that does not vary over samples
+    kind, unit    kind of quantity, and the unit it is shown and asked for in
+    default       as the model holds it (SI); None where required, or where optional and unset
+    default_text  as a person writes it; "" where there is none
+    lowest, highest  limits, None where there is none
+    describe      what it is, for people
+    reference     where the default comes from; empty for a plain choice
+    section       first line about the section it stands in
+    group         heading within the section, for forms
+    deciding      shown open in forms; counted when it is left at an unverified default
+    optional      may be left unset
+    slider        scale a slider should have
     """
 
-    path: Path
     what: str
-    kind: str
-    unit: str
-    default_text: str
-    low: float | None
-    high: float | None
-    bounds: str
     describe: str
-    reference: str
-    section: str
-    deciding: bool
-    optional: bool
-    choices: tuple[str, ...]
-    slider: str
-    meta: dict[str, Any]
-
-    @property
-    def structural(self) -> bool:
-        """True where the leaf cannot vary over samples."""
-        return self.what != "quantity"
-
-    @property
-    def si_unit(self) -> str:
-        """SI unit text."""
-        return si_unit(self.kind) if self.kind else ""
+    kind: str = ""
+    unit: str = ""
+    default: Any = None
+    default_text: str = ""
+    required: bool = False
+    lowest: Bound | None = None
+    highest: Bound | None = None
+    choices: tuple[str, ...] = ()
+    reference: str = ""
+    group: str = ""
+    deciding: bool = False
+    optional: bool = False
+    slider: Literal["linear", "log"] = "linear"
+    path: Path = ()
+    section: str = ""
 
     @property
     def name(self) -> str:
         """Dotted path."""
         return ".".join(self.path)
 
+    @property
+    def structural(self) -> bool:
+        """True where the leaf cannot vary over samples: everything but quantities."""
+        return self.what != "quantity"
+
+    @property
+    def si_unit(self) -> str:
+        """SI unit, empty for plain numbers and words."""
+        return si_unit(self.kind) if self.kind else ""
+
+    @property
+    def low(self) -> float | None:
+        """Lower limit in SI."""
+        return None if self.lowest is None else self.lowest.value
+
+    @property
+    def high(self) -> float | None:
+        """Upper limit in SI."""
+        return None if self.highest is None else self.highest.value
+
+    @property
+    def bounds(self) -> str:
+        """The limits as a person reads them: "1 to 60 mm", "above 0, at most 90 deg"; empty where there are none."""
+        low, high = self.lowest, self.highest
+        if low is not None and high is not None:
+            left = _shared(low, high, self.kind)
+            if low.open or high.open:
+                return f"{_at_least(low)} {left}, {_at_most(high)} {high.text}"
+            return f"{left} to {high.text}"
+        if low is not None:
+            return f"{_at_least(low)} {low.text}"
+        return f"{_at_most(high)} {high.text}" if high is not None else ""
+
+    @property
+    def allowed(self) -> str:
+        """Limits and meaning, for the end of a message."""
+        return ", ".join(part for part in (self.bounds, self.describe) if part)
+
+    def below(self, values: Any) -> Any:
+        """True where a value (or each of an array) lies under the lower limit."""
+        if self.lowest is None:
+            return np.zeros(np.shape(values), dtype=bool)
+        return values <= self.lowest.value if self.lowest.open else values < self.lowest.value
+
+    def above(self, values: Any) -> Any:
+        """True where a value (or each of an array) lies over the upper limit."""
+        if self.highest is None:
+            return np.zeros(np.shape(values), dtype=bool)
+        return values >= self.highest.value if self.highest.open else values > self.highest.value
+
     def clip(self, value: float) -> float:
-        """The value moved into the bounds; strictly inside an open one."""
-        low, high = self.low, self.high
-        if low is not None and value <= low:
-            value = low if self.meta.get("gt") is None else low + 1e-9 * (abs(low) or abs(high or 1.0))
-        if high is not None and value >= high:
-            value = high if self.meta.get("lt") is None else high - 1e-9 * (abs(high) or 1.0)
+        """The value moved into the limits; a billionth inside an open one."""
+        if self.lowest is not None and self.below(value):
+            value = self.lowest.value + self._inwards(self.lowest)
+        if self.highest is not None and self.above(value):
+            value = self.highest.value - self._inwards(self.highest)
         return value
+
+    def _inwards(self, limit: Bound) -> float:
+        return 1e-9 * (abs(limit.value) or abs(self.high or self.low or 1.0)) if limit.open else 0.0
 
     def small_step(self) -> float:
         """A step for an input that stands at zero: a hundredth of its range, one unit where it has none."""
@@ -80,63 +143,36 @@ class Leaf:
         return 1.0
 
     def text(self, value: Any) -> str:
-        """A value of this leaf as a person writes it in a design file."""
+        """A value of this leaf as a person writes it in a design file, without quotes; empty for None."""
         if value is None:
             return ""
-        if self.what in ("quantity", "count"):
-            return format_quantity(float(value), self.kind, unit=self.unit or None, digits=10)
-        return "true" if value is True else "false" if value is False else str(value)
+        if self.what == "quantity":
+            return format_quantity(float(value), self.kind, unit=self.unit, digits=10)
+        if self.what == "flag":
+            return "true" if value else "false"
+        return str(value)
 
 
-@lru_cache(maxsize=256)
-def leaves(model: type[BaseModel]) -> tuple[Leaf, ...]:
-    """All leaves of a model and of the sections in it, in the order of the file."""
-    return tuple(_walk(model, ()))
+def _at_least(limit: Bound) -> str:
+    return "above" if limit.open else "at least"
 
 
-def _walk(model: type[BaseModel], before: Path) -> Iterator[Leaf]:
-    for key, info in model.model_fields.items():
-        meta = meta_of(model, key)
-        if meta is not None:
-            yield _leaf((*before, key), meta, info.default, (model.__doc__ or "").split("\n")[0])
-        elif isinstance(info.annotation, type) and issubclass(info.annotation, BaseModel):
-            yield from _walk(info.annotation, (*before, key))
+def _at_most(limit: Bound) -> str:
+    return "below" if limit.open else "at most"
 
 
-def _leaf(path: Path, meta: dict[str, Any], default: Any, section: str) -> Leaf:
-    kind = meta["kind"]
-    low = meta.get("ge") if meta.get("ge") is not None else meta.get("gt")
-    high = meta.get("le") if meta.get("le") is not None else meta.get("lt")
-    unset = default is PydanticUndefined or default is None or default is ...
-    return Leaf(
-        path=path,
-        what=meta["what"],
-        kind=kind,
-        unit=meta.get("unit", ""),
-        default_text="" if unset else str(default).lower() if isinstance(default, bool) else str(default),
-        low=None if low is None else parse(low, kind),
-        high=None if high is None else parse(high, kind),
-        bounds=bounds_text(meta) if kind else "",
-        describe=meta["describe"],
-        reference=meta["reference"],
-        section=section,
-        deciding=meta["deciding"],
-        optional=meta.get("optional", False),
-        choices=tuple(meta.get("choices", ())),
-        slider=meta.get("slider", "linear"),
-        meta=meta,
-    )
+def _shared(low: Bound, high: Bound, kind: str) -> str:
+    """The lower limit without its unit where the upper one says it again."""
+    number, _, unit = low.text.partition(" ")
+    zero = low.value == 0.0 and not kind.startswith("temperature")
+    return number if unit and (zero or unit == high.text.partition(" ")[2]) else low.text
 
 
-def parse_leaf(leaf: Leaf, given: Any) -> Any:
-    """A leaf's value (SI) from what a person gives; UserMistake where it cannot be taken."""
-    return checked(given, leaf.meta)
-
-
-def leaf_text(model: BaseModel, path: Path) -> str:
-    """The value a model holds at a path, as a person writes it."""
-    leaf = next(one for one in leaves(type(model)) if one.path == path)
-    value: Any = model
-    for key in path:
-        value = getattr(value, key)
-    return leaf.text(value)
+def unit_for(kind: str, *texts: Any) -> str:
+    """The unit the first of the texts is written in, else the kind's own."""
+    units = kind_of(kind).units
+    for text in texts:
+        unit = text.strip().partition(" ")[2].strip() if isinstance(text, str) else ""
+        if unit and unit in units:
+            return unit
+    return kind_of(kind).unit

@@ -1,47 +1,101 @@
-"""Sections of a design file as pydantic models whose leaves know their units, bounds and meaning."""
+"""Sections as pydantic models, and the declarations their fields are written with."""
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import dataclass, replace
+from functools import lru_cache
 from typing import Any, Literal
 
 from pydantic import BaseModel, ConfigDict, Field, ValidationInfo, field_validator
-from pydantic_core import PydanticCustomError
+from pydantic.fields import FieldInfo
+from pydantic_core import PydanticCustomError, PydanticUndefined
 
 from outcouple.errors import UserMistake, nearest
-from outcouple.quantities import format_quantity, kind_of, parse
+from outcouple.fields.leaves import Leaf, bound, unit_for
+from outcouple.fields.reading import parse_leaf
+from outcouple.fields.schema import leaf_schema
+from outcouple.quantities import format_number
 
-__all__ = ["META", "Section", "checked", "choice", "count", "flag", "name", "quantity"]
+__all__ = [
+    "SI",
+    "Section",
+    "choice",
+    "count",
+    "declared",
+    "flag",
+    "leaf_at",
+    "leaf_text",
+    "leaves",
+    "name",
+    "quantity",
+]
 
-META = "outcouple"
-"""Key under which a field keeps what is known about it."""
+Path = tuple[str, ...]
+
+SI: Mapping[str, Any] = {"si": True}
+"""Validation context under which plain numbers are taken for SI values."""
 
 
 class Section(BaseModel):
-    """A table of a design file. Frozen; unknown keys are refused; quantities are SI floats inside, texts outside."""
+    """A table of a design file. Frozen; unknown keys are refused; quantities are SI floats inside, texts outside.
+
+    >>> class Plate(Section):
+    ...     thickness: float = quantity("6 mm", "length", ge="0.5 mm", le="50 mm", describe="thickness of the plate")
+    >>> Plate().thickness, Plate(thickness="8 mm").thickness
+    (0.006, 0.008)
+    """
 
     model_config = ConfigDict(frozen=True, extra="forbid", validate_default=True)
 
     @field_validator("*", mode="before")
     @classmethod
-    def _take(cls, value: Any, info: ValidationInfo) -> Any:
-        meta = meta_of(cls, info.field_name or "")
-        if meta is None:
-            return value
+    def _read(cls, given: Any, info: ValidationInfo) -> Any:
+        leaf = declared(cls.model_fields[info.field_name or ""])
+        if leaf is None:
+            return given
         try:
-            return checked(value, meta)
+            return parse_leaf(leaf, given, si=info.context is SI)
         except UserMistake as mistake:
             raise PydanticCustomError("outcouple", "{text}", {"text": str(mistake)}) from None
 
 
-def meta_of(model: type[BaseModel], field: str) -> dict[str, Any] | None:
-    """What a field knows about itself, or None for plain fields."""
-    extra = model.model_fields[field].json_schema_extra
-    return extra.get(META) if isinstance(extra, dict) else None  # type: ignore[return-value]
+@dataclass(frozen=True)
+class _Carrier:
+    """Carries a leaf on its pydantic field, and writes its JSON Schema when pydantic asks for it."""
+
+    leaf: Leaf
+
+    def __call__(self, schema: dict[str, Any]) -> None:
+        schema.clear()
+        schema.update(leaf_schema(self.leaf))
 
 
-def _field(default: Any, meta: dict[str, Any]) -> Any:
-    return Field(default, description=meta["describe"], json_schema_extra={META: meta})
+def declared(info: FieldInfo) -> Leaf | None:
+    """The leaf a field was declared as (its path is still empty), or None for sections and plain fields."""
+    carrier = info.json_schema_extra
+    return carrier.leaf if isinstance(carrier, _Carrier) else None
+
+
+def _field(default: Any, leaf: Leaf) -> Any:
+    """The pydantic field of a leaf. A default that its own leaf refuses is a mistake of whoever wrote the section."""
+    if default is ...:
+        leaf = replace(leaf, required=True)
+    else:
+        try:
+            value = parse_leaf(leaf, default)
+        except UserMistake as mistake:
+            raise ValueError(f"default {default!r}: {mistake}") from None
+        leaf = replace(leaf, default=value, default_text=_default_text(default))
+    return Field(default, description=leaf.describe, json_schema_extra=_Carrier(leaf))
+
+
+def _default_text(default: Any) -> str:
+    if default is None:
+        return ""
+    if isinstance(default, bool):
+        return "true" if default else "false"
+    return default if isinstance(default, str) else format_number(float(default), 12)
 
 
 def quantity(
@@ -55,150 +109,141 @@ def quantity(
     lt: str | float | None = None,
     unit: str = "",
     reference: str = "",
+    group: str = "",
     deciding: bool = False,
     optional: bool = False,
     slider: Literal["linear", "log"] = "linear",
 ) -> Any:
-    """A number with a unit.
+    """A number with a unit: annotate the field ``float`` (``float | None`` where optional).
 
-    default    text as a person writes it, ``...`` for required, None where ``optional``
-    kind       kind of quantity
-    ge, gt, le, lt  bounds as texts
-    unit       preferred display unit
-    reference  where the default comes from; empty for a plain choice
-    deciding   shown open in forms; counted when it is left at an unverified default
+    default         text as a person writes it (a number where the kind has no unit), ``...`` where required, None where
+                    optional and unset
+    kind            name of a kind (see ``outcouple.quantities.kind_of``)
+    ge, gt, le, lt  limits, texts like the default
+    unit            unit it is shown and asked for in; that of the default, else of a limit
+
+    ``describe`` and what follows are explained at :class:`outcouple.fields.Leaf`.
     """
-    kind_of(kind)
-    return _field(
-        default,
-        {
-            "what": "quantity",
-            "kind": kind,
-            "describe": describe,
-            "ge": ge,
-            "gt": gt,
-            "le": le,
-            "lt": lt,
-            "unit": unit or _unit_of(default, kind),
-            "reference": reference,
-            "deciding": deciding,
-            "optional": optional,
-            "slider": slider,
-        },
+    leaf = Leaf(
+        what="quantity",
+        describe=describe,
+        kind=kind,
+        unit=unit or unit_for(kind, default, ge, gt, le, lt),
+        lowest=bound(ge, gt, kind),
+        highest=bound(le, lt, kind),
+        reference=reference,
+        group=group,
+        deciding=deciding,
+        optional=optional,
+        slider=slider,
     )
-
-
-def _unit_of(default: Any, kind: str) -> str:
-    """The unit a default is written in."""
-    if isinstance(default, str):
-        unit = default.strip().partition(" ")[2]
-        if unit in kind_of(kind).units:
-            return unit
-    return kind_of(kind).shown[0] if len(kind_of(kind).shown) == 1 else ""
+    return _field(default, leaf)
 
 
 def count(
-    default: Any, *, describe: str, ge: int = 0, le: int = 10**9, reference: str = "", deciding: bool = False
+    default: Any,
+    *,
+    describe: str,
+    ge: int = 0,
+    le: int | None = None,
+    reference: str = "",
+    group: str = "",
+    deciding: bool = False,
+    optional: bool = False,
 ) -> Any:
-    """A whole number; structural, so it does not vary over samples."""
-    return _field(
-        default,
-        {
-            "what": "count",
-            "kind": "count",
-            "describe": describe,
-            "ge": ge,
-            "le": le,
-            "reference": reference,
-            "deciding": deciding,
-        },
+    """A whole number; it does not vary over samples. Annotate ``int`` (``int | None`` where optional)."""
+    leaf = Leaf(
+        what="count",
+        describe=describe,
+        kind="count",
+        lowest=bound(ge, None, "count"),
+        highest=bound(le, None, "count"),
+        reference=reference,
+        group=group,
+        deciding=deciding,
+        optional=optional,
     )
+    return _field(default, leaf)
 
 
 def choice(
-    default: Any, allowed: Sequence[str], *, describe: str, reference: str = "", deciding: bool = False
+    default: Any,
+    allowed: Sequence[str],
+    *,
+    describe: str,
+    reference: str = "",
+    group: str = "",
+    deciding: bool = False,
 ) -> Any:
-    """One of a few words."""
-    return _field(
-        default,
-        {
-            "what": "choice",
-            "kind": "",
-            "describe": describe,
-            "choices": list(allowed),
-            "reference": reference,
-            "deciding": deciding,
-        },
-    )
+    """One of a few words. Annotate ``str``."""
+    leaf = Leaf("choice", describe, choices=tuple(allowed), reference=reference, group=group, deciding=deciding)
+    return _field(default, leaf)
 
 
-def flag(default: bool, *, describe: str, deciding: bool = False) -> Any:
-    """true or false."""
-    return _field(
-        default, {"what": "flag", "kind": "", "describe": describe, "reference": "", "deciding": deciding}
-    )
+def flag(default: Any, *, describe: str, reference: str = "", group: str = "", deciding: bool = False) -> Any:
+    """true or false. Annotate ``bool``."""
+    return _field(default, Leaf("flag", describe, reference=reference, group=group, deciding=deciding))
 
 
 def name(
-    default: Any, *, describe: str, what: str = "material", reference: str = "", deciding: bool = False
+    default: Any,
+    *,
+    describe: str,
+    what: str = "material",
+    reference: str = "",
+    group: str = "",
+    deciding: bool = False,
+    optional: bool = False,
 ) -> Any:
-    """The name of something listed elsewhere, a material for one; checked against that list when the design is loaded."""
-    return _field(
-        default,
-        {"what": what, "kind": "", "describe": describe, "reference": reference, "deciding": deciding},
-    )
+    """The name of something listed elsewhere, checked against that list when the design is loaded. Annotate ``str``."""
+    leaf = Leaf(what, describe, reference=reference, group=group, deciding=deciding, optional=optional)
+    return _field(default, leaf)
 
 
-def checked(value: Any, meta: dict[str, Any]) -> Any:
-    """A value as the model keeps it (SI), or UserMistake."""
-    what = meta["what"]
-    if what == "quantity":
-        if value is None and meta["optional"]:
-            return None
-        number = parse(value, meta["kind"])
-        _bounds(number, meta)
-        return number
-    if what == "count":
-        whole = int(parse(value, "count"))
-        _bounds(whole, meta)
-        return whole
-    if what == "choice":
-        if value not in meta["choices"]:
-            allowed = ", ".join(f'"{word}"' for word in meta["choices"])
-            hint = nearest(value, meta["choices"]) if isinstance(value, str) else ""
-            raise UserMistake(f"not one of the words allowed{hint}; one of: {allowed}")
-        return value
-    if what == "flag":
-        if not isinstance(value, bool):
-            raise UserMistake("must be true or false")
-        return value
-    if not isinstance(value, str):
-        raise UserMistake(f"must be the name of a {what}, in quotes")
-    return value
+@lru_cache(maxsize=256)
+def leaves(model: type[BaseModel]) -> tuple[Leaf, ...]:
+    """All leaves of a section and of the sections in it, in the order of the file, each with its path."""
+    return tuple(_walk(model, None, ()))
 
 
-def _bounds(number: float, meta: dict[str, Any]) -> None:
-    kind = meta["kind"]
-    low, high = meta.get("ge", None), meta.get("le", None)
-    above, below = meta.get("gt", None), meta.get("lt", None)
-    fine = (
-        (low is None or number >= parse(low, kind))
-        and (high is None or number <= parse(high, kind))
-        and (above is None or number > parse(above, kind))
-        and (below is None or number < parse(below, kind))
-    )
-    if not fine:
-        raise UserMistake(
-            f"{format_quantity(number, kind, unit=meta.get('unit') or None)} is outside {bounds_text(meta)}"
-        )
+def _walk(model: type[BaseModel], standing: BaseModel | None, before: Path) -> Iterator[Leaf]:
+    """``standing`` is the section as a default of the one around it, which may differ from its own defaults."""
+    about = (model.__doc__ or "").split("\n")[0]
+    for key, info in model.model_fields.items():
+        leaf = declared(info)
+        path = (*before, key)
+        if leaf is not None:
+            leaf = replace(leaf, path=path, section=about)
+            value = leaf.default if standing is None else getattr(standing, key)
+            same = value == leaf.default
+            yield leaf if same else replace(leaf, default=value, default_text=leaf.text(value), required=False)
+        elif isinstance(info.annotation, type) and issubclass(info.annotation, BaseModel):
+            inner = info.default if standing is None else getattr(standing, key)
+            yield from _walk(info.annotation, None if inner is PydanticUndefined else inner, path)
 
 
-def bounds_text(meta: dict[str, Any]) -> str:
-    """The bounds as a person reads them: "1 mm to 60 mm"."""
-    low, high = meta.get("ge"), meta.get("le")
-    above, below = meta.get("gt"), meta.get("lt")
-    left = f"{low}" if low is not None else f"above {above}" if above is not None else ""
-    right = f"{high}" if high is not None else f"below {below}" if below is not None else ""
-    if left and right:
-        return f"{left} to {right}"
-    return f"at least {left}" if left else f"at most {right}" if right else "any number"
+def leaf_at(model: BaseModel, path: Path) -> tuple[Leaf, Any]:
+    """The leaf at a path of a section and the value it holds; parts of a path may count rows ("patches", "0", "share").
+
+    Raises UserMistake for a path that is not an input, with the nearest one.
+    """
+    here: Any = model
+    for at, key in enumerate(path):
+        rows = isinstance(here, tuple) and key.isdigit() and int(key) < len(here)
+        if rows:
+            here = here[int(key)]
+            continue
+        info = type(here).model_fields.get(key) if isinstance(here, BaseModel) else None
+        if info is None:
+            break
+        leaf, here = declared(info), getattr(here, key)
+        if leaf is not None and at == len(path) - 1:
+            return replace(leaf, path=path), here
+    given = ".".join(path)
+    raise UserMistake(f"{given}: no such input{nearest(given, [leaf.name for leaf in leaves(type(model))])}")
+
+
+def leaf_text(model: BaseModel, path: Path) -> str:
+    """The value a section holds at a path, as a person writes it; a default as its section writes it."""
+    leaf, value = leaf_at(model, path)
+    return leaf.default_text if value == leaf.default else leaf.text(value)

@@ -1,4 +1,4 @@
-"""A checked scalar model with arrays of samples laid over some of its numbers."""
+"""A checked section with arrays of samples laid over some of its numbers."""
 
 from __future__ import annotations
 
@@ -10,8 +10,8 @@ from numpy.typing import NDArray
 from pydantic import BaseModel
 
 from outcouple.errors import UserMistake
-from outcouple.fields.leaves import Leaf, leaves
-from outcouple.quantities import format_quantity
+from outcouple.fields.leaves import Leaf
+from outcouple.fields.models import leaf_at
 
 __all__ = ["Overlay", "check_overlay", "overlaid"]
 
@@ -20,58 +20,90 @@ Path = tuple[str, ...]
 
 
 class Overlay:
-    """Read-only attributes of a model: every number with a unit is an array, (1,) or (S,), all else as the model holds it."""
+    """Read-only attributes of a section: numbers with a unit as arrays, (1,) or (S,), all else as the section holds it.
 
-    __slots__ = ("__dict__",)
+    Attributes are made when they are first asked for. An unset optional number stays None, unless samples lie over it.
+    """
 
-    def __init__(self, values: dict[str, Any]) -> None:
-        self.__dict__.update(values)
+    __slots__ = ("__dict__", "_model", "_samples")
+
+    def __init__(self, model: BaseModel, samples: Mapping[Path, Floats]) -> None:
+        object.__setattr__(self, "_model", model)
+        object.__setattr__(self, "_samples", samples)
+
+    def __getattr__(self, key: str) -> Any:
+        if key.startswith("_") or key not in type(self._model).model_fields:
+            raise AttributeError(f"{type(self._model).__name__} has no {key!r}")
+        value = _laid(getattr(self._model, key), key, self._samples)
+        self.__dict__[key] = value
+        return value
 
     def __setattr__(self, key: str, value: Any) -> None:
         raise AttributeError(f"{key}: a design's parameters are read-only")
 
+    def __reduce__(self) -> tuple[Any, ...]:
+        return Overlay, (self._model, self._samples)
+
+    def __dir__(self) -> list[str]:
+        return list(type(self._model).model_fields)
+
+
+def _laid(value: Any, key: str, samples: Mapping[Path, Floats]) -> Any:
+    if isinstance(value, BaseModel | tuple):
+        inner = {path[1:]: array for path, array in samples.items() if path[0] == key and len(path) > 1}
+        if isinstance(value, BaseModel):
+            return Overlay(value, inner)
+        return tuple(_laid(one, str(at), inner) for at, one in enumerate(value))
+    sample = samples.get((key,))
+    if sample is None and not isinstance(value, float):
+        return value
+    array = np.array([value]) if sample is None else np.asarray(sample, dtype=float).view()
+    array.flags.writeable = False
+    return array
+
 
 def overlaid(model: BaseModel, samples: Mapping[Path, Floats]) -> Overlay:
-    """Lay arrays over the numbers of a model; paths the model does not have are passed over."""
-    numbers = {leaf.path for leaf in leaves(type(model)) if not leaf.structural}
-    return _overlay(model, samples, numbers, ())
+    """Lay arrays (S,) over the numbers of a section; paths it does not have are passed over.
 
-
-def _overlay(model: BaseModel, samples: Mapping[Path, Floats], numbers: set[Path], before: Path) -> Overlay:
-    values: dict[str, Any] = {}
-    for key in type(model).model_fields:
-        value = getattr(model, key)
-        path = (*before, key)
-        if path in numbers:
-            laid = samples.get(path)
-            if laid is not None:
-                value = np.asarray(laid, dtype=float)
-            elif value is not None:
-                value = np.array([value], dtype=float)
-        elif isinstance(value, BaseModel):
-            value = _overlay(value, samples, numbers, path)
-        values[key] = value
-    return Overlay(values)
+    >>> from outcouple.fields import Section, quantity
+    >>> class Plate(Section):
+    ...     thickness: float = quantity("6 mm", "length", describe="thickness")
+    >>> overlaid(Plate(), {("thickness",): [0.004, 0.005]}).thickness
+    array([0.004, 0.005])
+    """
+    return Overlay(model, samples)
 
 
 def check_overlay(model: BaseModel, samples: Mapping[Path, Floats]) -> None:
-    """Raise UserMistake where a path is not a number of the model or a sample leaves its bounds."""
-    known = {leaf.path: leaf for leaf in leaves(type(model))}
+    """Raise UserMistake, a line per path, where it is no number of the section or a sample leaves its bounds."""
+    lines: list[str] = []
     for path, values in samples.items():
-        leaf = known.get(path)
-        if leaf is None or leaf.structural:
-            raise UserMistake(f"{'.'.join(path)} is not a number of this design and cannot vary")
-        _check_bounds(leaf, np.asarray(values, dtype=float))
+        try:
+            leaf, _ = leaf_at(model, path)
+            message = _finding(leaf, np.asarray(values, dtype=float))
+        except UserMistake as mistake:
+            lines.extend(mistake.lines)
+        else:
+            lines.extend(message)
+    if lines:
+        raise UserMistake(*lines)
 
 
-def _check_bounds(leaf: Leaf, values: Floats) -> None:
-    if not np.all(np.isfinite(values)):
-        raise UserMistake(f"{leaf.name}: a sample is not a finite number")
-    low = -np.inf if leaf.low is None else leaf.low
-    high = np.inf if leaf.high is None else leaf.high
-    above = values > low if leaf.meta.get("gt") is not None else values >= low
-    below = values < high if leaf.meta.get("lt") is not None else values <= high
-    if not np.all(above & below):
-        first = float(values[~(above & below)][0])
-        shown = format_quantity(first, leaf.kind, unit=leaf.unit or None)
-        raise UserMistake(f"{leaf.name}: {shown} is outside {leaf.bounds}")
+def _finding(leaf: Leaf, values: Floats) -> list[str]:
+    if leaf.structural:
+        return [f"{leaf.name}: a {leaf.what} cannot vary over samples"]
+    if values.ndim != 1:
+        return [f"{leaf.name}: samples are a row of numbers, not an array of {values.ndim} dimensions"]
+    small, large = leaf.below(values), leaf.above(values)
+    for wrong, words in (
+        (~np.isfinite(values), "is not a finite number"),
+        (small, "is too small"),
+        (large, "is too large"),
+    ):
+        if np.any(wrong):
+            at = int(np.argmax(wrong))
+            shown = leaf.text(values[at]) if np.isfinite(values[at]) else str(values[at])
+            more = int(np.sum(wrong)) - 1
+            others = f", and {more} more" if more else ""
+            return [f"{leaf.name}: sample {at + 1} of {len(values)}, {shown}, {words}{others} ({leaf.allowed})"]
+    return []
