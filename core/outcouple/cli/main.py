@@ -16,6 +16,7 @@ COMMANDS: dict[str, str] = {
     "new": "Write a commented starter design.",
     "validate": "Check a design file and name every mistake.",
     "budget": "Where the light goes, signal, noise, decision, verdict.",
+    "draw": "Pictures: cross-section with rays, ledger, readings, response.",
     "list": "Materials, geometries, contacts, metrics, plugins.",
 }
 """Command -> its line in the help; module ``outcouple.cli.<command>`` holds ``command``."""

@@ -60,7 +60,5 @@ def _jobs(host: Host) -> dict[str, Geometry]:
 def _for_job(job: str, jobs: dict[str, Geometry], host: Host) -> Geometry:
     if job not in jobs:
         names = [*jobs, *host.geometries]
-        raise UserMistake(
-            f"unknown job or geometry {job!r}{nearest(job, names)}; there are: {', '.join(names)}"
-        )
+        raise UserMistake(f"unknown job or geometry {job!r}{nearest(job, names)}; there are: {', '.join(names)}")
     return jobs[job]

@@ -12,9 +12,7 @@ __all__ = ["command"]
 @click.command("validate")
 @design_argument
 @json_option
-@click.option(
-    "--schema", is_flag=True, help="Print the JSON Schema of the design's geometry, for editors, instead."
-)
+@click.option("--schema", is_flag=True, help="Print the JSON Schema of the design's geometry, for editors, instead.")
 def command(file: str, as_json: bool, schema: bool) -> int:
     """Check a design file and name every mistake with its line and column."""
     from outcouple.design import load_design

@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 from outcouple.contact.cover import immersed
 from outcouple.design import State
 from outcouple.evaluate.overlay import view_of
-from outcouple.evaluate.signals import LaidState, lay_state, trial_share
+from outcouple.evaluate.signals import LaidState, lay_state, setting_of, trial_share
 from outcouple.evaluate.table import Table, nodes_for
 from outcouple.geometry import ContinuousCurve, Curve, ResponseAxis
 from outcouple.readout.chain import Reading, read
@@ -21,6 +21,8 @@ Floats = NDArray[np.float64]
 
 POINTS = 121
 TRIAL = "(trial liquid)"
+DEAR = 1_000_000
+"""Array elements beyond which the light of a response curve is not laid out anew for every index."""
 
 
 def continuous_curve(table: Table) -> ContinuousCurve | None:
@@ -75,9 +77,10 @@ def response_curve(table: Table, axis: ResponseAxis) -> Curve:
     grid = np.asarray(spaced(axis.start, axis.stop, POINTS))
     base = table.rows[0].laid
     if axis.medium == "immersed":
+        laid = _relaid(table, grid)
         covers = {face: immersed(TRIAL) for face in set(base.light.faces)}
-        share = trial_share(table.design, base, covers, {TRIAL: grid})
-        reading = read(table.design.geometry.readout, base, share)
+        share = trial_share(table.design, laid, covers, {TRIAL: grid})
+        reading = read(table.design.geometry.readout, laid, share)
         marks = _index_marks(table)
     else:
         _, reading = _along(table, base.state, axis.path, grid)
@@ -96,6 +99,17 @@ def response_curve(table: Table, axis: ResponseAxis) -> Curve:
         unit=reading.unit,
         marks=marks,
     )
+
+
+def _relaid(table: Table, grid: Floats) -> LaidState:
+    """The first state with its light laid out anew per index, edges of the quadrature at each; as it is where that is dear."""
+    base = table.rows[0].laid
+    if base.light.reach.size * grid.size > DEAR:
+        return base
+    nodes = len(base.weights)
+    breaks = (*table.media_breaks, TRIAL)
+    setting = setting_of(table.design, base.p, samples=grid.size, nodes=nodes, breaks_of=breaks, extra={TRIAL: grid})[0]
+    return replace(base, light=table.design.geometry.light(setting))
 
 
 def _index_marks(table: Table) -> tuple[tuple[str, float, float], ...]:

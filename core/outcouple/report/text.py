@@ -213,9 +213,7 @@ def _caution_lines(outcome: Outcome, width: int) -> Iterator[str]:
     for note in sorted(outcome.notes, key=lambda one: order.get(one.severity, 1)):
         rest = f" [{note.trigger}]" if note.trigger else ""
         decides = f" Decides: {note.decides}." if note.decides else ""
-        yield _wrap(
-            f"{SEVERITY.get(note.severity, 'caution')}: {note.text}{rest}{decides}", width, "  - ", "    "
-        )
+        yield _wrap(f"{SEVERITY.get(note.severity, 'caution')}: {note.text}{rest}{decides}", width, "  - ", "    ")
 
 
 def _tail(outcome: Outcome, width: int) -> str:
