@@ -9,7 +9,7 @@ from functools import lru_cache
 from outcouple.errors import UserMistake, nearest
 from outcouple.quantities.table import KINDS, Kind, kind_of
 
-__all__ = ["parse", "unit_of"]
+__all__ = ["parse"]
 
 _FORM = re.compile(r"\s*([+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?)\s*(.*?)\s*", re.DOTALL)
 _NOT_FINITE = re.compile(r"\s*[+-]?(nan|inf|infinity)\b", re.IGNORECASE)
@@ -51,17 +51,15 @@ def parse(given: object, kind: str | Kind, *, unit: str = "") -> float:
         return _parse_text(given, kind.name, unit or kind.unit)
     if isinstance(given, bool) or not isinstance(given, int | float):
         raise UserMistake(f"{kind.a_label} is wanted{_such_as(kind, unit)}")
-    if not math.isfinite(given):
+    try:
+        number = float(given)
+    except OverflowError:
+        raise UserMistake("too large to be a number") from None
+    if not math.isfinite(number):
         raise UserMistake("not a finite number")
     if not kind.plain:
         raise UserMistake(f'unit missing; write "{given} {unit or kind.unit}"')
-    return _checked(float(given), kind)
-
-
-def unit_of(text: str, kind: Kind) -> str:
-    """The unit a valid quantity text is written in, as the table spells it."""
-    match = _FORM.fullmatch(text.translate(_SIGNS))
-    return _spelled(match[2], kind) if match else ""
+    return _checked(number, kind)
 
 
 @lru_cache(maxsize=4096)

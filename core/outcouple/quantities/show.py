@@ -34,8 +34,11 @@ def format_quantity(value: float | None, kind: str | Kind, unit: str | None = No
         return f"{format_number(float(value), digits)} {unit}"
     if unit is None or not _readable(value, kind, unit):
         unit = best_unit(value, kind, digits=digits)
-    number = format_number(in_unit(float(value), kind, unit), digits)
-    return f"{number} {unit}" if unit else number
+    number = in_unit(float(value), kind, unit)
+    if math.isinf(number):  # zero has no decibels
+        unit, number = kind.si_unit, float(value)
+    text = format_number(number, digits)
+    return f"{text} {unit}" if unit else text
 
 
 def _readable(value: float, kind: Kind, unit: str) -> bool:
