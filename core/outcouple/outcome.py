@@ -9,6 +9,7 @@ from typing import Any, Literal
 
 from outcouple.geometry import Curve, Surface, View
 from outcouple.notes import Note
+from outcouple.quantities import format_quantity, si_unit
 
 __all__ = [
     "Advice",
@@ -240,7 +241,8 @@ def _number(value: float | None) -> float | None:
 def _metric(metric: MetricResult) -> dict[str, Any]:
     return {
         "value": _number(metric.value),
-        "unit": metric.unit,
+        "unit": si_unit(metric.kind) or ("" if metric.kind != "number" else metric.unit),
+        "text": "" if metric.value is None else format_quantity(metric.value, metric.kind, metric.unit or None),
         "kind": metric.kind,
         "label": metric.label,
         "scope": metric.scope,

@@ -44,14 +44,15 @@ def command(file: str, out: str, states: tuple[str, ...], maps: bool, dark: bool
     for state in states:
         if state not in known:
             raise UserMistake(f"--state {state}: no such state; there are: {', '.join(known)}")
-    pictures = outcome_pictures(outcome, states=states, look=DARK if dark else LIGHT)
+    look = DARK if dark else LIGHT
+    pictures = outcome_pictures(outcome, states=states, look=look)
     if target.suffix in IMAGES:
         for path in _images(target, pictures):
             click.echo(f"wrote {path}")
         return 0
     cautions = [note.text + (f" Decides: {note.decides}." if note.decides else "") for note in outcome.notes]
     try:
-        write_atomically(target, page_of(outcome.title, pictures, lead=outcome.headline, cautions=cautions))
+        write_atomically(target, page_of(outcome.title, pictures, lead=outcome.headline, cautions=cautions, look=look))
     except OSError as error:
         raise UserMistake(f"--out {out}: cannot be written: {error.strerror or error}") from None
     click.echo(f"wrote {target} ({len(pictures)} pictures)")

@@ -69,6 +69,7 @@ def page_of(
     lead: str = "",
     tables: Sequence[tuple[str, Sequence[Sequence[str]]]] = (),
     cautions: Sequence[str] = (),
+    look: figures.Look = figures.LIGHT,
 ) -> str:
     """One HTML page: title, lead, tables, pictures, cautions. Everything a user wrote is escaped."""
     from jinja2 import Environment, PackageLoader, select_autoescape
@@ -83,6 +84,8 @@ def page_of(
         plotly=_plotly_js(),
         data=json.dumps({picture.name: picture.figure for picture in pictures}).replace("<", "\\u003c"),
         config=json.dumps(dict(figures.CONFIG)),
+        look=look,
+        dark=look is figures.DARK,
     )
 
 
