@@ -11,7 +11,9 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from outcouple.materials.air import air_index
+from outcouple.materials.aqueous import Concentration, concentration, solution_index
 from outcouple.materials.catalogue import Catalogue, builtin_catalogue
+from outcouple.materials.listing import ListedMaterial, search, table
 from outcouple.materials.material import Absorption, Material
 from outcouple.materials.mixing import lorentz_lorenz
 from outcouple.materials.rows import KEYS, material_from_mapping
@@ -21,15 +23,21 @@ __all__ = [
     "KEYS",
     "Absorption",
     "Catalogue",
+    "Concentration",
+    "ListedMaterial",
     "Material",
     "air_index",
     "builtin_catalogue",
+    "concentration",
     "index",
     "lookup",
     "lorentz_lorenz",
     "material_from_mapping",
     "names",
     "sea_water_index",
+    "search",
+    "solution_index",
+    "table",
     "water_density",
     "water_index",
 ]

@@ -36,7 +36,7 @@ def air_index(
     wavelength      in vacuum [m], 230 nm to 1.69 um
     temperature     [K], 233 to 373
     pressure        total [Pa], 80 to 120 kPa
-    humidity        relative, 0 to 1; ``vapour_pressure`` [Pa] instead where it is known
+    humidity        relative, 0 to 1; ``vapour_pressure`` (partial) [Pa] instead where known
     carbon_dioxide  mole fraction
 
     All arguments broadcast. Stated uncertainty 2e-8 in dry air at moderate conditions.
@@ -49,11 +49,11 @@ def air_index(
     micrometres = np.asarray(wavelength, dtype=float) * 1e6
     kelvin, total, parts = (np.asarray(value, dtype=float) for value in (temperature, pressure, carbon_dioxide))
     if vapour_pressure is None:
-        vapour = np.asarray(humidity, dtype=float) * saturation_pressure(kelvin)
+        enhancement = 1.00062 + 3.14e-8 * total + 5.6e-7 * (kelvin - 273.15) ** 2
+        vapour = enhancement * np.asarray(humidity, dtype=float) * saturation_pressure(kelvin)
     else:
         vapour = np.asarray(vapour_pressure, dtype=float)
-    enhancement = 1.00062 + 3.14e-8 * total + 5.6e-7 * (kelvin - 273.15) ** 2
-    moisture = enhancement * vapour / total
+    moisture = vapour / total
     dry_mass = 1e-3 * (28.9635 + 12.011 * (parts - 400e-6))
     density = total / (_compressibility(total, kelvin, moisture) * GAS_CONSTANT * kelvin)
     dry_reference = 101325.0 * dry_mass / (0.9995922115 * GAS_CONSTANT * 288.15)

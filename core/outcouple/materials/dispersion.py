@@ -27,7 +27,7 @@ def sellmeier(terms: Pairs, offset: float = 0.0) -> Dispersion:
 
     def law(wavelength: Floats) -> Floats:
         square = (wavelength * 1e6) ** 2
-        return _root(1 + offset + sum(b * square / (square - c) for b, c in terms))
+        return _root(np.asarray(1 + offset + sum(b * square / (square - c) for b, c in terms)))
 
     return law
 

@@ -120,7 +120,7 @@ class Material:
     def _range_note(self, values: Floats, span: Span, what: str, show: Callable[[float], str]) -> Note:
         outside = (values < span[0]) | (values > span[1])
         known = f"{what}s from {show(span[0])} to {show(span[1])}"
-        text = f"The index of {self.name} is known for {known}; it is extrapolated."
+        text = f"The index of {self.name} is known for {known}; outside, it is estimated."
         return Note("material-range", text, trigger=_extremes(values, outside, show), where=outside)
 
     def _absorption_note(self, values: Floats, absorbs: Absorption) -> Note:

@@ -74,7 +74,7 @@ def material_from_mapping(name: str, row: Row, *, lookup: Callable[[str], Materi
 
     UserMistake names every key that cannot be taken.
 
-    >>> material_from_mapping("resin", {"index": 1.52, "source": "own measurement"}).index(850e-9).real
+    >>> complex(material_from_mapping("resin", {"index": 1.52, "source": "own measurement"}).index(850e-9)).real
     1.52
     """
     problems = _problems(name, row)

@@ -136,7 +136,7 @@ SOLUTES: tuple[Solute, ...] = (
         "salt",
         ("salt water", "sodium chloride", "brine", "table salt"),
         f"{CRC}; warming from X. Quan and E. S. Fry, Appl. Opt. 34, 3477 (1995)",
-        warming=(5.4e-4, 0.0),
+        warming=(7.9e-4, 0.0),
         uncertainty=4e-4,
     ),
     Tabled("ethanol", ("alcohol", "ethyl alcohol"), CRC, "ethanol"),
