@@ -48,7 +48,9 @@ def test_sucrose_scale(row: dict[str, str]) -> None:
 )
 def test_crc_solutions(row: dict[str, str]) -> None:
     """Published: CRC Handbook, four decimals."""
-    assert relative(f"{CRC_NAMES[row['solute']]} {row['mass_percent']} %") == pytest.approx(float(row["nD20"]), abs=1e-5)
+    assert relative(f"{CRC_NAMES[row['solute']]} {row['mass_percent']} %") == pytest.approx(
+        float(row["nD20"]), abs=1e-5
+    )
 
 
 @pytest.mark.parametrize(
@@ -88,7 +90,8 @@ def test_glycerol_dispersion(percent: int) -> None:
 def test_sea_salt_warming_is_that_of_quan_and_fry() -> None:
     """35 g of sodium chloride per kilogram is not sea water, but warms alike: -1.17e-4 per kelvin at 25 degC."""
     salt, sea = (
-        materials.lookup(name).index(D, np.array([293.15, 303.15])).real for name in ("salt water 3.5 %", "sea water 3.5 %")
+        materials.lookup(name).index(D, np.array([293.15, 303.15])).real
+        for name in ("salt water 3.5 %", "sea water 3.5 %")
     )
     assert np.diff(salt) == pytest.approx(np.diff(sea), abs=2e-5)
 
@@ -182,7 +185,7 @@ def test_below_water_methanol_is_told_by_its_falling_side() -> None:
 
 
 def test_lorentz_lorenz_mixes() -> None:
-    """Glycol half and half by mass, densities 998 and 1113.5 kg/m3, 1.065 for the mixture: within 1e-3 of CRC's table."""
+    """Glycol half and half by mass, densities 998, 1113.5 and mixed 1065 kg/m3: within 1e-3 of CRC's table."""
     water, glycol = 0.5 / 0.998, 0.5 / 1.1135
     before = water + glycol
     mixed = materials.lorentz_lorenz(

@@ -14,13 +14,15 @@ from outcouple.materials.air import air_index
 from outcouple.materials.aqueous import Concentration, concentration, solution_index
 from outcouple.materials.catalogue import Catalogue, builtin_catalogue
 from outcouple.materials.listing import ListedMaterial, search, table
-from outcouple.materials.material import Absorption, Material
+from outcouple.materials.material import KINDS, Absorption, Material
 from outcouple.materials.mixing import lorentz_lorenz
-from outcouple.materials.rows import KEYS, material_from_mapping
+from outcouple.materials.row_checks import KEYS
+from outcouple.materials.rows import material_from_mapping
 from outcouple.materials.water import sea_water_index, water_density, water_index
 
 __all__ = [
     "KEYS",
+    "KINDS",
     "Absorption",
     "Catalogue",
     "Concentration",

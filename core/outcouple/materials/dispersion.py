@@ -74,5 +74,5 @@ def interpolated(wavelengths: Sequence[float], values: Sequence[float]) -> Dispe
 
 
 def _root(square: Floats) -> Floats:
-    """Index from its square; past a resonance, far outside any range, it stays a number."""
-    return np.asarray(np.sqrt(np.maximum(square, 1e-6)))
+    """Index from its square; past a resonance, far outside any range, zero instead of no number."""
+    return np.asarray(np.sqrt(np.maximum(square, 0.0)))

@@ -83,7 +83,7 @@ class Material:
         ``notes`` says so.
         """
         across, warm = np.asarray(wavelength, dtype=float), np.asarray(temperature, dtype=float)
-        real = self.real(*np.broadcast_arrays(across, warm))
+        real = self.real(across, warm)
         kappa = 0.0 if self.absorbs is None else self.absorbs(across) * across / (4 * np.pi)
         return np.asarray(real + 1j * kappa)[()]
 

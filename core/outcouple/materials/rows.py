@@ -35,14 +35,15 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from outcouple.errors import UserMistake, nearest
+from outcouple.errors import UserMistake
 from outcouple.materials import dispersion, thermal
 from outcouple.materials.air import air_index
-from outcouple.materials.material import KINDS, VERIFIED, Absorption, Material
+from outcouple.materials.material import Absorption, Material
 from outcouple.materials.mixing import index_from_refraction, refraction
-from outcouple.materials.water import sea_water_index, water_index
+from outcouple.materials.published import LAWS
+from outcouple.materials.row_checks import extinction_key, row_problems
 
-__all__ = ["KEYS", "SODIUM_D", "WAYS", "material_from_mapping"]
+__all__ = ["SODIUM_D", "material_from_mapping"]
 
 Floats = NDArray[np.float64]
 Row = Mapping[str, Any]
@@ -50,21 +51,8 @@ Row = Mapping[str, Any]
 SODIUM_D = 589.3e-9
 """Mean of the two sodium lines [m], in air as handbooks have it; in vacuum 0.16 nm more, 6e-6 in index."""
 
-WAYS = ("index", "sellmeier", "resonances", "cauchy", "series", "square_series", "gas", "based_on", "law")
-KEYS = (
-    *WAYS,
-    *("wavelengths", "at_wavelength", "sellmeier_offset", "gas_offset", "offset", "relative_to"),
-    *("reference_temperature", "dn_dT", "thermal", "hold_temperature"),
-    *("absorption", "extinction", "absorption_wavelengths", "absorption_source"),
-    *("wavelength_range", "temperature_range", "uncertainty", "verified"),
-    *("kind", "summary", "source", "aliases", "remark"),
-)
-LAWS: Mapping[str, Callable[[Floats, Floats], Floats]] = {
-    "water": lambda wavelength, temperature: water_index(wavelength, temperature),
-    "sea water": lambda wavelength, temperature: sea_water_index(wavelength, temperature),
-    "air": lambda wavelength, temperature: air_index(wavelength, temperature=temperature),
-}
-PAIRS = ("sellmeier", "resonances", "series", "square_series", "gas")
+SMALLEST = 1e-3
+"""An extrapolated index stays above this, whatever lies past a resonance."""
 
 
 def material_from_mapping(name: str, row: Row, *, lookup: Callable[[str], Material] | None = None) -> Material:
@@ -77,7 +65,7 @@ def material_from_mapping(name: str, row: Row, *, lookup: Callable[[str], Materi
     >>> complex(material_from_mapping("resin", {"index": 1.52, "source": "own measurement"}).index(850e-9)).real
     1.52
     """
-    problems = _problems(name, row)
+    problems = row_problems(name, row)
     if problems:
         raise UserMistake(*problems)
     base = _base(name, row, lookup)
@@ -98,77 +86,6 @@ def material_from_mapping(name: str, row: Row, *, lookup: Callable[[str], Materi
         aliases=tuple(row.get("aliases", ())),
         remark=str(row.get("remark", "")),
     )
-
-
-def _problems(name: str, row: Row) -> list[str]:
-    at = f"materials.{name}"
-    found = [f"{at}.{key}: unknown key{nearest(key, KEYS)}" for key in row if key not in KEYS]
-    ways = [way for way in WAYS if way in row]
-    if not ways:
-        found.append(f"{at}: no index given; write one of {', '.join(WAYS)}")
-    elif len(ways) > 1 and set(ways) != {"index", "based_on"}:
-        found.append(f"{at}: the index is given twice, by {' and '.join(ways)}; keep one")
-    if "offset" in row and ways != ["based_on"]:
-        found.append(f'{at}.offset: goes with based_on alone; write based_on = "PMMA" and offset = "0.002"')
-    for key, allowed in (
-        ("kind", KINDS),
-        ("verified", VERIFIED),
-        ("relative_to", ("vacuum", "air")),
-        ("law", tuple(LAWS)),
-    ):
-        if key in row and row[key] not in allowed:
-            found.append(f"{at}.{key} = {row[key]!r}: one of {', '.join(allowed)}{nearest(str(row[key]), allowed)}")
-    if sum(key in row for key in ("dn_dT", "thermal")) > 1:
-        found.append(f"{at}: dn_dT and thermal exclude each other")
-    if "absorption" in row and "extinction" in row:
-        found.append(f"{at}: absorption and extinction exclude each other")
-    return [*found, *(f"{at}.{text}" for text in _shape_problems(row))]
-
-
-def _shape_problems(row: Row) -> list[str]:
-    found = [
-        f"{key}: a list of pairs of numbers"
-        for key in PAIRS
-        if key in row and not all(_numbers(pair, 2) for pair in _listed(row[key]) or [None])
-    ]
-    found += [
-        f"{key}: a list of numbers, smaller first" if key.endswith("range") else f"{key}: a list of numbers"
-        for key, count in (("cauchy", None), ("thermal", 6), ("wavelength_range", 2), ("temperature_range", 2))
-        if key in row and not _numbers(row[key], count, rising=key.endswith("range"))
-    ]
-    for key in ("wavelengths", "absorption_wavelengths"):
-        if key in row and not (_numbers(row[key], None, rising=True) and len(row[key]) > 1 and row[key][0] > 0):
-            found.append(f"{key}: a list of at least two rising lengths")
-    pairs = (("index", "wavelengths"), ("absorption", "absorption_wavelengths"), ("extinction", _across(row)))
-    for key, across in pairs:
-        if key not in row:
-            continue
-        given, want = row[key], row.get(across)
-        if _listed(given) is None and key != "extinction":
-            if not _numbers([given], 1):
-                found.append(f"{key} = {given!r}: a number, or a list for {across}")
-        elif want is None or not _numbers(given, len(want)):
-            found.append(f"{key}: a list of as many numbers as {across} has")
-    if "index" in row and _listed(row["index"]) is None and _numbers([row["index"]], 1) and row["index"] <= 0:
-        found.append(f"index = {row['index']!r}: must be above 0")
-    return found
-
-
-def _across(row: Row) -> str:
-    return "absorption_wavelengths" if "absorption_wavelengths" in row else "wavelengths"
-
-
-def _listed(given: Any) -> list[Any] | None:
-    return list(given) if isinstance(given, list | tuple | np.ndarray) else None
-
-
-def _numbers(given: Any, count: int | None, *, rising: bool = False) -> bool:
-    values = _listed(given)
-    if values is None or not values or (count is not None and len(values) != count):
-        return False
-    if not all(isinstance(one, int | float | np.number) and not isinstance(one, bool) for one in values):
-        return False
-    return bool(np.all(np.isfinite(values))) and (not rising or bool(np.all(np.diff(values) > 0)))
 
 
 def _base(name: str, row: Row, lookup: Callable[[str], Material] | None) -> Material | None:
@@ -202,7 +119,7 @@ def _law(row: Row, base: Material | None, warm: tuple[float, float]) -> Callable
         index = at_reference(wavelength)
         if relative:
             index = index * air_index(wavelength)
-        return by_temperature(index, wavelength, temperature)
+        return np.maximum(by_temperature(index, wavelength, temperature), SMALLEST)
 
     return law
 
@@ -256,7 +173,7 @@ def _thermal(row: Row, reference: float, warm: tuple[float, float]) -> thermal.T
 def _absorption(row: Row) -> Absorption | None:
     source = str(row.get("absorption_source", row.get("source", "")))
     if "extinction" in row:
-        across = np.asarray(row[_across(row)], dtype=float)
+        across = np.asarray(row[extinction_key(row)], dtype=float)
         return Absorption(across, 4 * np.pi * np.asarray(row["extinction"], dtype=float) / across, source)
     if "absorption" not in row:
         return None
