@@ -41,7 +41,8 @@ class Problem:
         """The mistake as one line of text; ``named`` stands for the dotted path where there is a better name."""
         given = "" if self.given is None else f" = {_shown(self.given)}"
         hint = f"; {self.hint}" if self.hint else ""
-        return f"{named or dotted(self.path)}{given}: {self.message}{hint}"
+        where = f"{named or dotted(self.path)}{given}"
+        return f"{where}: {self.message}{hint}" if where else f"{self.message}{hint}"
 
 
 def dotted(path: Sequence[str]) -> str:

@@ -13,7 +13,15 @@ if TYPE_CHECKING:
 
 __all__ = ["json_schema", "leaf_schema"]
 
-NUMBER = r"[+-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?"
+NUMBER = r"[+−-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?"
+_SPELLINGS = (
+    (r"^u(?=\w)", "[uµμ]"),
+    (r"deg", "(deg|°)"),
+    (r"ohm", "(ohm|Ω)"),
+    (r"rtHz", "(rtHz|√Hz)"),
+    (r"(?<=m)2", "[2²]"),
+    (r"(?<=m)3", "[3³]"),
+)
 DRAFT = "https://json-schema.org/draft/2020-12/schema"
 
 
@@ -48,12 +56,20 @@ def _type(leaf: Leaf) -> dict[str, Any]:
 
 def _quantity(leaf: Leaf) -> dict[str, Any]:
     kind = kind_of(leaf.kind)
-    units = "|".join(re.escape(unit) for unit in kind.units if unit)
+    units = "|".join(_unit(unit) for unit in kind.units if unit)
     tail = f"\\s*({units}){'?' if kind.plain else ''}" if units else ""
     text = {"type": "string", "pattern": f"^\\s*{NUMBER}{tail}\\s*$", "examples": _examples(leaf)}
     if not kind.plain:
         return text
     return {"anyOf": [{"type": "number"}, text]}
+
+
+def _unit(unit: str) -> str:
+    """A unit in every spelling that is read."""
+    pattern = re.escape(unit)
+    for plain, spellings in _SPELLINGS:
+        pattern = re.sub(plain, spellings, pattern)
+    return pattern
 
 
 def _examples(leaf: Leaf) -> list[str]:
