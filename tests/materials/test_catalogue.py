@@ -146,8 +146,8 @@ def test_ways_of_giving_absorption() -> None:
         ),
         ({"indx": 1.5, "index": 1.5}, "materials.x.indx: unknown key (did you mean 'index'?)"),
         ({"index": 1.5, "cauchy": [1.5]}, "materials.x: the index is given twice, by index and cauchy; keep one"),
-        ({"index": [1.5, 1.6]}, "materials.x.index: a list of as many numbers as wavelengths has"),
-        ({"index": "1.5"}, "materials.x.index = '1.5': a number, or a list for wavelengths"),
+        ({"index": [1.5, 1.6]}, "materials.x.index: a list needs wavelengths"),
+        ({"index": "1.5"}, "materials.x.index = '1.5': a number"),
         ({"index": -1.5}, "materials.x.index = -1.5: must be above 0"),
         (
             {"index": 1.5, "kind": "liqid"},
@@ -170,6 +170,22 @@ def test_ways_of_giving_absorption() -> None:
             {"index": 1.5, "offset": 0.1},
             'materials.x.offset: goes with based_on alone; write based_on = "PMMA" and offset = 0.002',
         ),
+        (
+            {"wavelengths": [1e-6, 2e-6], "index": 1.5},
+            "materials.x.index: a list of as many numbers as wavelengths has",
+        ),
+        (
+            {"wavelengths": [1e-6, 2e-6], "index": [1.5, 1.5], "based_on": "water"},
+            "materials.x.wavelengths: go with a list of index, without based_on",
+        ),
+        ({"index": [1.5, 1.5], "based_on": "water"}, "materials.x.index: a list needs wavelengths"),
+        (
+            {"index": 1.5, "absorption": 1.0, "absorption_wavelengths": [1e-6, 2e-6]},
+            "materials.x.absorption: a list of as many numbers as absorption_wavelengths has",
+        ),
+        ({"index": 1.5, "extinction": [1e-7]}, "materials.x.extinction: a list needs wavelengths"),
+        ({"index": 1.5, "extinction": 1e-7}, "materials.x.extinction: a list needs wavelengths"),
+        ({"index": 1.5, "aliases": "glue"}, "materials.x.aliases: a list of names"),
         ({"based_on": "watr"}, "materials.x.based_on: 'watr': unknown material (did you mean 'water'?)"),
     ],
 )

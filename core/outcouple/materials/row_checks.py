@@ -59,11 +59,23 @@ def row_problems(name: str, row: Row) -> list[str]:
 
 
 def _shape_problems(row: Row) -> list[str]:
-    found = [
+    found = _pair_problems(row) + _number_problems(row) + _table_problems(row)
+    aliases = _listed(row.get("aliases", ()))
+    if aliases is None or not all(isinstance(one, str) for one in aliases):
+        found.append("aliases: a list of names")
+    return found or _sign_problems(row)
+
+
+def _pair_problems(row: Row) -> list[str]:
+    return [
         f"{key}: a list of pairs of numbers"
         for key in PAIRS
         if key in row and not all(_numbers(pair, 2) for pair in _listed(row[key]) or [None])
     ]
+
+
+def _number_problems(row: Row) -> list[str]:
+    found = []
     for key, count in (("cauchy", None), ("thermal", 6)):
         if key in row and not _numbers(row[key], count):
             found.append(f"{key}: a list of {f'{count} ' if count else ''}numbers")
@@ -75,20 +87,28 @@ def _shape_problems(row: Row) -> list[str]:
             found.append(f"{key} = {row[key]!r}: a number")
         elif key in POSITIVE and row.get(key, 0.0) < 0:
             found.append(f"{key} = {row[key]!r}: must not be below 0")
-    for key in ("wavelengths", "absorption_wavelengths"):
-        if key in row and not (_numbers(row[key], None, rising=True) and len(row[key]) > 1 and row[key][0] > 0):
-            found.append(f"{key}: a list of at least two rising lengths")
+    return found
+
+
+def _table_problems(row: Row) -> list[str]:
+    """Wavelengths, and the lists that go with them."""
+    found = [
+        f"{key}: a list of at least two rising lengths"
+        for key in ("wavelengths", "absorption_wavelengths")
+        if key in row and not (_numbers(row[key], None, rising=True) and len(row[key]) > 1 and row[key][0] > 0)
+    ]
+    if "wavelengths" in row and ("index" not in row or "based_on" in row):
+        found.append("wavelengths: go with a list of index, without based_on")
+    if found:
+        return found
     pairs = (("index", "wavelengths"), ("absorption", "absorption_wavelengths"), ("extinction", extinction_key(row)))
     for key, across in pairs:
-        if key not in row:
-            continue
-        given, want = row[key], row.get(across)
-        if _listed(given) is None and key != "extinction":
-            if not _numbers([given], 1):
-                found.append(f"{key} = {given!r}: a number, or a list for {across}")
-        elif want is None or not _numbers(given, len(want)):
+        if key in row and across in row and not _numbers(row[key], len(row[across])):
             found.append(f"{key}: a list of as many numbers as {across} has")
-    return found or _sign_problems(row)
+        elif key in row and across not in row and (key == "extinction" or not _numbers([row[key]], 1)):
+            listed = key == "extinction" or _listed(row[key]) is not None
+            found.append(f"{key}: a list needs {across}" if listed else f"{key} = {row[key]!r}: a number")
+    return found
 
 
 def _sign_problems(row: Row) -> list[str]:
