@@ -16,14 +16,14 @@ from typing import TYPE_CHECKING, Any
 if TYPE_CHECKING:
     from outcouple import materials, optics
     from outcouple.design import load_design
-    from outcouple.evaluate import evaluate, evaluate_batch
+    from outcouple.evaluation import evaluate, evaluate_batch
     from outcouple.hooks import hookimpl
 
 __all__ = ["evaluate", "evaluate_batch", "hookimpl", "load_design", "materials", "optics"]
 
 _HOMES = {
-    "evaluate": "outcouple.evaluate",
-    "evaluate_batch": "outcouple.evaluate",
+    "evaluate": "outcouple.evaluation",
+    "evaluate_batch": "outcouple.evaluation",
     "hookimpl": "outcouple.hooks",
     "load_design": "outcouple.design",
 }

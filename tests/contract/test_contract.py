@@ -11,11 +11,11 @@ import pytest
 
 from outcouple.contact.cover import Cover, Drops, Film, Patch
 from outcouple.design import design_from_mapping
-from outcouple.evaluate import evaluate, evaluate_batch
-from outcouple.evaluate.ledger import ledger_of
-from outcouple.evaluate.signals import trial_share
-from outcouple.evaluate.table import tabulate
-from outcouple.evaluate.transport import mean_power
+from outcouple.evaluation import evaluate, evaluate_batch
+from outcouple.evaluation.ledger import ledger_of
+from outcouple.evaluation.signals import trial_share
+from outcouple.evaluation.table import tabulate
+from outcouple.evaluation.transport import mean_power
 from outcouple.hooks import build_host, hookimpl
 
 spec = importlib.util.spec_from_file_location("stub_sensors", Path(__file__).with_name("stub_sensors.py"))

@@ -9,8 +9,8 @@ import numpy as np
 import pytest
 
 from outcouple.design import design_from_mapping
-from outcouple.evaluate import evaluate, evaluate_batch
-from outcouple.evaluate.table import tabulate
+from outcouple.evaluation import evaluate, evaluate_batch
+from outcouple.evaluation.table import tabulate
 from outcouple.hooks import build_host
 from outcouple.testing import check_geometry
 from outcouple_plugins.prism_switch import PrismSwitch
@@ -153,7 +153,7 @@ def test_one_hit_ways_open_up_in_wide_lobes_and_carry_the_wet_reading(host):
 
 
 def _results(table):
-    from outcouple.evaluate.batch import results_of
+    from outcouple.evaluation.batch import results_of
 
     return results_of(table, None)
 

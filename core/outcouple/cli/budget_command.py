@@ -20,7 +20,7 @@ def command(file: str, as_json: bool, every: bool, maps: bool) -> int:
     Exit code 0 where every requirement is met, 3 on anything else.
     """
     from outcouple.design import load_design
-    from outcouple.evaluate import evaluate
+    from outcouple.evaluation import evaluate
 
     outcome = evaluate(load_design(file), maps=maps, views=False)
     if as_json:

@@ -32,7 +32,7 @@ def command(file: str, out: str, states: tuple[str, ...], maps: bool, dark: bool
     An HTML page holds all pictures; .svg and .png write one file per picture and need the extra "figures".
     """
     from outcouple.design import load_design
-    from outcouple.evaluate import evaluate
+    from outcouple.evaluation import evaluate
     from outcouple.report.figures import DARK, LIGHT
     from outcouple.report.page import outcome_pictures, page_of, write_atomically
 

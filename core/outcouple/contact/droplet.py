@@ -28,7 +28,7 @@ Floats = NDArray[np.float64]
 Number = float | Floats
 
 TABLE_FILE = "drop_returns.npz"
-LEVELS = 4095  # of a share in the stored table
+LEVELS = 2047  # of a share in the stored table
 GUIDE_RANGE = (1.3, 1.9)
 
 
@@ -146,7 +146,8 @@ def reflection_spread(*, ratio: Number, inside: Number, contact_angle: Number) -
     """
     turned = np.sin(np.maximum(np.asarray(inside) - 2 * np.asarray(contact_angle), -np.pi / 2))
     specular = np.minimum(np.sin(inside) / ratio, 1.0)
-    return np.asarray(np.arcsin(specular) - np.arcsin(np.clip(turned / ratio, -1.0, 1.0)))
+    spread = np.arcsin(specular) - np.arcsin(np.clip(turned / ratio, -1.0, 1.0))
+    return np.asarray(np.maximum(spread, 1e-12))
 
 
 def zone_angle(zone: Number, *, n_drop: Number, ratio: Number, contact_angle: Number) -> Floats:

@@ -3,7 +3,7 @@
 The room knows no optics and no design file. `detection` turns margins in standard deviations into false alarms, misses
 and times; `three_way` adds fault bands; `failure_modes` tells which way each failure errs for a demand; `cautions`
 holds what a result must say about eyes, explosive atmospheres, overfill and people. `decide` joins levels and states
-for `outcouple.evaluate`.
+for `outcouple.evaluation`.
 """
 
 from outcouple.decision.detection import (

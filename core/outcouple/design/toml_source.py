@@ -10,15 +10,14 @@ from typing import Any, Literal, NoReturn
 
 from outcouple.design.toml_places import Places, places_of
 from outcouple.errors import UserMistake
+from outcouple.quantities import KINDS, parse
 
 __all__ = ["TomlSource"]
 
 Path = tuple[str, ...]
 
-UNQUOTED = re.compile(
-    r"(\s*[^=#\s][^=#]*?\s*=\s*)([+-]?[0-9][0-9.,]*(?:[eE][+-]?[0-9]+)?\s*[^\s\d,\]}#\"'][^,\]}#\"']*)"
-)
-"""A number with a unit that lacks its quotes: ``base = 6 mm``."""
+BARE_VALUE = re.compile(r"([\w.\"'-]+)\s*=\s*([+-]?[0-9.]+(?:,[0-9]+)?[^,}#=\n]*?)\s*(?=[,}#\n]|$)")
+"""A value without quotes that begins like a number."""
 
 
 class TomlSource:
@@ -78,5 +77,16 @@ class TomlSource:
 
     def _repair(self, line: int) -> str:
         """The usual slip, a quantity without its quotes, with its repaired text."""
-        found = UNQUOTED.match(self.line_text(line))
-        return f'; a quantity is written in quotes: {found[1].strip()} "{found[2].strip()}"' if found else ""
+        for found in BARE_VALUE.finditer(self.line_text(line)):
+            value = found[2].replace(",", ".")
+            if not _reads(value, "number") and any(_reads(value, kind) for kind in KINDS):
+                return f'; a quantity is written in quotes: {found[1]} = "{value}"'
+        return ""
+
+
+def _reads(text: str, kind: str) -> bool:
+    try:
+        parse(text, kind)
+    except UserMistake:
+        return False
+    return True

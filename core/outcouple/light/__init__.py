@@ -1,7 +1,7 @@
 """Where the light goes: a sensor's ways from emitter to read-out, laid out once.
 
 The room promises arrays that know where things are and never what they are: no material, no contact, no electronics.
-Whoever lays out light (a geometry) fills a :class:`Light`; whoever follows it (``outcouple.evaluate``) needs
+Whoever lays out light (a geometry) fills a :class:`Light`; whoever follows it (``outcouple.evaluation``) needs
 nothing else.
 """
 

@@ -3,7 +3,7 @@
 The room knows no optics and no design file: plain functions and small frozen records on arrays over samples and
 channels. `photodiode`, `transimpedance`, `modulation` and `converter` meet in `receiver`, whose `NoiseBudget` says
 what limits a reading; `camera` is the other road. `ambient` gives outside light as photocurrent, `drift` what changes
-slowly. `chain` joins them to optical shares for `outcouple.evaluate`.
+slowly. `chain` joins them to optical shares for `outcouple.evaluation`.
 """
 
 from outcouple.readout.ambient import band_irradiance, current_density

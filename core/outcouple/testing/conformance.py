@@ -11,9 +11,9 @@ import numpy as np
 from outcouple.design import Design, design_from_mapping, parse_design
 from outcouple.design.starter import starter_text
 from outcouple.errors import UserMistake
-from outcouple.evaluate import evaluate, evaluate_batch
-from outcouple.evaluate.ledger import ledger_of
-from outcouple.evaluate.table import Table, tabulate
+from outcouple.evaluation import evaluate, evaluate_batch
+from outcouple.evaluation.ledger import ledger_of
+from outcouple.evaluation.table import Table, tabulate
 from outcouple.fields import Leaf, leaves
 from outcouple.geometry import Geometry, MetricValue
 from outcouple.hooks import Host, build_host

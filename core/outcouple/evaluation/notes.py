@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from outcouple.design import Design
-from outcouple.evaluate.table import Table
+from outcouple.evaluation.table import Table
 from outcouple.notes import Note
 
 __all__ = ["design_notes"]

@@ -5,7 +5,7 @@
 
 from __future__ import annotations
 
-from outcouple.evaluate.batch import Batch, evaluate_batch
-from outcouple.evaluate.run import evaluate
+from outcouple.evaluation.batch import Batch, evaluate_batch
+from outcouple.evaluation.run import evaluate
 
 __all__ = ["Batch", "evaluate", "evaluate_batch"]

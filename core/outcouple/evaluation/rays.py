@@ -8,7 +8,7 @@ import numpy as np
 
 from outcouple.contact.cover import Cover
 from outcouple.contact.response import answer
-from outcouple.evaluate.table import StateRow, Table
+from outcouple.evaluation.table import StateRow, Table
 from outcouple.geometry import RayPath
 
 __all__ = ["ray_powers"]

@@ -9,9 +9,9 @@ from numpy.typing import NDArray
 
 from outcouple.contact.cover import immersed
 from outcouple.design import State
-from outcouple.evaluate.overlay import view_of
-from outcouple.evaluate.signals import LaidState, lay_state, setting_of, trial_share
-from outcouple.evaluate.table import Table, nodes_for
+from outcouple.evaluation.overlay import view_of
+from outcouple.evaluation.signals import LaidState, lay_state, setting_of, trial_share
+from outcouple.evaluation.table import Table, nodes_for
 from outcouple.geometry import ContinuousCurve, Curve, ResponseAxis
 from outcouple.readout.chain import Reading, read
 

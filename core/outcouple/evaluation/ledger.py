@@ -8,8 +8,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from outcouple.evaluate.signals import LaidState, Way
-from outcouple.evaluate.transport import along, relit
+from outcouple.evaluation.signals import LaidState, Way
+from outcouple.evaluation.transport import along, relit
 
 __all__ = ["Ledger", "ledger_of"]
 

@@ -7,7 +7,7 @@ from collections.abc import Callable, Mapping, Sequence
 import numpy as np
 from numpy.typing import NDArray
 
-from outcouple.evaluate.table import StateRow, Table
+from outcouple.evaluation.table import StateRow, Table
 from outcouple.geometry import ContinuousCurve, MetricValue, Missing
 
 __all__ = ["common_measures", "measure_common"]

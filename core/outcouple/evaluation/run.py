@@ -7,16 +7,16 @@ from collections.abc import Mapping, Sequence
 import numpy as np
 
 from outcouple.design import Design
-from outcouple.evaluate.advice import advise
-from outcouple.evaluate.batch import measure, results_of, wanted
-from outcouple.evaluate.curves import continuous_curve, response_curve
-from outcouple.evaluate.failures import failure_directions
-from outcouple.evaluate.headline import headline_of, limiting_of, worst_state_of
-from outcouple.evaluate.judge import judge, verdict_of
-from outcouple.evaluate.ledger import ledger_of
-from outcouple.evaluate.notes import design_notes
-from outcouple.evaluate.rays import ray_powers
-from outcouple.evaluate.table import StateRow, Table, tabulate
+from outcouple.evaluation.advice import advise
+from outcouple.evaluation.batch import measure, results_of, wanted
+from outcouple.evaluation.curves import continuous_curve, response_curve
+from outcouple.evaluation.failures import failure_directions
+from outcouple.evaluation.headline import headline_of, limiting_of, worst_state_of
+from outcouple.evaluation.judge import judge, verdict_of
+from outcouple.evaluation.ledger import ledger_of
+from outcouple.evaluation.notes import design_notes
+from outcouple.evaluation.rays import ray_powers
+from outcouple.evaluation.table import StateRow, Table, tabulate
 from outcouple.fields import leaves
 from outcouple.geometry import Curve, Metric, MetricValue, Missing
 from outcouple.metrics import metrics_of

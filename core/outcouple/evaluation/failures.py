@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from outcouple.design import Design
-from outcouple.evaluate.table import Table
+from outcouple.evaluation.table import Table
 from outcouple.outcome import FailureDirection
 
 __all__ = ["consequence", "failure_directions"]

@@ -12,8 +12,8 @@ from outcouple.contact.cover import Cover
 from outcouple.contact.media import Media
 from outcouple.contact.response import Answer, answer, answer_notes
 from outcouple.design import Design, State
-from outcouple.evaluate.overlay import View
-from outcouple.evaluate.transport import Survival, received, survive
+from outcouple.evaluation.overlay import View
+from outcouple.evaluation.transport import Survival, received, survive
 from outcouple.geometry import Setting
 from outcouple.light import Light, Strips
 from outcouple.notes import Note, merge_notes

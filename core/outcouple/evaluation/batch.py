@@ -9,11 +9,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.design import Design
-from outcouple.evaluate.curves import continuous_curve
-from outcouple.evaluate.measures import measure_common
-from outcouple.evaluate.overlay import Samples, check_samples, samples_count
-from outcouple.evaluate.signals import trial_share
-from outcouple.evaluate.table import Table, tabulate
+from outcouple.evaluation.curves import continuous_curve
+from outcouple.evaluation.measures import measure_common
+from outcouple.evaluation.overlay import Samples, check_samples, samples_count
+from outcouple.evaluation.signals import trial_share
+from outcouple.evaluation.table import Table, tabulate
 from outcouple.geometry import ContinuousCurve, MetricValue, Missing, Results
 from outcouple.metrics import metrics_of
 from outcouple.notes import Note, merge_notes

@@ -10,8 +10,8 @@ from numpy.typing import NDArray
 
 from outcouple.design import Design
 from outcouple.design.load import design_model
-from outcouple.evaluate.judge import value_for
-from outcouple.evaluate.table import Table, tabulate
+from outcouple.evaluation.judge import value_for
+from outcouple.evaluation.table import Table, tabulate
 from outcouple.fields import Leaf, leaves
 from outcouple.geometry import MetricValue, Missing
 from outcouple.metrics import metrics_of
@@ -85,7 +85,7 @@ def advise(
     found: Mapping[str, MetricValue | Missing],
 ) -> tuple[Advice, ...]:
     """The few inputs whose step of a fifth moves the worst margin most, best first."""
-    from outcouple.evaluate.batch import measure
+    from outcouple.evaluation.batch import measure
 
     states = [(row.laid.state.name, row.laid.state.family) for row in table.rows]
     before, owners = worst_margin(design, found, states)

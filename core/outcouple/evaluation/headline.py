@@ -7,9 +7,9 @@ from collections.abc import Mapping, Sequence
 import numpy as np
 
 from outcouple.design import Design
-from outcouple.evaluate.failures import consequence
-from outcouple.evaluate.ledger import ledger_of
-from outcouple.evaluate.table import StateRow, Table
+from outcouple.evaluation.failures import consequence
+from outcouple.evaluation.ledger import ledger_of
+from outcouple.evaluation.table import StateRow, Table
 from outcouple.geometry import MetricValue, Missing
 from outcouple.outcome import Judged, Verdict
 from outcouple.quantities import format_quantity

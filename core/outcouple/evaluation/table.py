@@ -10,8 +10,8 @@ from numpy.typing import NDArray
 
 from outcouple.decision.decide import Decided, Score, decide
 from outcouple.design import Design, State
-from outcouple.evaluate.overlay import UNTOUCHED, Samples, View, samples_count, view_of
-from outcouple.evaluate.signals import LaidState, lay_state, setting_of
+from outcouple.evaluation.overlay import UNTOUCHED, Samples, View, samples_count, view_of
+from outcouple.evaluation.signals import LaidState, lay_state, setting_of
 from outcouple.geometry import Setting, StateResult
 from outcouple.light import Light
 from outcouple.notes import Note, merge_notes
