@@ -13,6 +13,7 @@ from pydantic import BaseModel, ValidationError
 from outcouple.errors import nearest
 from outcouple.fields.leaves import Leaf
 from outcouple.fields.models import declared, leaves
+from outcouple.quantities import from_unit
 
 __all__ = ["Problem", "collect", "dotted"]
 
@@ -94,25 +95,19 @@ def _said(row: Any, path: Path, model: type[BaseModel]) -> tuple[Any, str, str]:
 
 
 def _missing(key: str, leaf: Leaf | None) -> str:
-    if leaf is None:
-        return "missing"
-    example = f'"{_example(leaf)}"' if leaf.what != "count" else _example(leaf)
-    return f"missing; write {key} = {example} ({leaf.allowed})"
+    return "missing" if leaf is None else f"missing; write {key} = {_example(leaf)} ({leaf.allowed})"
 
 
 def _example(leaf: Leaf) -> str:
-    """A value that would be taken."""
-    if leaf.choices:
-        return leaf.choices[0]
-    if leaf.kind:
-        return leaf.text(leaf.clip(1.0 if leaf.what == "count" or not leaf.unit else _one(leaf)))
-    return "..."
-
-
-def _one(leaf: Leaf) -> float:
-    from outcouple.quantities import from_unit
-
-    return float(from_unit(1.0, leaf.kind, leaf.unit))
+    """A value that would be taken, as a file holds it."""
+    if leaf.what == "quantity":
+        text = leaf.text(leaf.clip(float(from_unit(1.0, leaf.kind, leaf.unit))))
+        return f'"{text}"' if leaf.unit else text
+    if leaf.what == "count":
+        return leaf.text(int(leaf.clip(1)))
+    if leaf.what == "flag":
+        return "true"
+    return f'"{leaf.choices[0] if leaf.choices else "..."}"'
 
 
 def _unknown(path: Path, section: type[BaseModel] | None, model: type[BaseModel]) -> tuple[str, str]:
