@@ -46,13 +46,15 @@ def _cell(value: Any) -> str:
 def _materials(*, name: str | None, at: str, temperature: str, like: float | None) -> Rows:
     from outcouple.errors import UserMistake
     from outcouple.hooks import build_host
+    from outcouple.materials import search, table
     from outcouple.quantities import parse
 
     try:
-        wavelength, kelvin = parse(at, "length"), parse(temperature, "temperature")
+        where = {"wavelength": parse(at, "length"), "temperature": parse(temperature, "temperature")}
     except UserMistake as mistake:
         raise UserMistake(f"--at / --temperature: {mistake}") from None
-    rows = build_host().catalogue.table(wavelength=wavelength, temperature=kelvin, like=like)
+    catalogue = build_host().catalogue
+    rows = table(catalogue, **where) if like is None else search(like=like, catalogue=catalogue, **where)
     return [
         {
             "material": row.name,
@@ -60,12 +62,12 @@ def _materials(*, name: str | None, at: str, temperature: str, like: float | Non
             "index": round(row.index, 5),
             "uncertainty": row.uncertainty,
             "absorption 1/m": row.absorption,
-            "verified": row.verified,
-            "caution": "; ".join(row.cautions),
+            "standing": row.verified,
+            "caution": ", ".join(note.code for note in row.notes if note.severity != "info"),
             "source": row.source,
         }
         for row in rows
-        if name is None or name.lower() in row.name.lower()
+        if name is None or name.lower() in " ".join((row.name, *row.aliases)).lower()
     ]
 
 

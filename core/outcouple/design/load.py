@@ -16,9 +16,10 @@ from outcouple.design.problems import Problem, collect, raise_problems
 from outcouple.design.sections import READOUTS, Decision, Emitter, Environment
 from outcouple.design.toml_source import TomlSource
 from outcouple.errors import UserMistake, nearest
-from outcouple.fields import Section
+from outcouple.fields import Section, leaves
 from outcouple.geometry import Geometry
 from outcouple.hooks import Host, build_host
+from outcouple.materials import Catalogue
 
 __all__ = ["design_from_mapping", "design_model", "load_design", "parse_design"]
 
@@ -63,6 +64,7 @@ def design_from_mapping(
         raise_problems(problems, source, file)
     catalogue = with_own_materials(data.get("materials", {}), host.catalogue, problems)
     sections = _sections(data, geometry, problems)
+    _check_names(sections, catalogue, problems)
     parts = Parts(geometry, host, catalogue, sections, problems)
     states = read_states(data.get("states"), parts)
     requirements = read_requirements(data.get("requirements", []), parts, states)
@@ -136,6 +138,19 @@ def _sections(data: Mapping[str, Any], geometry: Geometry, problems: list[Proble
     except ValidationError as error:
         problems.extend(collect(error, model))
         return None
+
+
+def _check_names(sections: Section | None, catalogue: Catalogue, problems: list[Problem]) -> None:
+    """Every material a section names must be known."""
+    if sections is None:
+        return
+    for leaf in leaves(type(sections)):
+        if leaf.what == "material":
+            value: Any = sections
+            for key in leaf.path:
+                value = getattr(value, key)
+            if not catalogue.knows(value):
+                problems.append(Problem(leaf.path, value, *catalogue.unknown(value)))
 
 
 def _leaves(data: Mapping[str, Any], path: Path = ()) -> Iterator[Path]:
