@@ -79,7 +79,7 @@ def test_budget_exits_with_3_unless_all_is_met(capsys, tmp_path):
         (('base = "8 mm"', 'base = "8 deg"'), "prism.base"),
         (('base = "8 mm"', 'bse = "8 mm"'), "prism.bse"),
         (("[prism]", "[prisma]"), "prisma"),
-        (('name = "drained film"', 'name = "dry"'), "states.dry.name"),
+        (('name = "drained film"', 'name = "dry"'), "states[dry].name"),
         (('metric = "worst_ratio"', 'metric = "wrost_ratio"'), "worst_ratio"),
         (('touching = "heating oil"', 'touching = "heating oyl"'), "heating oyl"),
         (('material = "polysulfone"', 'material = "polysulphone"'), "polysulphone"),

@@ -31,11 +31,11 @@ def test_every_demo_runs_and_states_requirements(file):
 
 def test_day_tank_passes_limited_by_crosstalk():
     """Claims of the design case: margin 6.74 deg with n 1.615 (the catalogue's polysulfone is 1.609 at 940 nm: 6.58), 50:1 by
-    crosstalk of 2 %, a film does nothing, a dead emitter reads wet."""
+    crosstalk of 2 %, a film does nothing. The tip here absorbs and loses a tenth dry, so 50:1 becomes 45:1."""
     found = outcome("oil_tank_overfill")
     assert found.verdict == "pass"
     assert np.degrees(found.metrics["dry_angle_margin"].value) == pytest.approx(6.6, abs=0.2)
-    assert found.metrics["worst_ratio"].value == pytest.approx(50, rel=0.06)
+    assert 44 < found.metrics["worst_ratio"].value < 50
     assert "crosstalk" in found.limiting
     assert abs(found.metrics["film_effect"].value) < 0.02
     dry, film = found.states[0], found.states[1]
