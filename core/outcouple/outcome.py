@@ -282,9 +282,7 @@ def _surface(surface: Surface) -> dict[str, Any]:
     return {
         "name": surface.name,
         "label": surface.label,
-        "axes": [
-            {"label": label, "unit": unit, "values": values.tolist()} for label, unit, values in surface.axes
-        ],
+        "axes": [{"label": label, "unit": unit, "values": values.tolist()} for label, unit, values in surface.axes],
         "values": [_number(v) for v in surface.values]
         if surface.values.ndim == 1
         else [[_number(v) for v in row] for row in surface.values],

@@ -8,6 +8,7 @@ import sys
 from pathlib import Path
 
 import pytest
+
 from outcouple.cli.main import COMMANDS, main
 
 ROOT = Path(__file__).parents[2]
@@ -50,7 +51,18 @@ def test_budget_json_holds_what_is_promised(capsys):
     answer = json.loads(out)
     assert code == 0
     assert answer["verdict"] == "pass"
-    promised = {"design", "geometry", "verdict", "metrics", "states", "stages", "requirements", "noise", "cautions", "version"}
+    promised = {
+        "design",
+        "geometry",
+        "verdict",
+        "metrics",
+        "states",
+        "stages",
+        "requirements",
+        "noise",
+        "cautions",
+        "version",
+    }
     assert promised <= set(answer)
     assert {"value", "unit", "label", "scope", "at"} <= set(answer["metrics"]["worst_ratio"])
     assert {"name", "expect", "signal", "unit", "channels", "metrics", "stages"} <= set(answer["states"][0])
@@ -62,7 +74,9 @@ def test_budget_json_holds_what_is_promised(capsys):
 
 def test_budget_exits_with_3_unless_all_is_met(capsys, tmp_path):
     missed = tmp_path / "missed.toml"
-    missed.write_text(TANK.read_text().replace('metric = "worst_ratio"\nat_least = 10', 'metric = "worst_ratio"\nat_least = 1000'))
+    missed.write_text(
+        TANK.read_text().replace('metric = "worst_ratio"\nat_least = 10', 'metric = "worst_ratio"\nat_least = 1000')
+    )
     assert run(capsys, "budget", missed)[0] == 3
     none = tmp_path / "none.toml"
     none.write_text(TANK.read_text().split("[[requirements]]")[0])
@@ -89,7 +103,9 @@ def test_budget_exits_with_3_unless_all_is_met(capsys, tmp_path):
 def test_a_mistake_is_named_with_its_place_and_no_traceback(tmp_path, change, message):
     file = tmp_path / "tank.toml"
     file.write_text(TANK.read_text().replace(*change, 1))
-    done = subprocess.run([sys.executable, "-m", "outcouple", "budget", file], capture_output=True, text=True, check=False)
+    done = subprocess.run(
+        [sys.executable, "-m", "outcouple", "budget", file], capture_output=True, text=True, check=False
+    )
     assert done.returncode == 2, done.stdout
     assert "Traceback" not in done.stderr
     assert message in done.stderr
@@ -104,7 +120,7 @@ def test_all_mistakes_are_told_in_one_go(capsys, tmp_path):
     code, _, err = run(capsys, "budget", file)
     assert code == 2
     assert len(err.strip().splitlines()) == 3
-    assert 'unit missing' in err
+    assert "unit missing" in err
 
 
 def test_a_file_that_is_not_there(capsys):
@@ -128,7 +144,9 @@ def test_new_writes_a_design_that_runs_and_never_overwrites(capsys, tmp_path, mo
 
 
 def test_list_shows_materials_at_a_wavelength_and_like_an_index(capsys):
-    code, out, _ = run(capsys, "list", "materials", "--at", "850 nm", "--temperature", "60 degC", "--like", "1.47", "--json")
+    code, out, _ = run(
+        capsys, "list", "materials", "--at", "850 nm", "--temperature", "60 degC", "--like", "1.47", "--json"
+    )
     rows = json.loads(out)
     assert code == 0
     assert abs(rows[0]["index"] - 1.47) < 0.01

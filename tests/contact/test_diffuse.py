@@ -100,9 +100,7 @@ def test_diffuse_reflectance_of_other_indices_is_what_photons_do(n_medium: float
 def test_design_figure_of_milk_in_a_plastic_tip() -> None:
     # Computed for the design of tips in milk (10/cm, 0.1/cm): 0.76, which is the matched-index value.
     given_ = {"scattering": 1000.0, "absorption": 10.0}
-    assert diffuse.diffuse_reflectance(**given_, n_medium=1.35, n_guide=1.35) == pytest.approx(
-        0.7575, abs=5e-4
-    )
+    assert diffuse.diffuse_reflectance(**given_, n_medium=1.35, n_guide=1.35) == pytest.approx(0.7575, abs=5e-4)
     assert diffuse.diffuse_reflectance(**given_, n_medium=1.35, n_guide=1.64) == pytest.approx(0.75, abs=0.01)
 
 
@@ -159,9 +157,7 @@ def test_diffuse_transmittance_is_walshs_closed_form(index: float) -> None:
     # n^2 law, outwards.
     inwards = 1 - walsh(index)
     assert diffuse.diffuse_transmittance(n_from=1.0, n_to=index) == pytest.approx(inwards, rel=1e-5)
-    assert diffuse.diffuse_transmittance(n_from=index, n_to=1.0) == pytest.approx(
-        inwards / index**2, rel=1e-5
-    )
+    assert diffuse.diffuse_transmittance(n_from=index, n_to=1.0) == pytest.approx(inwards / index**2, rel=1e-5)
 
 
 @given(st.floats(1.0, 2.0), st.floats(1.0, 2.0))
@@ -172,9 +168,7 @@ def test_diffuse_transmittance_keeps_the_second_law(one: float, other: float) ->
     assert there <= min(one, other) ** 2 * (1 + 1e-9)
 
 
-@pytest.mark.parametrize(
-    ("n_contact", "share"), [(1.43, 0.445), (1.327, 0.517), (1.484, 0.413), (1.52, 0.413)]
-)
+@pytest.mark.parametrize(("n_contact", "share"), [(1.43, 0.445), (1.327, 0.517), (1.484, 0.413), (1.52, 0.413)])
 def test_escape_from_acrylic(n_contact: float, share: float) -> None:
     # Computed independently (twice) for skin, water and a full Lambertian in PMMA of 1.484.
     assert diffuse.escape_share(n_guide=1.484, n_contact=n_contact) == pytest.approx(share, abs=6e-4)
@@ -257,9 +251,7 @@ def test_bubbles_and_foam() -> None:
     centres, points = rng.random((400, 2)), rng.random((4000, 2))
     apart = np.abs(points[:, None] - centres)
     covered = (np.minimum(apart, 1 - apart) ** 2).sum(axis=2).min(axis=1) < 0.03**2
-    assert diffuse.bubble_share(density=400, contact_area=math.pi * 0.03**2) == pytest.approx(
-        covered.mean(), abs=0.05
-    )
+    assert diffuse.bubble_share(density=400, contact_area=math.pi * 0.03**2) == pytest.approx(covered.mean(), abs=0.05)
     wet = diffuse.foam_wet_share(gas_share=np.array([0.5, 0.7405, 0.9, 0.99, 1 - 1e-9]))
     assert np.all(np.diff(wet) < 0)
     assert wet[0] == 1.0

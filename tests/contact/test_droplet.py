@@ -33,9 +33,7 @@ def table_and_trace(seed: int, count: int, *, share_grazing: float) -> tuple[np.
             contact_angle=phi,
             acceptance=acceptance,
         )
-        errors.append(
-            (kept[0, 0].mean() - cap.within(acceptance).mean(), (returned[0, 0] + cap.lost).mean() - 1)
-        )
+        errors.append((kept[0, 0].mean() - cap.within(acceptance).mean(), (returned[0, 0] + cap.lost).mean() - 1))
         places.append((n_guide, n_drop, angle / DEG, phi / DEG, acceptance / DEG))
     return np.abs(errors), np.array(places)
 
@@ -66,9 +64,7 @@ def test_stored_nodes_are_traces() -> None:
         assert returned[0, 0] == pytest.approx(1 - cap.lost, abs=2e-3)
 
 
-@pytest.mark.parametrize(
-    ("degrees", "lost"), [(0.5, 0), (3, 0.0), (10, 0.241), (20, 0.395), (40, 0.538), (80, 0.76)]
-)
+@pytest.mark.parametrize(("degrees", "lost"), [(0.5, 0), (3, 0.0), (10, 0.241), (20, 0.395), (40, 0.538), (80, 0.76)])
 def test_water_drops_on_acrylic_at_45_degrees(degrees: float, lost: float) -> None:
     # Computed independently: all exits, PMMA 1.484 and water 1.327.
     kept, turned = drop_answer(
@@ -83,9 +79,7 @@ def test_water_drops_on_acrylic_at_45_degrees(degrees: float, lost: float) -> No
 
 def test_a_flat_film_loses_nothing_beyond_the_critical_angle() -> None:
     angle = np.array([[43.0, 45.0, 60.0, 80.0]]) * DEG
-    kept, turned = drop_answer(
-        n_guide=1.484, n_drop=1.327, angle=angle, contact_angle=0.0, acceptance=1 * DEG
-    )
+    kept, turned = drop_answer(n_guide=1.484, n_drop=1.327, angle=angle, contact_angle=0.0, acceptance=1 * DEG)
     assert kept == pytest.approx(np.ones((1, 4)), abs=1e-3)
     assert turned == pytest.approx(np.zeros((1, 4)), abs=1e-3)
 
@@ -103,9 +97,7 @@ def test_a_flat_film_before_the_critical_angle_is_two_faces() -> None:
     sine = n_guide * math.sin(angle)
     near, far = face(n_guide, n_drop, sine), face(n_drop, 1.0, sine)
     film = near + (1 - near) ** 2 * far / (1 - near * far)
-    kept, _ = drop_powers(
-        n_guide=n_guide, n_drop=n_drop, angle=np.array([[angle]]), contact_angle=0.0, acceptance=0.1
-    )
+    kept, _ = drop_powers(n_guide=n_guide, n_drop=n_drop, angle=np.array([[angle]]), contact_angle=0.0, acceptance=0.1)
     assert kept[0, 0] == pytest.approx(film, abs=2e-3)
 
 
@@ -114,9 +106,7 @@ def test_samples_and_rays_answer_as_one_by_one() -> None:
     guide, drop = rng.uniform(1.3, 1.9, 5), rng.uniform(1.2, 1.6, 5)
     phi, acceptance = rng.uniform(0.01, 2, 5), rng.uniform(0.01, 1, 5)
     angle = rng.uniform(0, 1.5, (5, 7))
-    kept, turned = drop_answer(
-        n_guide=guide, n_drop=drop, angle=angle, contact_angle=phi, acceptance=acceptance
-    )
+    kept, turned = drop_answer(n_guide=guide, n_drop=drop, angle=angle, contact_angle=phi, acceptance=acceptance)
     assert kept.shape == turned.shape == (5, 7)
     for s in range(5):
         for k in range(7):

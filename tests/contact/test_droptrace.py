@@ -97,9 +97,7 @@ def follow(
     return max(first, 0.0), lost, back
 
 
-def second_trace(
-    n_guide: float, n_drop: float, angle: float, phi: float, acceptance: float
-) -> NDArray[np.float64]:
+def second_trace(n_guide: float, n_drop: float, angle: float, phi: float, acceptance: float) -> NDArray[np.float64]:
     """Rows s and p: first exit, all exits, kept within the acceptance (base reflection included)."""
     sine = n_guide * math.sin(angle) / n_drop
     inside = (sine, 0.0, math.sqrt(1 - sine**2))
@@ -144,10 +142,7 @@ def test_two_traces_agree(n_guide: float, n_drop: float, angle: float, phi: floa
 
 @pytest.mark.parametrize(
     ("n_guide", "degrees", "published"),
-    [
-        (1.484, *row)
-        for row in ((1, 0.0), (3, 0.0), (10, 0.24), (20, 0.39), (40, 0.53), (60, 0.63), (80, 0.745))
-    ]
+    [(1.484, *row) for row in ((1, 0.0), (3, 0.0), (10, 0.24), (20, 0.39), (40, 0.53), (60, 0.63), (80, 0.745))]
     + [(1.51, *row) for row in ((10, 0.17), (40, 0.52), (90, 0.77))],
 )
 def test_first_exit_from_water_drops_at_45_degrees(n_guide: float, degrees: float, published: float) -> None:
@@ -156,9 +151,7 @@ def test_first_exit_from_water_drops_at_45_degrees(n_guide: float, degrees: floa
     assert cap.first.mean() == pytest.approx(published, abs=0.007)
 
 
-@pytest.mark.parametrize(
-    ("degrees", "wide", "narrow"), [(3, 0.99, 0.45), (10, 0.155, 0.05), (40, 0.03, 0.01)]
-)
+@pytest.mark.parametrize(("degrees", "wide", "narrow"), [(3, 0.99, 0.45), (10, 0.155, 0.05), (40, 0.03, 0.01)])
 def test_drops_turn_what_they_return(degrees: float, wide: float, narrow: float) -> None:
     # Computed independently: share still within 5 and 2.6 degrees of specular, PMMA/water at 45 degrees.
     cap = trace_drop(n_guide=1.484, n_drop=1.327, angle=45 * DEG, contact_angle=degrees * DEG)

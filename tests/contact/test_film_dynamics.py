@@ -24,9 +24,7 @@ SIZE = st.floats(1e-6, 1e-3)
         (1.0, 1270.0, 10e-6, 4000.0),
     ],
 )
-def test_draining_times_of_a_probe(
-    viscosity: float, density: float, thickness: float, seconds: float
-) -> None:
+def test_draining_times_of_a_probe(viscosity: float, density: float, thickness: float, seconds: float) -> None:
     # Computed for the design of rod probes, 5 mm below the film's edge; oil and syrup densities from memory.
     time = films.draining_time(viscosity=viscosity, density=density, height=5e-3, thickness=thickness)
     assert time == pytest.approx(seconds, rel=0.06)

@@ -31,14 +31,7 @@ def test_hertz_pressure_ellipse_carries_the_force_and_bends_the_face_to_the_sphe
 
     def sunk(at: float) -> float:  # ring of radius r sinks the surface by 4 p r K / (pi E* (r + at))
         def ring(r: float) -> float:
-            return (
-                4
-                * pressure(r)
-                * r
-                / (r + at)
-                * special.ellipk(4 * r * at / (r + at) ** 2)
-                / (math.pi * modulus)
-            )
+            return 4 * pressure(r) * r / (r + at) * special.ellipk(4 * r * at / (r + at) ** 2) / (math.pi * modulus)
 
         parts = [0.0, contact] if at in (0.0, contact) else [0.0, at, contact]
         return sum(integrate.quad(ring, a, b, limit=200)[0] for a, b in pairwise(parts))
@@ -51,9 +44,7 @@ def test_hertz_pressure_ellipse_carries_the_force_and_bends_the_face_to_the_sphe
 @given(force=POSITIVE, radius=POSITIVE, modulus=POSITIVE)
 def test_hertz_area_times_mean_pressure_is_the_force(force: float, radius: float, modulus: float) -> None:
     given_ = {"force": force, "radius": radius, "modulus": modulus}
-    assert mechanics.hertz_area(**given_) * mechanics.hertz_pressure(**given_) == pytest.approx(
-        force, rel=1e-12
-    )
+    assert mechanics.hertz_area(**given_) * mechanics.hertz_pressure(**given_) == pytest.approx(force, rel=1e-12)
     assert mechanics.hertz_area(**{**given_, "force": 8 * force}) == pytest.approx(
         4 * mechanics.hertz_area(**given_), rel=1e-12
     )
@@ -73,9 +64,7 @@ def test_pull_off_is_the_deepest_pull_an_adhesive_sphere_bears() -> None:
     radius, adhesion, modulus = 0.01, 0.05, 0.8e6
 
     def load(contact: float) -> float:
-        return 4 * modulus * contact**3 / (3 * radius) - math.sqrt(
-            8 * math.pi * adhesion * modulus * contact**3
-        )
+        return 4 * modulus * contact**3 / (3 * radius) - math.sqrt(8 * math.pi * adhesion * modulus * contact**3)
 
     deepest = optimize.minimize_scalar(load, bounds=(1e-6, 1e-3), method="bounded", options={"xatol": 1e-12})
     assert mechanics.pull_off_force(radius=radius, adhesion=adhesion) == pytest.approx(-deepest.fun, rel=1e-9)
@@ -97,9 +86,7 @@ def test_persson_share_solves_his_diffusion_of_pressure(load: float) -> None:
         ) / (math.sqrt(2 * math.pi) * deviation)
 
     share = integrate.quad(density, 0, pressure + 12 * deviation, limit=200, points=[pressure])[0]
-    assert mechanics.persson_share(pressure=pressure, modulus=modulus, slope=slope) == pytest.approx(
-        share, rel=1e-7
-    )
+    assert mechanics.persson_share(pressure=pressure, modulus=modulus, slope=slope) == pytest.approx(share, rel=1e-7)
 
 
 def test_persson_share_starts_at_1_60() -> None:
@@ -115,9 +102,7 @@ def test_persson_share_starts_at_1_60() -> None:
 
 
 @given(st.lists(st.floats(0, 1e7), min_size=2, max_size=20), POSITIVE, st.floats(0.01, 1))
-def test_shares_rise_with_pressure_and_stay_shares(
-    pressures: list[float], pitch: float, slope: float
-) -> None:
+def test_shares_rise_with_pressure_and_stay_shares(pressures: list[float], pitch: float, slope: float) -> None:
     pressure = np.sort(pressures)
     rough = mechanics.persson_share(pressure=pressure, modulus=1e6, slope=slope)
     bumps = mechanics.bump_share(pressure=pressure, modulus=1e6, radius=pitch / 2, pitch=pitch)

@@ -36,9 +36,7 @@ def compute(row: dict[str, str]) -> float:
     if quantity.startswith("LLD"):
         return float(film_dynamics.drawn_thickness(viscosity=mu, speed=0.01, **surface))
     assert quantity.startswith("fibre/tube film")
-    return float(
-        film_dynamics.tube_film_thickness(viscosity=mu, surface_tension=gamma, speed=0.01, radius=0.5e-3)
-    )
+    return float(film_dynamics.tube_film_thickness(viscosity=mu, surface_tension=gamma, speed=0.01, radius=0.5e-3))
 
 
 @pytest.mark.parametrize("row", ROWS, ids=lambda row: f"{row['quantity'][:20]} {row['liquid']}")
@@ -70,9 +68,7 @@ def test_puddle_depth_is_the_integrated_profile(degrees: float) -> None:
     # Computed independently: Laplace's law integrated along the surface from its level middle to the rim.
     angle = math.radians(degrees)
     length = float(wetting.capillary_length(**WATER))
-    assert wetting.puddle_depth(**WATER, contact_angle=angle) == pytest.approx(
-        profile_depth(length, angle), rel=1e-4
-    )
+    assert wetting.puddle_depth(**WATER, contact_angle=angle) == pytest.approx(profile_depth(length, angle), rel=1e-4)
 
 
 @pytest.mark.parametrize("degrees", [0.0, 30.0, 70.0])
@@ -88,14 +84,10 @@ def test_wall_meniscus_is_the_integrated_profile(degrees: float) -> None:
 def test_design_figures_of_a_floor_sensor() -> None:
     # Computed for the design of such sensors: 0.47 mm puddle of water at 10 degrees, 2.7 mm at 60; a 0.8 mm
     # gap lifts water 18 to 19 mm and a glycol mix (0.048 N/m, 1070 kg/m3) 11 mm.
-    assert wetting.puddle_depth(**WATER, contact_angle=math.radians(10)) == pytest.approx(
-        0.47e-3, abs=0.01e-3
-    )
+    assert wetting.puddle_depth(**WATER, contact_angle=math.radians(10)) == pytest.approx(0.47e-3, abs=0.01e-3)
     assert wetting.puddle_depth(**WATER, contact_angle=math.radians(60)) == pytest.approx(2.7e-3, abs=0.05e-3)
     assert wetting.gap_rise(**WATER, gap=0.8e-3) == pytest.approx(18.6e-3, abs=0.1e-3)
-    assert wetting.gap_rise(surface_tension=0.048, density=1070, gap=0.8e-3) == pytest.approx(
-        11.4e-3, abs=0.1e-3
-    )
+    assert wetting.gap_rise(surface_tension=0.048, density=1070, gap=0.8e-3) == pytest.approx(11.4e-3, abs=0.1e-3)
     per_area = wetting.leaked_volume(**WATER, contact_angle=math.radians(10), area=0.5)
     assert per_area == pytest.approx(0.5 * 0.475e-3, rel=0.01)
 
@@ -112,17 +104,13 @@ def test_fill_time_is_the_integrated_flow(plates: bool, size: float) -> None:
     middle = (steps[1:] + steps[:-1]) / 2
     time = float(np.sum(np.diff(steps) * middle / (mobility * pressure)))
     given_ = {"surface_tension": gamma, "viscosity": mu, "length": goal, "contact_angle": angle}
-    found = (
-        wetting.gap_fill_time(gap=size, **given_) if plates else wetting.tube_fill_time(radius=size, **given_)
-    )
+    found = wetting.gap_fill_time(gap=size, **given_) if plates else wetting.tube_fill_time(radius=size, **given_)
     assert found == pytest.approx(time, rel=1e-8)
 
 
 def test_a_gap_that_does_not_wet_never_fills() -> None:
     angle = np.array([0.0, math.pi / 2, 2.0])
-    time = wetting.gap_fill_time(
-        surface_tension=0.07, viscosity=1e-3, gap=1e-4, length=0.01, contact_angle=angle
-    )
+    time = wetting.gap_fill_time(surface_tension=0.07, viscosity=1e-3, gap=1e-4, length=0.01, contact_angle=angle)
     assert np.isfinite(time).tolist() == [True, False, False]
 
 
@@ -152,9 +140,7 @@ def test_large_drops_are_no_caps() -> None:
 def test_drops_hang_and_stick() -> None:
     # Tate's ideal drop weighs 2 pi r gamma.
     whole = wetting.hanging_drop_volume(**WATER, tip_radius=1e-3, fraction=1.0)
-    assert whole * WATER["density"] * wetting.GRAVITY == pytest.approx(
-        2 * math.pi * 1e-3 * WATER["surface_tension"]
-    )
+    assert whole * WATER["density"] * wetting.GRAVITY == pytest.approx(2 * math.pi * 1e-3 * WATER["surface_tension"])
     # Water under a ceiling breaks up about 24 mm apart: 2 pi sqrt(2) times 2.73 mm.
     assert wetting.hanging_spacing(**WATER) == pytest.approx(24.2e-3, abs=0.1e-3)
     sticking = {"advancing": math.radians(95), "receding": math.radians(60)}
@@ -169,9 +155,7 @@ def test_drops_hang_and_stick() -> None:
 
 
 def test_a_pool_on_a_slope_starves_the_uphill_side() -> None:
-    depth = wetting.pool_depth_on_slope(
-        deepest=2e-3, slope=math.radians(1), distance=np.array([0.0, 0.05, 0.5])
-    )
+    depth = wetting.pool_depth_on_slope(deepest=2e-3, slope=math.radians(1), distance=np.array([0.0, 0.05, 0.5]))
     assert depth[0] == 2e-3
     assert depth[1] == pytest.approx(2e-3 - 0.05 * math.tan(math.radians(1)))
     assert depth[2] == 0.0

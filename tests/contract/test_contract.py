@@ -41,7 +41,12 @@ def design(host, geometry, states, **more):
     return design_from_mapping({"geometry": geometry, "states": states, **more}, host=host)
 
 
-TOUCH = {"name": "finger", "expect": "present", "touching": "hydraulic oil", "object": {"diameter": "9 mm", "y": "0 mm"}}
+TOUCH = {
+    "name": "finger",
+    "expect": "present",
+    "touching": "hydraulic oil",
+    "object": {"diameter": "9 mm", "y": "0 mm"},
+}
 CLEAR = {"name": "clear", "expect": "absent"}
 MILKY = {
     "name": "milky",
@@ -62,7 +67,9 @@ MIXED = {
 
 @pytest.mark.parametrize("geometry", ["prism-switch", "chord-stub", "camera-stub", "turn-stub"])
 def test_ledger_closes_for_every_state_and_channel(host, geometry):
-    table = tabulate(design(host, geometry, [CLEAR, TOUCH if "stub" in geometry else MILKY, MILKY | {"name": "m"}, MIXED]))
+    table = tabulate(
+        design(host, geometry, [CLEAR, TOUCH if "stub" in geometry else MILKY, MILKY | {"name": "m"}, MIXED])
+    )
     for row in table.rows:
         for channel in range(row.reading.mean.shape[1]):
             assert abs(ledger_of(row.laid, channel).gap) < 1e-12, (row.laid.state.name, channel)
@@ -145,7 +152,9 @@ def test_milky_liquid_adds_light_in_proportion_to_what_it_sends_back(host):
 
     states = [CLEAR, milky(0), milky(20), milky(40)]
     quiet = {"prism": {"crosstalk": "0 %"}, "emitter": {"half_angle": "3 deg"}}
-    _, clear, pale, white = (row.result.share[0, 0] for row in tabulate(design(host, "prism-switch", states, **quiet)).rows)
+    _, clear, pale, white = (
+        row.result.share[0, 0] for row in tabulate(design(host, "prism-switch", states, **quiet)).rows
+    )
     assert clear < pale < white
     assert white - clear == pytest.approx(2 * (pale - clear), rel=1e-12)
 

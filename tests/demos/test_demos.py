@@ -10,6 +10,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
+
 from outcouple import evaluate, load_design
 
 DEMOS = sorted((Path(__file__).parents[2] / "demo_configs").glob("*.toml"))

@@ -6,6 +6,7 @@ import inspect
 from importlib.metadata import EntryPoint
 
 import pytest
+
 from outcouple.geometry import Geometry
 from outcouple.hooks import build_host, hookimpl, host, spec
 from outcouple.touching.clear import Dry

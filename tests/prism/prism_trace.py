@@ -37,8 +37,24 @@ def lobe(rng, count, half_angle, exponent):
     return np.stack([sin * np.cos(azimuth), sin * np.sin(azimuth), cos], axis=1)
 
 
-def prism_signal(*, n, n_out, base, stem=0.0, face_angle=np.pi / 4, source_x, source_r, detector_x, detector_r,
-                 half_angle, exponent=1.0, bonded=False, rays=200_000, seed=1, most_hits=2):
+def prism_signal(
+    *,
+    n,
+    n_out,
+    base,
+    stem=0.0,
+    face_angle=np.pi / 4,
+    source_x,
+    source_r,
+    detector_x,
+    detector_r,
+    half_angle,
+    exponent=1.0,
+    bonded=False,
+    rays=200_000,
+    seed=1,
+    most_hits=2,
+):
     """(mean, standard error) of the share of the lobe that lands on the detector after one or two face hits."""
     rng = np.random.default_rng(seed)
     radius = source_r * np.sqrt(rng.random(rays))

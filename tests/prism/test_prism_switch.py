@@ -141,7 +141,12 @@ def test_one_hit_ways_open_up_in_wide_lobes_and_carry_the_wet_reading(host):
     wide = prism(
         host,
         emitter={"half_angle": "30 deg"},
-        layout={"emitter_radius": "0.5 mm", "detector_radius": "1 mm", "coupling": "bonded", "detector_half_angle": "90 deg"},
+        layout={
+            "emitter_radius": "0.5 mm",
+            "detector_radius": "1 mm",
+            "coupling": "bonded",
+            "detector_half_angle": "90 deg",
+        },
     )
     table = tabulate(wide)
     found = PrismSwitch().measure(["one_hit_share"], _results(table))["one_hit_share"]
@@ -170,7 +175,13 @@ def test_dry_angle_margin_is_45_degrees_less_the_critical_angle(host, index, mar
 
 @pytest.mark.parametrize(
     ("index", "liquid", "returned"),
-    [(1.484, 1.327, 1.3e-4), (1.57, 1.327, 9.5e-4), (1.615, 1.327, 2.2e-3), (1.759, 1.327, 2.3e-2), (1.4525, 1.20, 1.9e-3)],
+    [
+        (1.484, 1.327, 1.3e-4),
+        (1.57, 1.327, 9.5e-4),
+        (1.615, 1.327, 2.2e-3),
+        (1.759, 1.327, 2.3e-2),
+        (1.4525, 1.20, 1.9e-3),
+    ],
 )
 def test_wet_return_of_a_collimated_beam(host, index, liquid, returned):
     """Two hits at 45 degrees, s and p averaged after the product; figures of the design cases, 4 %."""

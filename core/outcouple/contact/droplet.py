@@ -167,9 +167,7 @@ def _zone_edges(*, n_drop: Number, ratio: Number, contact_angle: Number) -> Floa
     grazing = np.maximum(np.arcsin(np.minimum(ratio, 1.0)), critical + 1e-6)
     before = critical - np.minimum(contact_angle, critical / 2)
     step = np.minimum(contact_angle, (grazing - critical) / 3)
-    return np.stack(
-        np.broadcast_arrays(0.0, before, critical, critical + step, grazing - step, grazing), axis=-1
-    )
+    return np.stack(np.broadcast_arrays(0.0, before, critical, critical + step, grazing - step, grazing), axis=-1)
 
 
 def _zone(inside: Floats, *, n_drop: Floats, ratio: Floats, contact_angle: Floats) -> Floats:

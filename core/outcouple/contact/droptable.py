@@ -56,9 +56,7 @@ def _node(n_drop: float, ratio: float, contact_angle: float, zone: float, *, ray
     ratio = max(ratio, LEAST_GUIDE / n_drop)  # no guide is thinner; the corner node only completes the grid
     inside = float(zone_angle(zone, n_drop=n_drop, ratio=ratio, contact_angle=contact_angle))
     angle = float(np.arcsin(np.sin(inside) / ratio))
-    cap = trace_drop(
-        n_guide=ratio * n_drop, n_drop=n_drop, angle=angle, contact_angle=contact_angle, rays=rays
-    )
+    cap = trace_drop(n_guide=ratio * n_drop, n_drop=n_drop, angle=angle, contact_angle=contact_angle, rays=rays)
     order = np.argsort(cap.deviation)
     total = np.concatenate((np.zeros((1, 2)), np.cumsum(cap.power[order], axis=0)))
     spread = float(reflection_spread(ratio=ratio, inside=inside, contact_angle=contact_angle))

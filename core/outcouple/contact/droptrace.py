@@ -79,9 +79,7 @@ class _Rays:
         self.across = across
 
 
-def trace_drop(
-    *, n_guide: float, n_drop: float, angle: float, contact_angle: float, rays: int = 4000
-) -> DropTrace:
+def trace_drop(*, n_guide: float, n_drop: float, angle: float, contact_angle: float, rays: int = 4000) -> DropTrace:
     """Trace evenly spread rays from a guide through one drop until their light is out again.
 
     Formula: Snell's and Fresnel's laws at the base (guide/drop) and at the cap (drop/air), the field carried
@@ -123,9 +121,7 @@ def trace_drop(
         if not bright.any():
             break
     unsettled = np.asarray(1 - base - lost - np.sum([power.sum(axis=0) for power in powers], axis=0))
-    return DropTrace(
-        base, first, lost + unsettled, np.concatenate(deviations), np.concatenate(powers), unsettled
-    )
+    return DropTrace(base, first, lost + unsettled, np.concatenate(deviations), np.concatenate(powers), unsettled)
 
 
 def _launch(sine: float, contact_angle: float, rays: int, amplitude: Floats) -> _Rays:
@@ -156,9 +152,7 @@ def _advance(rays: _Rays, at_base: Bools, centre: Floats) -> tuple[_Rays, Bools]
     return rays, meets_base
 
 
-def _meet_base(
-    rays: _Rays, which: Bools, n_drop: float, n_guide: float, specular: Floats
-) -> tuple[Floats, Floats]:
+def _meet_base(rays: _Rays, which: Bools, n_drop: float, n_guide: float, specular: Floats) -> tuple[Floats, Floats]:
     """Let light out into the guide: deviations and powers; the rest turns back up."""
     if not which.any():
         return np.zeros(0), np.zeros((0, 2))

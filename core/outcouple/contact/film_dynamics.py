@@ -45,24 +45,18 @@ def drained_thickness(*, viscosity: Number, density: Number, height: Number, tim
     >>> round(float(drained_thickness(viscosity=1.0016e-3, density=998.2, height=0.05, time=10)) * 1e6, 2)
     22.62
     """
-    return np.asarray(
-        np.sqrt(np.asarray(viscosity) * height / (np.asarray(density) * GRAVITY * np.asarray(time)))
-    )
+    return np.asarray(np.sqrt(np.asarray(viscosity) * height / (np.asarray(density) * GRAVITY * np.asarray(time))))
 
 
 def draining_time(*, viscosity: Number, density: Number, height: Number, thickness: Number) -> Floats:
     """Time [s] a film takes to drain to a thickness [m], mu z / (rho g h^2)."""
-    return np.asarray(
-        np.asarray(viscosity) * height / (np.asarray(density) * GRAVITY * np.asarray(thickness) ** 2)
-    )
+    return np.asarray(np.asarray(viscosity) * height / (np.asarray(density) * GRAVITY * np.asarray(thickness) ** 2))
 
 
 def draining_notes(*, drawn: Number, drained: Number) -> tuple[Note, ...]:
     """A caution where a film was drawn thinner [m] than drainage would leave it."""
     thinner = np.asarray(drawn) < np.asarray(drained)
-    text = (
-        "The film was drawn out thinner than drainage would have left it by now: its drawn thickness holds."
-    )
+    text = "The film was drawn out thinner than drainage would have left it by now: its drawn thickness holds."
     return caution("film-drawn-thin", text, thinner)
 
 
@@ -79,9 +73,7 @@ def drawn_thickness(*, viscosity: Number, density: Number, surface_tension: Numb
     return np.asarray(PLATE_CONSTANT * length * np.cbrt(number) ** 2)
 
 
-def drawing_speed(
-    *, viscosity: Number, density: Number, surface_tension: Number, thickness: Number
-) -> Floats:
+def drawing_speed(*, viscosity: Number, density: Number, surface_tension: Number, thickness: Number) -> Floats:
     """Speed [m/s] above which a film is drawn out thicker than given [m]: inverse of `drawn_thickness`.
 
     >>> water = dict(viscosity=1.0016e-3, density=998.2, surface_tension=0.07275)
@@ -93,9 +85,7 @@ def drawing_speed(
     return np.asarray(number * np.asarray(surface_tension) / np.asarray(viscosity))
 
 
-def tube_film_thickness(
-    *, viscosity: Number, surface_tension: Number, speed: Number, radius: Number
-) -> Floats:
+def tube_film_thickness(*, viscosity: Number, surface_tension: Number, speed: Number, radius: Number) -> Floats:
     """Thickness [m] of the film left in a tube, or on a thin fibre, 1.34 r Ca^(2/3).
 
     radius  of the tube or fibre [m]

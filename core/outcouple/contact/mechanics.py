@@ -33,9 +33,7 @@ Floats = NDArray[np.float64]
 Number = float | Floats
 
 HERTZ_LIMIT = 0.3  # contact radius over sphere radius; common practice, no source
-BUMPS_ALONE = (
-    0.3  # share of a bump lattice up to which bumps do not feel each other; common practice, no source
-)
+BUMPS_ALONE = 0.3  # share of a bump lattice up to which bumps do not feel each other; common practice, no source
 FINGER_RANGE = (0.05, 10.0)  # newtons; from memory
 
 
@@ -44,9 +42,7 @@ def plane_strain_modulus(*, modulus: Number, poisson: Number) -> Floats:
     return np.asarray(np.asarray(modulus) / (1 - np.asarray(poisson) ** 2))
 
 
-def reduced_modulus(
-    *, modulus: Number, poisson: Number, counter_modulus: Number, counter_poisson: Number
-) -> Floats:
+def reduced_modulus(*, modulus: Number, poisson: Number, counter_modulus: Number, counter_poisson: Number) -> Floats:
     """Contact modulus [Pa] of two elastic bodies: 1/E* = (1 - nu1^2)/E1 + (1 - nu2^2)/E2.
 
     Reference: K. L. Johnson, Contact Mechanics (1985), eq. 4.20 (number from memory).
@@ -175,9 +171,7 @@ def finger_area(*, force: Number, largest: Number = 250e-6, half_force: Number =
     return np.asarray(largest * load / (1 + load))
 
 
-def finger_share(
-    *, force: Number, least: Number = 0.05, most: Number = 0.6, half_force: Number = 2.0
-) -> Floats:
+def finger_share(*, force: Number, least: Number = 0.05, most: Number = 0.6, half_force: Number = 2.0) -> Floats:
     """Share of a fingertip's gross area that really touches: least + (most - least) F / (F + half_force).
 
     ``least`` and ``most`` are the ends of the range of real over gross area of settled contacts, from memory:

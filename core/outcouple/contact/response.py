@@ -146,6 +146,8 @@ def answer_notes(cover: Cover) -> tuple[Note, ...]:
             )
         if sum(film.spread != "none" for film in patch.films) > 1:
             found.append(
-                Note("one-spread", "Only the first film with a thickness spread is averaged; the others keep their mean.")
+                Note(
+                    "one-spread", "Only the first film with a thickness spread is averaged; the others keep their mean."
+                )
             )
     return tuple(found)

@@ -51,9 +51,7 @@ def capillary_length(*, surface_tension: Number, density: Number) -> Floats:
     return np.asarray(np.sqrt(np.asarray(surface_tension) / (np.asarray(density) * GRAVITY)))
 
 
-def tube_rise(
-    *, surface_tension: Number, density: Number, radius: Number, contact_angle: Number = 0.0
-) -> Floats:
+def tube_rise(*, surface_tension: Number, density: Number, radius: Number, contact_angle: Number = 0.0) -> Floats:
     """Height [m] a liquid rises in an upright tube, 2 gamma cos(phi) / (rho g r) (Jurin); negative: pushed
     down.
 

@@ -56,9 +56,7 @@ class Design:
 
     def unverified(self) -> tuple[str, ...]:
         """Decisive inputs that the file leaves at their defaults."""
-        return tuple(
-            leaf.name for leaf in leaves(type(self.sections)) if leaf.deciding and leaf.path not in self.given
-        )
+        return tuple(leaf.name for leaf in leaves(type(self.sections)) if leaf.deciding and leaf.path not in self.given)
 
     def text(self, path: Path) -> str:
         """The text of a leaf as the user wrote it, or its default's."""

@@ -95,9 +95,7 @@ def _geometry(data: Mapping[str, Any], host: Host, problems: list[Problem]) -> G
     if name not in host.geometries:
         left = next((out for out in host.left_out if out.plugin == name), None)
         hint = f"its plugin was left out: {left.why}" if left else f"one of: {allowed}"
-        problems.append(
-            Problem(("geometry",), name, f"unknown geometry{nearest(name, host.geometries)}", hint)
-        )
+        problems.append(Problem(("geometry",), name, f"unknown geometry{nearest(name, host.geometries)}", hint))
         return None
     return host.geometry(name)
 
@@ -128,9 +126,7 @@ def _sections(data: Mapping[str, Any], geometry: Geometry, problems: list[Proble
         if key not in model.model_fields:
             allowed = [*HEADER, *model.model_fields, *PARTS]
             problems.append(
-                Problem(
-                    (key,), None, f"unknown section{nearest(key, allowed)}", f"allowed: {', '.join(allowed)}"
-                )
+                Problem((key,), None, f"unknown section{nearest(key, allowed)}", f"allowed: {', '.join(allowed)}")
             )
             del own[key]
     try:

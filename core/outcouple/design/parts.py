@@ -77,9 +77,7 @@ def read_states(given: Any, parts: Parts) -> tuple[State, ...]:
             parts.wrong(path, name, "a state needs a name", 'write name = "dry"')
             continue
         if name in seen:
-            parts.wrong(
-                (*path, "name"), name, "there is another state of this name", "names of states must differ"
-            )
+            parts.wrong((*path, "name"), name, "there is another state of this name", "names of states must differ")
         seen.add(name)
         found.extend(_state(row, name, path, parts))
     return tuple(found)
@@ -164,9 +162,7 @@ def _faces(row: Mapping[str, Any], path: Path, parts: Parts) -> dict[str, Touchi
             found = {face: found.get(face, rest) for face in wetted}
     own = row.get("faces", {})
     if not isinstance(own, Mapping):
-        parts.wrong(
-            (*path, "faces"), own, "faces is a table: face = what touches it", f"faces: {', '.join(wetted)}"
-        )
+        parts.wrong((*path, "faces"), own, "faces is a table: face = what touches it", f"faces: {', '.join(wetted)}")
         return found
     for face, given in own.items():
         if face not in wetted:
@@ -201,9 +197,7 @@ def _preset(given: Any, path: Path, parts: Parts) -> Touching | None:
             )
             return None
     if not isinstance(given, Mapping):
-        parts.wrong(
-            path, given, "what touches is a name or a table", 'write "dry", "water" or { what = "droplets" }'
-        )
+        parts.wrong(path, given, "what touches is a name or a table", 'write "dry", "water" or { what = "droplets" }')
         return None
     what = given.get("what", "patches" if "patches" in given else None)
     if what not in known:
@@ -245,9 +239,7 @@ def _changes(given: Any, path: Path, parts: Parts) -> dict[Path, float]:
         leaf = parts.leaves.get(dotted)
         if leaf is None or leaf.structural:
             names = [".".join(key) for key, one in parts.leaves.items() if not one.structural]
-            parts.wrong(
-                (*path, *dotted), None, f"not a number of this design{nearest('.'.join(dotted), names)}", ""
-            )
+            parts.wrong((*path, *dotted), None, f"not a number of this design{nearest('.'.join(dotted), names)}", "")
             continue
         try:
             found[dotted] = parse_leaf(leaf, value)
@@ -274,9 +266,7 @@ def read_requirements(given: Any, parts: Parts, states: tuple[State, ...]) -> tu
     return tuple(row for row in rows if row is not None)
 
 
-def _requirement(
-    row: Mapping[str, Any], path: Path, parts: Parts, states: tuple[State, ...]
-) -> Requirement | None:
+def _requirement(row: Mapping[str, Any], path: Path, parts: Parts, states: tuple[State, ...]) -> Requirement | None:
     parts.unknown_keys(row, REQUIREMENT_KEYS, path)
     known = metrics_of(parts.geometry)
     name = row.get("metric")

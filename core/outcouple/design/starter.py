@@ -32,11 +32,7 @@ def starter_text(geometry: Geometry, job: str) -> str:
                 else f'"{leaf.default_text}"'
             )
             bounds = (
-                f" ({leaf.bounds})"
-                if leaf.bounds
-                else f" (one of: {', '.join(leaf.choices)})"
-                if leaf.choices
-                else ""
+                f" ({leaf.bounds})" if leaf.bounds else f" (one of: {', '.join(leaf.choices)})" if leaf.choices else ""
             )
             lines.append(f"{leaf.path[-1]} = {value}  # {leaf.describe}{bounds}")
         lines.append("")

@@ -109,9 +109,7 @@ class Requirement:
 
     def met(self, value: Any) -> Any:
         """True where a value keeps the limit; nan never does."""
-        return (
-            np.asarray(value) >= self.limit if self.at_least is not None else np.asarray(value) <= self.limit
-        )
+        return np.asarray(value) >= self.limit if self.at_least is not None else np.asarray(value) <= self.limit
 
     def margin(self, value: Any) -> Any:
         """Distance to the limit in the metric's own unit, positive where it is met."""

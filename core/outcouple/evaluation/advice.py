@@ -131,7 +131,10 @@ def _advice(
     leaf, value, stepped = step
     metric = metrics_of(design.geometry)[name]
     old, new = (format_quantity(x, leaf.kind, unit=leaf.unit or None) for x in (value, stepped))
-    before, after = float(watched.values[0]), float(np.broadcast_to(moved.values, (at + 1,))[at] if len(moved.values) == 1 else moved.values[at])
+    before, after = (
+        float(watched.values[0]),
+        float(np.broadcast_to(moved.values, (at + 1,))[at] if len(moved.values) == 1 else moved.values[at]),
+    )
     shown = [format_quantity(x, metric.kind, unit=metric.unit or None) for x in (before, after)]
     text = f"{leaf.name} from {old} to {new}: {metric.label} {shown[0]} -> {shown[1]}"
     return Advice(leaf.name, old, new, name, before, after, text)

@@ -78,8 +78,7 @@ def _elements(table: Table) -> int:
 
 def _signals(table: Table) -> dict[str, Floats]:
     return {
-        row.laid.state.name: np.broadcast_to(np.min(row.reading.mean, axis=1), (table.samples,))
-        for row in table.rows
+        row.laid.state.name: np.broadcast_to(np.min(row.reading.mean, axis=1), (table.samples,)) for row in table.rows
     }
 
 

@@ -104,7 +104,9 @@ def headline_of(
 def _against(one: Judged) -> str:
     where = f" ({one.at})" if one.at else ""
     value = "unknown" if one.value is None else format_quantity(one.value, one.kind, unit=one.unit or None)
-    return f"{one.label} {value}{where}, needs {one.sense} {format_quantity(one.limit, one.kind, unit=one.unit or None)}"
+    return (
+        f"{one.label} {value}{where}, needs {one.sense} {format_quantity(one.limit, one.kind, unit=one.unit or None)}"
+    )
 
 
 def _misread(design: Design, table: Table, one: Judged) -> str:

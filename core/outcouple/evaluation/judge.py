@@ -39,9 +39,7 @@ def judge(
     over: str = "nominal",
 ) -> tuple[Judged, ...]:
     """Verdict of every requirement at the first sample; what was not evaluated here is open, never a pass."""
-    return tuple(
-        _judged(one, metrics[one.metric], found.get(one.metric), states, over) for one in requirements
-    )
+    return tuple(_judged(one, metrics[one.metric], found.get(one.metric), states, over) for one in requirements)
 
 
 def _judged(

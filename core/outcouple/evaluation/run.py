@@ -81,9 +81,7 @@ def evaluate(
     )
 
 
-def _names(
-    design: Design, known: Mapping[str, Metric], want: Sequence[str] | None, maps: bool
-) -> tuple[str, ...]:
+def _names(design: Design, known: Mapping[str, Metric], want: Sequence[str] | None, maps: bool) -> tuple[str, ...]:
     chosen = dict.fromkeys(wanted(design, want))
     for one in design.requirements:
         if maps or known[one.metric].cost == "scalar":

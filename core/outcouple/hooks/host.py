@@ -59,9 +59,7 @@ class Host:
         """The geometry of that name; UserMistake with the nearest name where there is none."""
         if name not in self.geometries:
             allowed = ", ".join(sorted(self.geometries))
-            raise UserMistake(
-                f"unknown geometry {name!r}{nearest(name, self.geometries)}; there are: {allowed}"
-            )
+            raise UserMistake(f"unknown geometry {name!r}{nearest(name, self.geometries)}; there are: {allowed}")
         return self.geometries[name].geometry
 
 
@@ -110,9 +108,7 @@ def _take(manager: pluggy.PluginManager, host: Host, name: str, plugin: object) 
             for entry in (_entry(name, one) for one in given)
         ]
         touching = [_preset(one) for given in _ask(manager, others, "outcouple_touching") for one in given]
-        materials = {
-            key: row for given in _ask(manager, others, "outcouple_materials") for key, row in given.items()
-        }
+        materials = {key: row for given in _ask(manager, others, "outcouple_materials") for key, row in given.items()}
         catalogue = host.catalogue.with_materials(materials) if materials else host.catalogue
         views = [view for given in _ask(manager, others, "outcouple_views") for view in given]
         taken = {entry.name for entry in geometries} & set(host.geometries)
@@ -152,11 +148,7 @@ def _loaded(target: str) -> type[Geometry]:
 def _check_geometry(given: object) -> None:
     if not (inspect.isclass(given) and issubclass(given, Geometry)):
         raise TypeError(f"{given!r} is not a Geometry")
-    missing = [
-        attribute
-        for attribute in ("name", "summary", "Parameters", "wetted")
-        if not hasattr(given, attribute)
-    ]
+    missing = [attribute for attribute in ("name", "summary", "Parameters", "wetted") if not hasattr(given, attribute)]
     if missing:
         raise TypeError(f"geometry {given.__name__} lacks {', '.join(missing)}")
     if inspect.isabstract(given):

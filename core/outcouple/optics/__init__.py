@@ -1,2 +1,10 @@
 from outcouple.optics.interim import *
-from outcouple.optics.interim import stack_response, reflectance, interface, mixed_response, thickness_average, gauss_legendre, spectrum_nodes
+from outcouple.optics.interim import (
+    gauss_legendre,
+    interface,
+    mixed_response,
+    reflectance,
+    spectrum_nodes,
+    stack_response,
+    thickness_average,
+)

@@ -66,9 +66,7 @@ def in_chunks(
     return _in_chunks(function, arrays, points)
 
 
-def _in_chunks(
-    function: Callable[..., tuple[Array, ...]], arrays: Sequence[Array], points: int
-) -> tuple[Array, ...]:
+def _in_chunks(function: Callable[..., tuple[Array, ...]], arrays: Sequence[Array], points: int) -> tuple[Array, ...]:
     shape = np.broadcast_shapes(*(a.shape for a in arrays))
     size = math.prod(shape)
     if size <= points:

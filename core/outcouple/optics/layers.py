@@ -67,7 +67,9 @@ def exit_admittance(permittivity: Array, square: Floats) -> Complexes:
 
 def _clear_front(layers: Sequence[Layer], admittance: Complexes) -> Load:
     """Layers without absorption: the matrices of (B, i C) are real, so the parts of the fields go separately."""
-    shape = np.broadcast_shapes(admittance.shape[1:], *(np.broadcast_shapes(x.square.shape, x.path.shape) for x in layers))
+    shape = np.broadcast_shapes(
+        admittance.shape[1:], *(np.broadcast_shapes(x.square.shape, x.path.shape) for x in layers)
+    )
     B = np.zeros((2, 2, *shape))
     B[0] = 1.0
     iC = np.empty_like(B)

@@ -8,8 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import ArrayLike
 
-from outcouple.optics.arrays import Array, Complexes, Floats, angles, clear, floats, in_chunks, medium
-from outcouple.optics.layers import Layer, exit_admittance, front_load
+from outcouple.optics.arrays import Array, Complexes, Floats
 
 __all__ = ["Powers", "StackResponse", "interface", "reflectance", "stack_response"]
 

@@ -1,8 +1,8 @@
 """For authors of geometries: the conformance kit.
 
-    from outcouple.testing import check_geometry
-    report = check_geometry(MyGeometry())
-    assert not report.failed, report
+from outcouple.testing import check_geometry
+report = check_geometry(MyGeometry())
+assert not report.failed, report
 """
 
 from __future__ import annotations

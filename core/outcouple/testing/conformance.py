@@ -121,7 +121,9 @@ def _check_light(name: str, table: Table, report: Report) -> None:
             report.check(f"{where} keeps the contract", False, str(error))
             continue
         report.check(f"{where} keeps the contract", True)
-        report.check(f"{where} has only wetted faces", set(light.faces) <= set(table.design.geometry.wetted), str(light.faces))
+        report.check(
+            f"{where} has only wetted faces", set(light.faces) <= set(table.design.geometry.wetted), str(light.faces)
+        )
 
 
 def _check_ledger(name: str, table: Table, report: Report) -> None:
@@ -158,7 +160,9 @@ def _check_batch(name: str, design: Design, report: Report) -> None:
         for at, one in enumerate(values):
             alone = evaluate_batch(design, {leaf.path: np.array([one])}, want)
             gap = _gap(together.metrics, alone.metrics, at)
-            report.check(f"{name}: {leaf.name} sample {at} alone and in a batch agree", gap < ALIKE, f"differ by {gap:.2e}")
+            report.check(
+                f"{name}: {leaf.name} sample {at} alone and in a batch agree", gap < ALIKE, f"differ by {gap:.2e}"
+            )
 
 
 def _some_inputs(design: Design) -> list[Leaf]:

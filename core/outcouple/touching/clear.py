@@ -9,7 +9,7 @@ from outcouple.contact.cover import Cover, Drops, Film, Patch, immersed
 from outcouple.fields import Section, choice, flag, name, quantity
 from outcouple.touching.base import Touching
 
-__all__ = ["Dry", "Droplets", "Immersed", "Patches", "ResidualFilm"]
+__all__ = ["Droplets", "Dry", "Immersed", "Patches", "ResidualFilm"]
 
 
 class Dry(Touching):
@@ -42,9 +42,7 @@ class ResidualFilm(Touching):
     """A flat film left behind."""
 
     what: ClassVar[str] = "film"
-    summary: ClassVar[str] = (
-        "a flat film left behind, a gas outside; does not switch a totally reflecting face"
-    )
+    summary: ClassVar[str] = "a flat film left behind, a gas outside; does not switch a totally reflecting face"
 
     liquid: str = name("water", describe="material of the film", what="material")
     thickness: float = quantity(
@@ -79,9 +77,7 @@ class Droplets(Touching):
     contact_angle: float = quantity(
         "60 deg", "angle", ge="0 deg", le="120 deg", describe="contact angle of the drops", deciding=True
     )
-    coarse: bool = flag(
-        False, describe="true: drops are as large as the beam, a way is wholly under them or not"
-    )
+    coarse: bool = flag(False, describe="true: drops are as large as the beam, a way is wholly under them or not")
     gas: str = name("air", describe="gas between the drops", what="material")
 
     @classmethod

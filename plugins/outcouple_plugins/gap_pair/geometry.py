@@ -24,7 +24,6 @@ from outcouple.geometry import (
 from outcouple.light import Light, Vector, lobe_density, turn_between
 from outcouple.notes import Note
 from outcouple.optics import gauss_legendre, interface
-
 from outcouple_plugins.gap_pair.parameters import Parameters
 
 __all__ = ["GapPair"]
@@ -124,9 +123,7 @@ class GapPair(Geometry):
         gap = setting.p.gap
         wedge = gap.tilt * gap.beam
         spread = setting.spread(np.sqrt(gap.roughness**2 + wedge**2 / 12))
-        film = Film(
-            gap.medium, setting.spread(gap.distance), "normal" if np.any(spread > 0) else "none", spread
-        )
+        film = Film(gap.medium, setting.spread(gap.distance), "normal" if np.any(spread > 0) else "none", spread)
         return {"gap": Cover((Patch(1.0, setting.p.pair.second_material, (film,)),))}
 
     def measure(self, names: Sequence[str], results: Results) -> Mapping[str, MetricValue | Missing]:
@@ -178,9 +175,7 @@ def _beam(setting: Setting, n_guide: Floats, bonded: bool) -> tuple[Vector, Floa
     n_in = 1.0 if bonded else n_guide[:, None, None]
     x, y = np.sin(polar) * np.cos(azimuth) / n_in, np.sin(polar) * np.sin(azimuth) / n_in
     z = np.sqrt(1 - x**2 - y**2)
-    flat = [
-        np.broadcast_to(array, weight.shape).reshape(setting.samples, -1) for array in (x, y, z, cos, weight)
-    ]
+    flat = [np.broadcast_to(array, weight.shape).reshape(setting.samples, -1) for array in (x, y, z, cos, weight)]
     return Vector(*flat[:3]), flat[3], flat[4]
 
 
@@ -253,9 +248,7 @@ def _view(setting: Setting) -> View:
         over = np.array([at * half, gap])
         rays.append(RayPath(np.array([foot - step, foot, back]), (-1, 0, -1), (0.0, incidence, 0.0)))
         rays.append(
-            RayPath(
-                np.array([foot - step, foot, over, over + step]), (-1, -2, -1, -1), (0.0, incidence, 0.0, 0.0)
-            )
+            RayPath(np.array([foot - step, foot, over, over + step]), (-1, -2, -1, -1), (0.0, incidence, 0.0, 0.0))
         )
     return View(
         "cross-section",

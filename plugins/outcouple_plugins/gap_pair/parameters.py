@@ -10,9 +10,7 @@ __all__ = ["Gap", "Pair", "Parameters"]
 class Pair(Section):
     """The two prisms."""
 
-    material: str = name(
-        "crown glass", describe="material of the first prism", what="material", deciding=True
-    )
+    material: str = name("crown glass", describe="material of the first prism", what="material", deciding=True)
     second_material: str = name("crown glass", describe="material of the second prism", what="material")
     incidence: float = quantity(
         "45 deg",
@@ -50,12 +48,8 @@ class Gap(Section):
         unit="nm",
         describe="standard deviation of the width over the beam",
     )
-    tilt: float = quantity(
-        "0 urad", "angle", ge="0 rad", le="1 deg", unit="urad", describe="wedge between the faces"
-    )
-    beam: float = quantity(
-        "5 mm", "length", gt="0 mm", le="100 mm", describe="width of the beam along the wedge"
-    )
+    tilt: float = quantity("0 urad", "angle", ge="0 rad", le="1 deg", unit="urad", describe="wedge between the faces")
+    beam: float = quantity("5 mm", "length", gt="0 mm", le="100 mm", describe="width of the beam along the wedge")
     stiffness: float = quantity(
         "2 N/um",
         "stiffness",

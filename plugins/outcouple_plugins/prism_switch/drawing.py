@@ -6,7 +6,6 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.geometry import Outline, RayPath, Setting, View
-
 from outcouple_plugins.prism_switch.light import apex_height
 
 __all__ = ["cross_section"]

@@ -22,7 +22,6 @@ from outcouple.geometry import (
 )
 from outcouple.light import Light
 from outcouple.notes import Note
-
 from outcouple_plugins.prism_switch.drawing import cross_section
 from outcouple_plugins.prism_switch.light import apex_height, prism_light
 from outcouple_plugins.prism_switch.parameters import Parameters
@@ -128,9 +127,9 @@ class PrismSwitch(Geometry):
             np.abs(setting.spread(p.layout.emitter_position)) + setting.spread(p.layout.emitter_radius),
             np.abs(setting.spread(p.layout.detector_position)) + setting.spread(p.layout.detector_radius),
         ) > setting.spread(p.prism.base / 2)
-        overlap = np.abs(
-            setting.spread(p.layout.emitter_position - p.layout.detector_position)
-        ) < setting.spread(p.layout.emitter_radius + p.layout.detector_radius)
+        overlap = np.abs(setting.spread(p.layout.emitter_position - p.layout.detector_position)) < setting.spread(
+            p.layout.emitter_radius + p.layout.detector_radius
+        )
         return (
             Note(
                 "discs-off-base",
@@ -188,9 +187,7 @@ def _dry_angle_margin(results: Results) -> MetricValue | Missing:
         setting = state.setting
         n = setting.index(setting.p.prism.material)
         least = np.minimum(*_axis_incidence(setting))
-        outside = np.max(
-            [setting.index(name) for name in _clear_media(state)] or [np.ones(setting.samples)], axis=0
-        )
+        outside = np.max([setting.index(name) for name in _clear_media(state)] or [np.ones(setting.samples)], axis=0)
         critical = np.arcsin(np.clip(outside / n, 0, 1))
         found[state.name] = np.broadcast_to(least - critical, (results.setting.samples,))
     names = list(found)
@@ -240,8 +237,7 @@ def _liquid(results: Results) -> str | None:
 
 def _effect(results: Results, patches: tuple[Patch, ...], dry: tuple[Patch, ...]) -> MetricValue:
     before, after = (
-        results.trial(dict.fromkeys(("emitter", "detector"), Cover(part)), {})[:, 0]
-        for part in (dry, patches)
+        results.trial(dict.fromkeys(("emitter", "detector"), Cover(part)), {})[:, 0] for part in (dry, patches)
     )
     return MetricValue(np.broadcast_to(after / before - 1, (results.setting.samples,)))
 

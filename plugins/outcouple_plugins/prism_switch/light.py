@@ -10,7 +10,6 @@ from numpy.typing import NDArray
 from outcouple.geometry import Setting
 from outcouple.light import Light, Relight, Vector
 from outcouple.optics import interface
-
 from outcouple_plugins.prism_switch.directions import Directions, lobe_directions
 from outcouple_plugins.prism_switch.ways import Interval, WayTrace, Wedge, trace_way
 
@@ -162,9 +161,7 @@ def _way_rays(
     return _Rays(launch[:, used], reach, length, start.polarization[:, used], angle, hits, turn)
 
 
-def _assemble(
-    setting: Setting, start: _Start, traces: list[tuple[WayTrace, Floats, Floats]], bonded: bool
-) -> Light:
+def _assemble(setting: Setting, start: _Start, traces: list[tuple[WayTrace, Floats, Floats]], bonded: bool) -> Light:
     ways = [
         way
         for (_, columns), found in zip(WAYS, traces, strict=True)

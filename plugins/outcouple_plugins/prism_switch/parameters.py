@@ -56,9 +56,7 @@ class Layout(Section):
         le="30 mm",
         describe="x of the emitter's centre; the emitter face is at negative x",
     )
-    emitter_radius: float = quantity(
-        "0.5 mm", "length", ge="10 um", le="20 mm", describe="radius of the emitting disc"
-    )
+    emitter_radius: float = quantity("0.5 mm", "length", ge="10 um", le="20 mm", describe="radius of the emitting disc")
     emitter_tilt: float = quantity(
         "0 deg",
         "angle",
@@ -69,9 +67,7 @@ class Layout(Section):
     detector_position: float = quantity(
         "2 mm", "length", ge="-30 mm", le="30 mm", describe="x of the detector's centre"
     )
-    detector_radius: float = quantity(
-        "1 mm", "length", ge="10 um", le="20 mm", describe="radius of the detector"
-    )
+    detector_radius: float = quantity("1 mm", "length", ge="10 um", le="20 mm", describe="radius of the detector")
     detector_half_angle: float = quantity(
         "60 deg",
         "angle",

@@ -160,9 +160,7 @@ def trace_way(
     part = part.where_positive(-line.ax, wedge.half_width - line.bx)
     ay, by = direction.y * line.at, y0 + direction.y * line.bt
     dx = line.bx - detector_x
-    landing = part.where_below(
-        line.ax**2 + ay**2, 2 * (line.ax * dx + ay * by), dx**2 + by**2 - detector_radius**2
-    )
+    landing = part.where_below(line.ax**2 + ay**2, 2 * (line.ax * dx + ay * by), dx**2 + by**2 - detector_radius**2)
     use = np.where(landing.length > 0, (landing.low + landing.high) / 2, (part.low + part.high) / 2)
     return WayTrace(
         part.length,

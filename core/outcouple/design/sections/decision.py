@@ -35,9 +35,7 @@ class Decision(Section):
     hysteresis: float = quantity(
         "0 %", "ratio", ge="0 %", le="90 %", describe="dead band about the level, as a share of the span"
     )
-    rate: float = quantity(
-        "10 Hz", "frequency", gt="0 Hz", le="1 MHz", describe="decisions per second and channel"
-    )
+    rate: float = quantity("10 Hz", "frequency", gt="0 Hz", le="1 MHz", describe="decisions per second and channel")
     confirm: int = count(1, ge=1, le=1000, describe="readings of the window that must agree (k of n)")
     window: int = count(1, ge=1, le=1000, describe="readings in the window (n)")
     channels: int = count(1, ge=1, le=10000, describe="channels that must see an object for it to be present")
