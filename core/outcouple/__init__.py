@@ -4,8 +4,8 @@
     outcome = evaluate(load_design("tank.toml"))
     outcome.metrics["worst_ratio"].value
 
-Everything is SI inside, angles in radians, wavelengths and indices those of vacuum. Names are imported when first used, so
-that the command line starts fast.
+Everything is SI inside, angles in radians, wavelengths and indices those of vacuum. Names are imported when first used,
+so that the command line starts fast.
 """
 
 from __future__ import annotations

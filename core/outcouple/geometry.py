@@ -1,8 +1,8 @@
 """What a sensor geometry is: the contract between a plugin and everything else.
 
-A geometry describes a sensor's light and nothing more: its parameters, the ways from emitter to read-out, the metrics it adds.
-States, read-out, decision, sweeps, comparison, pictures and the dashboard come free. Axes of arrays: S samples, C channels,
-K rays, H hit columns (see ``outcouple.light.Light``).
+A geometry describes a sensor's light and nothing more: its parameters, the ways from emitter to read-out, the metrics
+it adds. States, read-out, decision, sweeps, comparison, pictures and the dashboard come free. Axes of arrays: S
+samples, C channels, K rays, H hit columns (see ``outcouple.light.Light``).
 """
 
 from __future__ import annotations
@@ -129,7 +129,8 @@ class RayPath:
     """A drawn ray.
 
     points   vertices (M, 2) in metres
-    columns  per vertex: h where the ray is reflected at hit column h, -2 - h where it crosses into what lies there, -1 elsewhere
+    columns  per vertex: h where the ray is reflected at hit column h, -2 - h where it crosses into what lies there, -1
+             elsewhere
     angles   per vertex the angle of incidence [rad]
     """
 
@@ -209,8 +210,8 @@ class StateResult:
     signal   mean reading, (S, C), in ``unit``
     noise    standard deviation of the reading, (S, C)
     covers   what lies on each face (of the first build-up where coarse patches make several)
-    change, change_noise  where readings are changes: relative change against the untouched sensor, present always positive,
-             and its standard deviation (infinite where a channel is blind), (S, C); else None
+    change, change_noise  where readings are changes: relative change against the untouched sensor, present always
+             positive, and its standard deviation (infinite where a channel is blind), (S, C); else None
     place    diameter, x and y of the object, each (S,), or None
     """
 
@@ -251,8 +252,8 @@ class Results:
     decision      level and statistics of the decision (see ``outcouple.decision``)
     requirements  what the design must meet, for metrics that depend on it
     curve         of a continuous sensor, else None
-    trial         (face -> cover, index (S,) by the name of a trial medium) -> optical share (S, C): the nominal light answered by
-                  a cover no state has
+    trial         (face -> cover, index (S,) by the name of a trial medium) -> optical share (S, C): the nominal light
+                  answered by a cover no state has
     metric        value of another metric by name
     """
 
@@ -306,7 +307,7 @@ class Geometry(ABC):
         """All ways from emitter to read-out."""
 
     def covers(self, setting: Setting, touching: Mapping[str, Cover]) -> Mapping[str, Cover]:
-        """What lies on each face, given what the state says; for dimensions that define contacts. Default: the state's own."""
+        """What lies on each face; for dimensions that define contacts. Default: what the state says."""
         return touching
 
     def measure(self, names: Sequence[str], results: Results) -> Mapping[str, MetricValue | Missing]:

@@ -115,7 +115,7 @@ def test_turned_planes_return_less_than_a_plain_product(host):
 
 
 def test_coarse_patches_wet_the_whole_way_or_none_of_it(host):
-    """A half-wet two-face prism keeps a half where its patches are larger than the beam, a quarter where they are finer."""
+    """A half-wet two-face prism keeps a half under patches larger than the beam, a quarter under finer ones."""
     half = [{"share": "50 %", "backing": "water"}, {"share": "50 %", "backing": "air"}]
     quiet = {"prism": {"material": "polysulfone", "crosstalk": "0 %"}, "emitter": {"half_angle": "1 deg"}}
     states = [

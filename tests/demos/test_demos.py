@@ -31,8 +31,8 @@ def test_every_demo_runs_and_states_requirements(file):
 
 
 def test_day_tank_passes_limited_by_crosstalk():
-    """Claims of the design case: margin 6.74 deg with n 1.615 (the catalogue's polysulfone is 1.609 at 940 nm: 6.58), 50:1 by
-    crosstalk of 2 %, a film does nothing. The tip here absorbs and loses a tenth dry, so 50:1 becomes 45:1."""
+    """Claims of the design case: margin 6.74 deg with n 1.615 (the catalogue's polysulfone is 1.609 at 940 nm: 6.58),
+    50:1 by crosstalk of 2 %, a film does nothing. The tip here absorbs and loses a tenth dry: 45:1."""
     found = outcome("oil_tank_overfill")
     assert found.verdict == "pass"
     assert np.degrees(found.metrics["dry_angle_margin"].value) == pytest.approx(6.6, abs=0.2)
@@ -63,7 +63,7 @@ def test_solid_fluoropolymer_fails_dry_and_a_skin_on_silica_passes():
 
 
 def test_force_cell_shows_that_temperature_dominates():
-    """Slope 0.0031/nm near 139 nm (s polarised, crown glass, 45 degrees); 12 nm/K over 5 K swamps a resolution below 0.1 nm."""
+    """Slope 0.0031/nm near 139 nm (s polarised, crown glass, 45 degrees); 12 nm/K over 5 K swamps 0.1 nm."""
     found = outcome("force_cell")
     assert found.verdict == "fail"
     assert found.metrics["best_bias"].value == pytest.approx(139e-9, abs=6e-9)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import inspect
 from importlib.metadata import EntryPoint
+from typing import ClassVar
 
 import pytest
 
@@ -51,7 +52,7 @@ class Abstract:
             name = "half"
             summary = "half a geometry"
             Parameters = Dry
-            wetted = {}
+            wetted: ClassVar[dict[str, str]] = {}
 
         return [Half]
 

@@ -1,7 +1,7 @@
 """Brute force for one prism: polarised rays with complex field vectors, drawn at random.
 
-Shares no code with the package: own intersections, own Fresnel equations (Born & Wolf, Principles of Optics, 1.5), own lobe.
-Every ray carries its field as a vector, so turning planes of incidence need no thought.
+Shares no code with the package: own intersections, own Fresnel equations (Born & Wolf, Principles of Optics, 1.5), own
+lobe. Every ray carries its field as a vector, so turning planes of incidence need no thought.
 """
 
 from __future__ import annotations

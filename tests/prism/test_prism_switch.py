@@ -97,8 +97,8 @@ def test_agrees_with_an_independent_polarised_trace(host, case):
 
 
 def test_captured_share_of_a_right_angle_prism_is_the_overlap_of_two_circles(host):
-    """A 90 degree pair of faces returns every two-hit ray by point reflection about its edge, so each direction moves the
-    image of the source disc rigidly; integrated here over directions by a plain sum. Computed independently.
+    """A 90 degree pair of faces returns every two-hit ray by point reflection about its edge, so each direction moves
+    the image of the source disc rigidly; integrated here over directions by a plain sum. Computed independently.
 
     Anchor of the design case (n 1.489, s 2 mm, radii 0.5 and 1 mm, edge 5 mm high, cos lobe cut at 5 degrees inside):
     capture 0.871, dry 0.731.

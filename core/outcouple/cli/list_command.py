@@ -50,7 +50,7 @@ def _materials(*, name: str | None, at: str, temperature: str, like: float | Non
     from outcouple.quantities import parse
 
     try:
-        where = {"wavelength": parse(at, "length"), "temperature": parse(temperature, "temperature")}
+        where: dict[str, Any] = {"wavelength": parse(at, "length"), "temperature": parse(temperature, "temperature")}
     except UserMistake as mistake:
         raise UserMistake(f"--at / --temperature: {mistake}") from None
     catalogue = build_host().catalogue

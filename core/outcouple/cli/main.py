@@ -63,7 +63,8 @@ def cli(ctx: click.Context) -> None:
 
 
 def main(argv: list[str] | None = None) -> Any:
-    """Run the command line; exit codes: 0 fine, 1 internal error, 2 bad usage or design, 3 not a pass, 130 interrupted."""
+    """Run the command line and leave with its exit code: 0 fine, 1 internal error, 2 bad usage or design, 3 not a
+    pass, 130 interrupted."""
     try:
         code = cli.main(args=argv, prog_name="outcouple", standalone_mode=False)
     except UserMistake as mistake:

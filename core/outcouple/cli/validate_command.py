@@ -32,8 +32,7 @@ def command(file: str, as_json: bool, schema: bool) -> int:
             }
         )
     else:
-        click.echo(
-            f"{file}: fine ({design.geometry.name}, {len(design.states)} states, {len(design.requirements)} requirements)"
-        )
+        held = f"{len(design.states)} states, {len(design.requirements)} requirements"
+        click.echo(f"{file}: fine ({design.geometry.name}, {held})")
         click.echo(f"next: outcouple budget {file}")
     return 0

@@ -1,4 +1,4 @@
-"""``[materials.<name>]``: a user's own rows for the catalogue, their quantities read, everything else as the catalogue takes it."""
+"""``[materials.<name>]``: a user's own rows, quantities read, everything else as the catalogue takes it."""
 
 from __future__ import annotations
 

@@ -1,4 +1,4 @@
-"""The parts of a design file that are lists or tables of a user's own making: states, requirements, tolerances, materials."""
+"""The lists and tables of a design file: states, requirements, tolerances, materials."""
 
 from __future__ import annotations
 

@@ -1,6 +1,7 @@
 """design -> outcome: light laid out, faces answered, light followed, read, decided, judged.
 
-``evaluate`` gives the finished outcome of one design; ``evaluate_batch`` gives metrics over samples and is what every study calls.
+``evaluate`` gives the finished outcome of one design; ``evaluate_batch`` gives metrics over samples and is what every
+study calls.
 """
 
 from __future__ import annotations

@@ -102,7 +102,7 @@ def response_curve(table: Table, axis: ResponseAxis) -> Curve:
 
 
 def _relaid(table: Table, grid: Floats) -> LaidState:
-    """The first state with its light laid out anew per index, edges of the quadrature at each; as it is where that is dear."""
+    """The first state, its light laid out anew per index (quadrature edges at each) unless that is dear."""
     base = table.rows[0].laid
     if base.light.reach.size * grid.size > DEAR:
         return base

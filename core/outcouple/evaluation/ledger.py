@@ -48,10 +48,10 @@ def ledger_of(laid: LaidState, channel: int = 0, sample: int = 0) -> Ledger:
         losses["takes other ways or passes the detector"] = float(np.sum(_at(light.launch, sample) * (1 - reach)))
     for way in laid.ways:
         part = float(_at(way.share, sample))
-        for label, share in _way_losses(laid, way, channel, sample):
-            losses[label] = losses.get(label, 0.0) + part * share
-        for label, share in _way_returns(laid, way, channel, sample):
-            returned[label] = returned.get(label, 0.0) + part * share
+        for label, lost in _way_losses(laid, way, channel, sample):
+            losses[label] = losses.get(label, 0.0) + part * lost
+        for label, back in _way_returns(laid, way, channel, sample):
+            returned[label] = returned.get(label, 0.0) + part * back
     stray = float(_at(_at(light.stray, sample), channel))
     if stray:
         returned["reaches the detector beside the faces"] = stray
@@ -84,7 +84,7 @@ def _reach(laid: LaidState, channel: int, sample: int) -> Floats:
 
 
 def _total(laid: LaidState, per_ray: Floats, channel: int, sample: int) -> float:
-    """Sum of an (L, K) array over rays, weighted by launch, and the emitter's line; the channel's own share where ways part."""
+    """Sum of an (L, K) array over launched rays and the emitter's line; a channel's own where ways part."""
     launch = _at(laid.light.launch, sample)
     if laid.light.parted:
         launch = launch * _reach(laid, channel, sample)

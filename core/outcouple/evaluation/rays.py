@@ -15,7 +15,10 @@ __all__ = ["ray_powers"]
 
 
 def ray_powers(table: Table, row: StateRow) -> dict[str, tuple[tuple[float, ...], ...]]:
-    """Per view the power left on every segment of every ray, 1 at the start; mean of s and p, first way of coarse patches."""
+    """Per view the power left on every segment of every ray, 1 at the start.
+
+    Mean of s and p; of coarse patches the first way.
+    """
     covers = row.laid.ways[0].covers
     found = {}
     for view in table.design.geometry.views(table.setting):

@@ -197,7 +197,7 @@ def _given_level(design: Design, view: View, rows: Sequence[StateRow]) -> Floats
     share = np.asarray(view.decision.share)
     sign = -1.0 if design.geometry.present_reads == "low" else 1.0
     if design.geometry.reading == "change":
-        return np.abs(share)[:, None]
+        return np.asarray(np.abs(share)[:, None])
     for row in rows:
         if row.laid.state.expect == "absent" and row.laid.state.role == "normal":
             return sign * share[:, None] * row.reading.mean

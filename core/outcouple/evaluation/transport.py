@@ -40,7 +40,9 @@ class Survival:
 
 
 def mean_power(reflectance: Floats, hits: Floats) -> Floats:
-    """Survival averaged over the entry phase for a mean of ``hits`` hits: (1-f) R^k + f R^(k+1), k = floor, f = fraction.
+    """Survival averaged over the entry phase for a mean of ``hits`` hits.
+
+    Formula: (1 - f) R^k + f R^(k+1), k the whole hits, f the rest.
 
     Shapes broadcast. Exact for a contact of given length and a fixed distance between hits; R^hits is not.
 
@@ -70,7 +72,10 @@ def survive(light: Light, answers: Sequence[Answer | None], strips: Strips | Non
 def _powers(light: Light, answers: Sequence[Answer | None], strips: Strips | None) -> Survival:
     q = light.polarization[:, None, None, :]
     s, p = (1 + q) / 2, (1 - q) / 2
-    drawn, entered, back, turned = [], [], [], []
+    drawn: list[Floats] = []
+    entered: list[Floats] = []
+    back: list[Floats] = []
+    turned: list[Floats] = []
     for column, reply in enumerate(answers):
         if reply is None or not _is_hit(light, column, strips):
             for store in (drawn, entered, back, turned):
@@ -142,7 +147,10 @@ def _coherent(light: Light, answers: Sequence[Answer | None]) -> Survival:
     q = light.polarization[:, None, :]
     ss, pp = (1 + q) / 2, (1 - q) / 2
     sp: Complexes = np.zeros((1, 1, 1), dtype=complex)
-    drawn, entered, back, turned = [], [], [], []
+    drawn: list[Floats] = []
+    entered: list[Floats] = []
+    back: list[Floats] = []
+    turned: list[Floats] = []
     for column, reply in enumerate(answers):
         hit = light.hits[:, :, :, column]
         ss, pp, sp = _rotated(ss, pp, sp, np.where(hit > 0, light.turn[:, None, :, column], 0.0))

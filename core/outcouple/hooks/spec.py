@@ -1,8 +1,8 @@
 """The one page of hooks: what a plugin may give, and when each hook is called.
 
 A plugin is a module (or object) with functions marked ``@outcouple.hookimpl``, named by an entry point in the group
-``outcouple``. Every hook is optional. Each is called once, when a :class:`~outcouple.hooks.host.Host` is built, except where said
-otherwise. What comes back is checked; a plugin that fails is named and left out, the rest goes on.
+``outcouple``. Every hook is optional. Each is called once, when a :class:`~outcouple.hooks.host.Host` is built, except
+where said otherwise. What comes back is checked; a plugin that fails is named and left out, the rest goes on.
 """
 
 from __future__ import annotations
@@ -48,5 +48,5 @@ def outcouple_touching() -> Sequence[type[Touching]]:
 
 @hookspec
 def outcouple_views() -> Sequence[Any]:
-    """Dashboard views: objects with ``name``, ``title`` and ``figure(outcome) -> figure dict``; called when a dashboard opens."""
+    """Dashboard views: ``name``, ``title``, ``figure(outcome) -> figure dict``; called when a dashboard opens."""
     raise NotImplementedError

@@ -84,8 +84,8 @@ class Light:
     angle         angle of incidence from the face normal [rad], (S, K, H)
     hits          number of hits, (S, C|1, K, H); 0 where a ray skips the column; a broken number is the mean over the
                   entry phase
-    turn          rotation of the plane of incidence before the hit [rad], (S, K, H): from the s-vector of the frame before to
-                  the s-vector of this hit, right-handed about the ray
+    turn          rotation of the plane of incidence before the hit [rad], (S, K, H): from the s-vector of the frame
+                  before to the s-vector of this hit, right-handed about the ray
     length        metres of guide, (S, C|1, K)
     polarization  (s - p)/(s + p) of ray k at launch, in the frame before the first turn, (S, K)
     read          "kept": what stays in the guide; "through": what crosses the last column; "drawn": only what is re-lit
@@ -96,7 +96,8 @@ class Light:
     entry         named shares of the emitter's power lost before launch, each (S,); they and launch sum to 1
     acceptance    half-angle about the specular way, inside the guide, that still reaches the read-out [rad], (S,)
     parted        True: the channels' ways part before the faces (chords), so a channel's ledger follows its own share
-    height        height of the hit above the lowest point of the wetted part [m], (S, K, H), for partly covered tips; or None
+    height        height of the hit above the lowest point of the wetted part [m], (S, K, H), for partly covered tips;
+                  or None
     """
 
     guide: str

@@ -15,8 +15,8 @@ __all__ = ["Touching"]
 class Touching(Section):
     """A contact preset. Its fields are the keys of a state's ``touching`` table.
 
-    A preset is an ordinary cover that a user could write out as patches; it only saves the writing. One whose numbers are
-    known as a range gives three covers, "low", "mid" and "high" (by how much light it takes); one without gives a
+    A preset is an ordinary cover that a user could write out as patches; it only saves the writing. One whose numbers
+    are known as a range gives three covers, "low", "mid" and "high" (by how much light it takes); one without gives a
     single cover under "".
     """
 

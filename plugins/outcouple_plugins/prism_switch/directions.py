@@ -99,7 +99,7 @@ def _edges(
     v: Floats,
     widest: Floats,
 ) -> Floats:
-    """Sorted edges of the in-plane segments in the lobe's frame, (S, V, E); critical angles out of the lobe are left out."""
+    """Sorted edges of the in-plane segments in the lobe's frame, (S, V, E), without angles outside the lobe."""
     found = [-widest, widest]
     inside_radius = np.sqrt(1 - (v / n_in[:, None]) ** 2)
     outside_radius = np.sqrt(1 - v**2)

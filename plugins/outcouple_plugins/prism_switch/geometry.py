@@ -55,7 +55,8 @@ class PrismSwitch(Geometry):
             "angle",
             "deg",
             "higher",
-            "incidence of the axis on the faces beyond the critical angle of what lies on them when nothing is there; inside the prism",
+            "incidence of the axis on the faces beyond the critical angle of what lies on them when nothing is there; "
+            "inside the prism",
             "state",
         ),
         Metric(

@@ -39,8 +39,8 @@ class Prism(Section):
         "ratio",
         ge="0 %",
         le="100 %",
-        describe="light that reaches the detector without touching a face, as a share of what a perfect tip would return; "
-        "measure it on the real part",
+        describe="light that reaches the detector without touching a face, as a share of what a perfect tip would "
+        "return; measure it on the real part",
         reference="1 to 5 % is common practice, no source",
         deciding=True,
     )
@@ -62,7 +62,8 @@ class Layout(Section):
         "angle",
         ge="-60 deg",
         le="60 deg",
-        describe="tilt of the emitter's axis in the plane of the cross-section, towards positive x, in the medium it emits into",
+        describe="tilt of the emitter's axis in the plane of the cross-section, towards positive x, in the medium it "
+        "emits into",
     )
     detector_position: float = quantity(
         "2 mm", "length", ge="-30 mm", le="30 mm", describe="x of the detector's centre"
@@ -73,7 +74,8 @@ class Layout(Section):
         "angle",
         gt="0 deg",
         le="90 deg",
-        describe="angle from the base's normal up to which the detector takes light, in air (inside the prism if bonded)",
+        describe="angle from the base's normal up to which the detector takes light, in air (inside the prism if "
+        "bonded)",
     )
     coupling: str = choice(
         "air",

@@ -1,8 +1,8 @@
 """Ways of light through a two-face prism, traced exactly for a direction and a slice of the emitter.
 
-Cross-section in x-z, the prism long in y. The base plane is z = 0, the apex lies at x = 0, z = H; the emitter face rises from
-(-w/2, H - (w/2) tan a) to the apex, the detector face mirrors it. Everything a ray meets is linear in its start x0, so the
-part of a slice that follows a way and lands on the detector is one interval.
+Cross-section in x-z, the prism long in y. The base plane is z = 0, the apex lies at x = 0, z = H; the emitter face
+rises from (-w/2, H - (w/2) tan a) to the apex, the detector face mirrors it. Everything a ray meets is linear in its
+start x0, so the part of a slice that follows a way and lands on the detector is one interval.
 """
 
 from __future__ import annotations

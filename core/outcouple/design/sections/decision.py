@@ -13,14 +13,14 @@ class Decision(Section):
     demand: str = choice(
         "",
         ["", "high level", "low level", "leak"],
-        describe="what the function must not miss, for level and leak sensors: high level and leak demand wet, low level demands "
-        "dry; blank leaves the dangerous direction open",
+        describe="what the function must not miss, for level and leak sensors: high level and leak demand wet, low "
+        "level demands dry; blank leaves the dangerous direction open",
     )
     level: str = choice(
         "midpoint",
         ["midpoint", "optimal", "given", "noise"],
-        describe="midpoint between the nearest absent and present states; optimal: where both err equally often; given: "
-        "share; noise: as many sigma from the absent states as the false alarms allow",
+        describe="midpoint between the nearest absent and present states; optimal: where both err equally often; "
+        "given: share; noise: as many sigma from the absent states as the false alarms allow",
     )
     share: float = quantity(
         "50 %",

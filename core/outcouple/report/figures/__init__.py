@@ -1,7 +1,7 @@
 """Pictures of an outcome as plain plotly dicts: ``{"data": [...], "layout": {...}}``.
 
-Pure functions: an outcome and a look go in, a dict comes out; nothing is computed and plotly is not imported. Pass :data:`CONFIG`
-wherever a picture is shown.
+Pure functions: an outcome and a look go in, a dict comes out; nothing is computed and plotly is not imported. Pass
+:data:`CONFIG` wherever a picture is shown.
 """
 
 from __future__ import annotations

@@ -117,7 +117,7 @@ def _apart(surface: Surface) -> list[tuple[str, float, float]]:
 
 def _scale(surface: Surface, at: int) -> float:
     """Display value of one SI unit on an axis without offset."""
-    _, unit, values = surface.axes[at]
+    unit = surface.axes[at][1]
     kind = _kind_of_unit(unit)
     return best_unit([1.0], kind, unit)[1][0] if kind else 1.0
 
