@@ -39,4 +39,4 @@ def cone_share(angle: ArrayLike, *, half_angle: ArrayLike, exponent: ArrayLike) 
     order = np.asarray(exponent, dtype=float) + 1
     inner = 1 - np.cos(np.asarray(angle, dtype=float)) ** order
     outer = 1 - np.cos(np.asarray(half_angle, dtype=float)) ** order
-    return np.minimum(inner / outer, 1.0)
+    return np.asarray(np.minimum(inner / outer, 1.0))

@@ -122,12 +122,12 @@ class Light:
     @property
     def channels(self) -> int:
         """C, the number of channels."""
-        return self.reach.shape[1]
+        return int(self.reach.shape[1])
 
     @property
     def rays(self) -> int:
         """K, the number of rays."""
-        return self.launch.shape[-1]
+        return int(self.launch.shape[-1])
 
     @property
     def turns(self) -> bool:

@@ -84,10 +84,8 @@ def _inside(angle: Floats, v: Floats, radius: Floats, weight: Floats, n_in: Floa
     dy = np.broadcast_to(v[..., None] / n_in[:, None, None], dx.shape)
     dz = np.sqrt(np.maximum(1 - dx**2 - dy**2, 1e-18))
     forward = base > 1e-6
-    return Directions(
-        *(array.reshape(samples, -1) for array in (dx, dy, dz, np.where(forward, weight, 0.0))),
-        base=np.clip(base, 0.0, 1.0).reshape(samples, -1),
-    )
+    kept = np.where(forward, weight, 0.0)
+    return Directions(*(a.reshape(samples, -1) for a in (dx, dy, dz, kept, np.clip(base, 0.0, 1.0))))
 
 
 def _edges(
