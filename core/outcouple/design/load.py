@@ -125,8 +125,9 @@ def _sections(data: Mapping[str, Any], geometry: Geometry, problems: list[Proble
     for key in list(own):
         if key not in model.model_fields:
             allowed = [*HEADER, *model.model_fields, *PARTS]
+            what = "section" if isinstance(own[key], Mapping) else "key"
             problems.append(
-                Problem((key,), None, f"unknown section{nearest(key, allowed)}", f"allowed: {', '.join(allowed)}")
+                Problem((key,), None, f"unknown {what}{nearest(key, allowed)}", f"allowed: {', '.join(allowed)}")
             )
             del own[key]
     try:

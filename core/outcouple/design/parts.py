@@ -368,8 +368,10 @@ def _tolerance(leaf: Leaf, row: Mapping[str, Any], path: Path, parts: Parts) -> 
     except KeyError:
         parts.wrong(path, None, "a tolerance needs plus_minus, or low and high", "")
         return None
-    clipped = leaf.clip(low), leaf.clip(high)
-    return Tolerance(leaf.path, *clipped, str(row.get("distribution", "uniform")), str(row.get("group", "")))
+    if low > high or (leaf.clip(low), leaf.clip(high)) != (low, high):
+        parts.wrong(path, row.get("plus_minus"), "reaches beyond what this input may be", leaf.bounds)
+        return None
+    return Tolerance(leaf.path, low, high, str(row.get("distribution", "uniform")), str(row.get("group", "")))
 
 
 def _difference(kind: str) -> str:
