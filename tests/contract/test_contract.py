@@ -67,9 +67,10 @@ MIXED = {
 
 @pytest.mark.parametrize("geometry", ["prism-switch", "chord-stub", "camera-stub", "turn-stub"])
 def test_ledger_closes_for_every_state_and_channel(host, geometry):
-    table = tabulate(
-        design(host, geometry, [CLEAR, TOUCH if "stub" in geometry else MILKY, MILKY | {"name": "m"}, MIXED])
-    )
+    states = [CLEAR, MILKY, MIXED]
+    if host.geometry(geometry).spot_face:
+        states.append(TOUCH)
+    table = tabulate(design(host, geometry, states))
     for row in table.rows:
         for channel in range(row.reading.mean.shape[1]):
             assert abs(ledger_of(row.laid, channel).gap) < 1e-12, (row.laid.state.name, channel)

@@ -8,7 +8,7 @@ from typing import Any
 
 import click
 
-from outcouple.errors import UserMistake
+from outcouple.errors import UserMistake, nearest
 
 __all__ = ["main"]
 
@@ -39,10 +39,10 @@ class Lazy(click.Group):
         """Names in the order of the work."""
         return list(COMMANDS)
 
-    def get_command(self, ctx: click.Context, cmd_name: str) -> click.Command | None:
+    def get_command(self, ctx: click.Context, cmd_name: str) -> click.Command:
         """The command, imported now."""
         if cmd_name not in COMMANDS:
-            return None
+            raise UserMistake(f"no command {cmd_name!r}{nearest(cmd_name, COMMANDS)}; there are: {', '.join(COMMANDS)}")
         module = importlib.import_module(f"outcouple.cli.{cmd_name}_command")
         command: click.Command = module.command
         return command

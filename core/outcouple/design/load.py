@@ -64,7 +64,7 @@ def design_from_mapping(
         raise_problems(problems, source, file)
     catalogue = with_own_materials(data.get("materials", {}), host.catalogue, problems)
     sections = _sections(data, geometry, problems)
-    _check_names(sections, catalogue, problems)
+    _check_names(data, geometry, catalogue, problems)
     parts = Parts(geometry, host, catalogue, sections, problems)
     states = read_states(data.get("states"), parts)
     requirements = read_requirements(data.get("requirements", []), parts, states)
@@ -137,16 +137,14 @@ def _sections(data: Mapping[str, Any], geometry: Geometry, problems: list[Proble
         return None
 
 
-def _check_names(sections: Section | None, catalogue: Catalogue, problems: list[Problem]) -> None:
+def _check_names(data: Mapping[str, Any], geometry: Geometry, catalogue: Catalogue, problems: list[Problem]) -> None:
     """Every material a section names must be known."""
-    if sections is None:
-        return
-    for leaf in leaves(type(sections)):
+    for leaf in leaves(design_model(type(geometry))):
         if leaf.what == "material":
-            value: Any = sections
+            value: Any = data
             for key in leaf.path:
-                value = getattr(value, key)
-            if not catalogue.knows(value):
+                value = value.get(key) if isinstance(value, Mapping) else None
+            if isinstance(value, str) and not catalogue.knows(value):
                 problems.append(Problem(leaf.path, value, *catalogue.unknown(value)))
 
 

@@ -91,7 +91,9 @@ def _state(row: Mapping[str, Any], name: str, path: Path, parts: Parts) -> list[
     if isinstance(expect, float):
         changes = {parts.geometry.measurand: expect, **changes}
     thing = None
-    if "object" in row:
+    if "object" in row and not parts.geometry.spot_face:
+        parts.wrong((*path, "object"), None, f"objects have no place on a {parts.geometry.name}", "leave it out")
+    elif "object" in row:
         try:
             thing = ObjectPlace.model_validate(row["object"])
         except ValidationError as error:
