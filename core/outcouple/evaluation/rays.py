@@ -2,48 +2,52 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 
 import numpy as np
 
 from outcouple.contact.cover import Cover
 from outcouple.contact.response import answer
 from outcouple.evaluation.table import StateRow, Table
-from outcouple.geometry import RayPath
+from outcouple.geometry import RayPath, View
 
 __all__ = ["ray_powers"]
 
+Powers = tuple[tuple[float, ...], ...]
 
-def ray_powers(table: Table, row: StateRow) -> dict[str, tuple[tuple[float, ...], ...]]:
+
+def ray_powers(table: Table, row: StateRow, views: Sequence[View]) -> dict[str, Powers]:
     """Per view the power left on every segment of every ray, 1 at the start.
 
     Mean of s and p; of coarse patches the first way.
     """
     covers = row.laid.ways[0].covers
-    found = {}
-    for view in table.design.geometry.views(table.setting):
-        found[view.name] = tuple(_segments(ray, covers, row) for ray in view.rays)
-    return found
+    return {view.name: _powers(view.rays, covers, row) for view in views}
 
 
-def _segments(ray: RayPath, covers: Mapping[str, Cover], row: StateRow) -> tuple[float, ...]:
-    power, left = [], 1.0
-    for column, angle in zip(ray.columns[:-1], ray.angles[:-1], strict=True):
-        if column != -1:
-            crosses = column < -1
-            face = row.laid.light.faces[-2 - column if crosses else column]
-            left *= _reply(face, angle, covers, row, crosses)
-        power.append(left)
-    return tuple(power)
+def _powers(rays: Sequence[RayPath], covers: Mapping[str, Cover], row: StateRow) -> Powers:
+    """All hits of all rays on one face are answered in one go."""
+    factors = [np.ones(max(len(ray.points) - 1, 0)) for ray in rays]
+    hits: dict[tuple[str, bool], list[tuple[int, int]]] = {}
+    for number, ray in enumerate(rays):
+        for at, column in enumerate(ray.columns[:-1]):
+            if column != -1:
+                crosses = column < -1
+                face = row.laid.light.faces[-2 - column if crosses else column]
+                hits.setdefault((face, crosses), []).append((number, at))
+    for (face, crosses), places in hits.items():
+        angles = np.array([rays[number].angles[at] for number, at in places])
+        for (number, at), power in zip(places, _reply(covers.get(face), angles, row, crosses), strict=True):
+            factors[number][at] = power
+    return tuple(tuple(np.cumprod(factor).tolist()) for factor in factors)
 
 
-def _reply(face: str, angle: float, covers: Mapping[str, Cover], row: StateRow, crosses: bool) -> float:
-    cover = covers.get(face)
+def _reply(cover: Cover | None, angles: np.ndarray, row: StateRow, crosses: bool) -> np.ndarray:
+    """Share that a face reflects, or lets across, at each angle."""
     if cover is None:
-        return 0.0 if crosses else 1.0
-    reply = answer(
-        cover, row.laid.light.guide, np.array([[angle]]), row.laid.media, acceptance=row.laid.light.acceptance
-    )
+        return np.full(angles.shape, 0.0 if crosses else 1.0)
+    reply = answer(cover, row.laid.light.guide, angles[None, :], row.laid.media, acceptance=row.laid.light.acceptance)
     middle = row.laid.weights.size // 2
-    pair = (reply.Ts, reply.Tp) if crosses else (reply.Rs, reply.Rp)
-    return float(sum(np.broadcast_to(part, (1, row.laid.weights.size, 1))[0, middle, 0] for part in pair) / 2)
+    shape = (1, row.laid.weights.size, angles.size)
+    s, p = (reply.Ts, reply.Tp) if crosses else (reply.Rs, reply.Rp)
+    return np.asarray(np.broadcast_to((s + p) / 2, shape)[0, middle])

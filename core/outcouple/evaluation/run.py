@@ -18,7 +18,7 @@ from outcouple.evaluation.notes import design_notes
 from outcouple.evaluation.rays import ray_powers
 from outcouple.evaluation.table import StateRow, Table, tabulate
 from outcouple.fields import leaves
-from outcouple.geometry import Curve, Metric, MetricValue, Missing
+from outcouple.geometry import Curve, Metric, MetricValue, Missing, View
 from outcouple.metrics import metrics_of
 from outcouple.notes import merge_notes
 from outcouple.outcome import MetricResult, Outcome, Stage, StateOutcome
@@ -35,13 +35,15 @@ def evaluate(
     maps: bool = False,
     advice: bool = True,
     views: bool = True,
+    curve: bool | None = None,
 ) -> Outcome:
     """Evaluate one design as it stands.
 
     want    names of metrics; all scalar ones where None; those a requirement names always
     maps    also the metrics and surfaces that cost a map; without it they stay open
     advice  also which few inputs would move the worst margin most
-    views   also the drawings and the main response curve
+    views   also the drawings, with how much of each ray survives in every state
+    curve   also the main response curve; as ``views`` where None
     """
     known = metrics_of(design.geometry)
     names = _names(design, known, want, maps)
@@ -52,6 +54,7 @@ def evaluate(
     verdict = verdict_of(judged)
     worst = worst_state_of(table, judged)
     limiting = limiting_of(table, worst)
+    drawn = design.geometry.views(table.setting) if views else ()
     surfaces = design.geometry.surfaces(names, results_of(table, continuous_curve(table))) if maps else ()
     return Outcome(
         title=design.title,
@@ -62,7 +65,7 @@ def evaluate(
         headline=headline_of(design, table, verdict, judged, found, limiting),
         limiting=limiting,
         worst_state=worst,
-        states=tuple(_state(row, table, views) for row in table.rows),
+        states=tuple(_state(row, table, drawn) for row in table.rows),
         metrics={name: _metric(known[name], found.get(name)) for name in known},
         requirements=judged,
         noise=_shares(table, worst),
@@ -72,9 +75,9 @@ def evaluate(
         notes=merge_notes([*design_notes(design, table), *table.notes]),
         failures=failure_directions(design, table),
         advice=advise(design, table, judged, found) if advice else (),
-        curve=_curve(table) if views else None,
+        curve=_curve(table) if (views if curve is None else curve) else None,
         surfaces=surfaces,
-        views=design.geometry.views(table.setting) if views else (),
+        views=drawn,
         defaults=design.unverified(),
         demand=str(table.view.decision.demand),
         version=VERSION,
@@ -146,7 +149,7 @@ def _metric(metric: Metric, found: MetricValue | Missing | None) -> MetricResult
     )
 
 
-def _state(row: StateRow, table: Table, views: bool) -> StateOutcome:
+def _state(row: StateRow, table: Table, views: Sequence[View]) -> StateOutcome:
     state, reading = row.laid.state, row.reading
     mean, noise = reading.mean[0], np.broadcast_to(reading.noise, reading.mean.shape)[0]
     at = int(np.argmin(mean))
@@ -169,7 +172,7 @@ def _state(row: StateRow, table: Table, views: bool) -> StateOutcome:
         lost=losses,
         channels={"count": int(mean.size), "worst": at},
         role=state.role,
-        rays=ray_powers(table, row) if views else {},
+        rays=ray_powers(table, row, views),
     )
 
 
