@@ -213,6 +213,10 @@ class StateResult:
     change, change_noise  where readings are changes: relative change against the untouched sensor, present always
              positive, and its standard deviation (infinite where a channel is blind), (S, C); else None
     place    diameter, x and y of the object, each (S,), or None
+    role     "normal" or "fault"
+    reply    (face, incidence (S, K)) -> how what lies there answers at other angles: per build-up (coarse patches make
+             several) its share (S,) and the reflectances for s and p, each (S, K), mean over the emitter's line
+    arrivals () -> share of the emitter's power on every ray at every channel, (S, C, K), mean over the line
     """
 
     name: str
@@ -227,6 +231,9 @@ class StateResult:
     change: Floats | None = None
     change_noise: Floats | None = None
     place: Mapping[str, Floats] | None = None
+    role: str = "normal"
+    reply: Callable[[str, Floats], tuple[tuple[Floats, Floats, Floats], ...]] | None = None
+    arrivals: Callable[[], Floats] | None = None
 
 
 @dataclass(frozen=True)
@@ -255,6 +262,8 @@ class Results:
     trial         (face -> cover, index (S,) by the name of a trial medium) -> optical share (S, C): the nominal light
                   answered by a cover no state has
     metric        value of another metric by name
+    untouched     the sensor with nothing on it, where readings are changes against it; else None
+    memo          room for what several measures and surfaces share
     """
 
     setting: Setting
@@ -265,6 +274,8 @@ class Results:
     curve: ContinuousCurve | None
     trial: Callable[[Mapping[str, Cover], Mapping[str, Floats]], Floats]
     metric: Callable[[str], MetricValue | Missing]
+    untouched: StateResult | None = None
+    memo: dict[str, Any] = field(default_factory=dict)
 
     def expecting(self, expect: str) -> list[StateResult]:
         """The states that expect "absent" or "present"."""
@@ -325,6 +336,14 @@ class Geometry(ABC):
     def response(self, setting: Setting) -> ResponseAxis | None:
         """What the main response curve runs over."""
         return None
+
+    def curve(self, results: Results) -> Curve | None:
+        """The main response curve of a nominal design where it is no reading along one axis."""
+        return None
+
+    def remarks(self, results: Results) -> tuple[Note, ...]:
+        """Cautions that follow from the results of a nominal design."""
+        return ()
 
     def failures(self, setting: Setting) -> tuple[FailureRow, ...]:
         """Rows the geometry adds to the failure-direction table."""

@@ -82,14 +82,14 @@ def _signals(table: Table) -> dict[str, Floats]:
     }
 
 
-def measure(table: Table, names: Sequence[str]) -> dict[str, MetricValue | Missing]:
-    """All metrics in ``names`` on one table."""
-    curve = continuous_curve(table)
+def measure(table: Table, names: Sequence[str], results: Results | None = None) -> dict[str, MetricValue | Missing]:
+    """All metrics in ``names`` on one table; ``results`` where they are at hand already."""
+    curve = continuous_curve(table) if results is None else results.curve
     common = measure_common(names, table, curve)
     own = [name for name in names if name not in common]
     found = dict(common)
     if own:
-        results = results_of(table, curve)
+        results = results or results_of(table, curve)
         measured = table.design.geometry.measure(own, results)
         for name in own:
             found[name] = measured.get(name, Missing("was not evaluated here", "open"))
@@ -114,6 +114,7 @@ def results_of(table: Table, curve: ContinuousCurve | None) -> Results:
             base.weights[:, None] * trial_share(table.design, base, covers, extra), axis=1
         ),
         metric=metric,
+        untouched=None if table.untouched is None else table.untouched.result,
     )
 
 

@@ -18,7 +18,7 @@ from outcouple.evaluation.notes import design_notes
 from outcouple.evaluation.rays import ray_powers
 from outcouple.evaluation.table import StateRow, Table, tabulate
 from outcouple.fields import leaves
-from outcouple.geometry import Curve, Metric, MetricValue, Missing, View
+from outcouple.geometry import Curve, Metric, MetricValue, Missing, Results, View
 from outcouple.metrics import metrics_of
 from outcouple.notes import merge_notes
 from outcouple.outcome import MetricResult, Outcome, Stage, StateOutcome
@@ -48,14 +48,15 @@ def evaluate(
     known = metrics_of(design.geometry)
     names = _names(design, known, want, maps)
     table = tabulate(design)
-    found = measure(table, names)
+    results = results_of(table, continuous_curve(table))
+    found = measure(table, names, results)
     states = [(row.laid.state.name, row.laid.state.family) for row in table.rows]
     judged = judge(design.requirements, known, found, states)
     verdict = verdict_of(judged)
     worst = worst_state_of(table, judged)
     limiting = limiting_of(table, worst)
     drawn = design.geometry.views(table.setting) if views else ()
-    surfaces = design.geometry.surfaces(names, results_of(table, continuous_curve(table))) if maps else ()
+    surfaces = design.geometry.surfaces(names, results) if maps else ()
     return Outcome(
         title=design.title,
         geometry=design.geometry.name,
@@ -72,10 +73,10 @@ def evaluate(
         noise_state=worst,
         level=_level(table),
         level_kind="relative change" if design.geometry.reading == "change" else table.rows[0].reading.unit,
-        notes=merge_notes([*design_notes(design, table), *table.notes]),
+        notes=merge_notes([*design_notes(design, table), *table.notes, *design.geometry.remarks(results)]),
         failures=failure_directions(design, table),
         advice=advise(design, table, judged, found) if advice else (),
-        curve=_curve(table) if (views if curve is None else curve) else None,
+        curve=_curve(table, results) if (views if curve is None else curve) else None,
         surfaces=surfaces,
         views=drawn,
         defaults=design.unverified(),
@@ -101,9 +102,9 @@ def _level(table: Table) -> float | None:
     return float(sign * table.decided.level[0, 0])
 
 
-def _curve(table: Table) -> Curve | None:
+def _curve(table: Table, results: Results) -> Curve | None:
     axis = table.design.geometry.response(table.setting)
-    return None if axis is None else response_curve(table, axis)
+    return table.design.geometry.curve(results) if axis is None else response_curve(table, axis)
 
 
 def _shares(table: Table, state: str) -> dict[str, float]:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import partial
 
 import numpy as np
 from numpy.typing import NDArray
@@ -11,6 +12,7 @@ from numpy.typing import NDArray
 from outcouple.decision.decide import Decided, Score, decide
 from outcouple.design import Design, State
 from outcouple.evaluation.overlay import UNTOUCHED, Samples, View, samples_count, view_of
+from outcouple.evaluation.replies import arrivals_of, reply_of
 from outcouple.evaluation.signals import LaidState, lay_state, setting_of
 from outcouple.geometry import Setting, StateResult
 from outcouple.light import Light
@@ -175,6 +177,9 @@ def _row(laid: LaidState, untouched: StateRow | None, design: Design) -> StateRo
         change=score.mean if score is not None and changes else None,
         change_noise=score.noise if score is not None and changes else None,
         place=None if laid.state.object is None else laid.state.place(laid.p, laid.setting.samples),
+        role=laid.state.role,
+        reply=partial(reply_of, laid),
+        arrivals=partial(arrivals_of, laid),
     )
     return StateRow(laid, reading, result, score)
 

@@ -47,8 +47,8 @@ class Plate(Section):
     edges: str = choice(
         "absorbing",
         ["absorbing", "polished", "mirrored"],
-        describe="finish of the edges. absorbing: black; polished: reflect by Fresnel; mirrored: those without emitters "
-        "or detectors carry a mirror, the others are polished",
+        describe="finish of the edges. absorbing: black; polished: reflect by Fresnel; mirrored: those without "
+        "emitters or detectors carry a mirror, the others are polished",
     )
     mirror: float = quantity("95 %", "ratio", ge="0 %", le="100 %", describe="reflectance of mirrored edges")
 
@@ -69,6 +69,6 @@ class Row(Section):
     coupling: str = choice(
         "air",
         ["air", "bonded"],
-        describe="air: behind an air gap, all of its light is guided where n > 1.414; bonded: index-matched, part of it "
-        "is not",
+        describe="air: behind an air gap, all of its light is guided where n > 1.414; bonded: index-matched, part "
+        "of it is not",
     )
