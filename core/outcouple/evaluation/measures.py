@@ -99,12 +99,7 @@ def _miss(table: Table) -> Found:
 
 
 def _headroom(table: Table) -> Found:
-    def of(row: StateRow) -> Floats:
-        total = _loudest(row, row.reading.mean + row.reading.ambient)
-        with np.errstate(divide="ignore"):
-            return np.asarray(np.where(total > 0, row.reading.full_scale / total, np.inf))
-
-    return _per_state(table, of, highest=False)
+    return _per_state(table, lambda row: row.reading.headroom(), highest=False)
 
 
 def _ambient_ratio(table: Table) -> Found:

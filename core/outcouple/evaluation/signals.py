@@ -67,6 +67,11 @@ class LaidState:
         """With which each channel sees the outside, (S, C)."""
         return self.light.ambient
 
+    @property
+    def slot(self) -> Floats | None:
+        """Time each channel has for one reading [s], (S,); None where channels do not take turns."""
+        return self.light.slot
+
 
 def spectrum_of(p: View, nodes: int) -> tuple[Floats, Floats]:
     """Wavelengths (S, L) and weights (L,) of the emitter's line at its own wavelength and width."""

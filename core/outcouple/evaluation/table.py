@@ -13,6 +13,7 @@ from outcouple.decision.decide import Decided, Score, decide
 from outcouple.design import Design, State
 from outcouple.evaluation.overlay import UNTOUCHED, Samples, View, samples_count, view_of
 from outcouple.evaluation.replies import arrivals_of, reply_of
+from outcouple.evaluation.saturation import saturation_notes
 from outcouple.evaluation.signals import LaidState, lay_state, setting_of
 from outcouple.geometry import Setting, StateResult
 from outcouple.light import Light
@@ -92,6 +93,7 @@ def tabulate(design: Design, samples: Samples | None = None, *, states: Sequence
     decided = decide(scores, base.decision, _given_level(design, base, rows))
     notes = merge_notes(
         [
+            *saturation_notes(rows, count),
             *design.geometry.notes(setting),
             *(note for row in rows for note in (*row.laid.notes, *row.reading.notes)),
             *(

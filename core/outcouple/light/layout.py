@@ -96,6 +96,7 @@ class Light:
     entry         named shares of the emitter's power lost before launch, each (S,); they and launch sum to 1
     acceptance    half-angle about the specular way, inside the guide, that still reaches the read-out [rad], (S,)
     parted        True: the channels' ways part before the faces (chords), so a channel's ledger follows its own share
+    slot          time one reading has where emitters take turns, settling included [s], (S,); or None
     height        height of the hit above the lowest point of the wetted part [m], (S, K, H), for partly covered tips;
                   or None
     """
@@ -118,6 +119,7 @@ class Light:
     acceptance: Floats = field(default_factory=lambda: np.full(1, np.pi / 2))
     parted: bool = False
     height: Floats | None = None
+    slot: Floats | None = None
 
     @property
     def channels(self) -> int:

@@ -22,6 +22,7 @@ from outcouple.readout.tables import columns
 __all__ = [
     "KINDS",
     "ambient_notes",
+    "band_centres",
     "band_irradiance",
     "blackbody_efficacy",
     "blackbody_exitance",
@@ -29,6 +30,8 @@ __all__ = [
     "etendue_current",
     "illuminance_of",
     "irradiance_per_lux",
+    "mean_sensitivity",
+    "sensed_density",
 ]
 
 Floats = NDArray[np.float64]
@@ -52,6 +55,11 @@ KINDS: Mapping[str, str] = {
     "led lamps": "white LED lamps (CIE LED-B3, tail beyond 780 nm extrapolated)",
     "fluorescent": "fluorescent lamps (CIE FL2, infrared lines from memory)",
 }
+
+
+def band_centres() -> Floats:
+    """Middle of every band of the tables [m]."""
+    return (STARTS + STEP / 2) * 1e-9
 
 
 def illuminance_of(wavelengths_nm: Floats, density: Floats) -> float:
@@ -146,7 +154,31 @@ def current_density(
     centre, width  of the filter [m], ``transmission`` inside, ``blocking`` outside; None: no filter, the
                    detector's own band
     """
-    weighted = irradiance_per_lux(kind) * responsivity((STARTS + STEP / 2) * 1e-9, detector)
+    sensitivity = responsivity(band_centres(), detector)
+    return sensed_density(
+        kind,
+        sensitivity,
+        illuminance=illuminance,
+        centre=centre,
+        width=width,
+        transmission=transmission,
+        blocking=blocking,
+    )
+
+
+def sensed_density(
+    kind: str,
+    sensitivity: Floats,
+    *,
+    illuminance: ArrayLike,
+    centre: ArrayLike | None = None,
+    width: ArrayLike | None = None,
+    transmission: ArrayLike = 1.0,
+    blocking: ArrayLike = 0.0,
+) -> Floats:
+    """Reading per detector area of a kind of light: its spectrum times any ``sensitivity`` (per W) at the middle of
+    every band, through the filter of `current_density`."""
+    weighted = irradiance_per_lux(kind) * sensitivity
     everything = float(np.sum(weighted)) * STEP
     if centre is None or width is None:
         share = np.asarray(everything * np.asarray(transmission, dtype=float))
@@ -154,6 +186,18 @@ def current_density(
         inside = _within(weighted, centre, width)
         share = inside * np.asarray(transmission) + (everything - inside) * np.asarray(blocking)
     return np.asarray(np.asarray(illuminance, dtype=float) * share)
+
+
+def mean_sensitivity(
+    kind: str, sensitivity: Floats, *, centre: ArrayLike | None = None, width: ArrayLike | None = None
+) -> Floats:
+    """Mean of a sensitivity (per W) over the spectrum of a kind of light, where the sensitivity or the filter's band
+    reaches."""
+    lamp = irradiance_per_lux(kind)
+    if centre is None or width is None:
+        seen = lamp * (sensitivity > 0)
+        return np.asarray(np.sum(seen * sensitivity) / np.sum(seen))
+    return np.asarray(_within(lamp * sensitivity, centre, width) / _within(lamp, centre, width))
 
 
 def etendue_current(current_per_area: ArrayLike, *, etendue: ArrayLike) -> Floats:

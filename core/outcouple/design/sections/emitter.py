@@ -56,3 +56,44 @@ class Emitter(Section):
     kind: str = choice(
         "led", ["led", "laser"], describe="a laser falls under other safety rules and is not screened here"
     )
+    duty: float = quantity(
+        "100 %", "ratio", gt="0 %", le="100 %", describe="share of time it is on, for the eye-safety screening"
+    )
+    source_size: float | None = quantity(
+        None,
+        "length",
+        optional=True,
+        ge="10 um",
+        le="1 m",
+        describe="diameter of one emitter's bright area, for the eye-safety screening of the retina",
+    )
+    drive: float = quantity(
+        "100 %", "ratio", gt="0 %", le="1000 %", describe="current over that at which the power is stated"
+    )
+    drive_exponent: float = quantity(
+        1, "number", ge=0.3, le=2, describe="x in power = current^x; a little below 1 where the emitter droops"
+    )
+    power_drift: float = quantity(
+        "0 %/K",
+        "per_kelvin",
+        ge="-5 %/K",
+        le="5 %/K",
+        describe="change of power with the electronics' temperature, from 25 degC",
+        reference="infrared LEDs: about -0.5 %/K (-0.9 to -0.3), from memory",
+    )
+    peak_drift: float = quantity(
+        "0 nm/K",
+        "length_per_kelvin",
+        ge="-2 nm/K",
+        le="2 nm/K",
+        unit="nm/K",
+        describe="shift of the peak with the electronics' temperature, from 25 degC",
+        reference="infrared LEDs: about 0.25 nm/K (0.1 to 0.3), from memory",
+    )
+    age_left: float = quantity(
+        "100 %",
+        "ratio",
+        ge="0 %",
+        le="100 %",
+        describe="power left by ageing; 70 % is the customary end of life",
+    )

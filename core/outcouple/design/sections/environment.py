@@ -32,8 +32,31 @@ class Environment(Section):
         ge="0 W/m2",
         le="2000 W/m2",
         optional=True,
-        describe="of that light within the detector's own band, measured; wins over the illuminance",
+        describe="of that light within the band the read-out sees, filter included; wins over the illuminance",
     )
     explosive: str = choice(
         "no", ["no", "yes"], describe="an explosive atmosphere may be present (fuel, solvent, oxygen, dust)"
+    )
+    fouling: float = quantity(
+        "0 %",
+        "ratio",
+        ge="0 %",
+        lt="100 %",
+        describe="light an even deposit on the windows takes at each of two passes; what it scatters back is a state",
+    )
+    service: str = choice(
+        "none",
+        ["none", "fuel", "solvent", "oxygen", "dust", "food"],
+        describe="what the sensor is used on, for the cautions; fuels and solvents among the states are noticed anyway",
+    )
+    overpressure: float = quantity(
+        "0 bar", "pressure", ge="0 bar", le="1000 bar", unit="bar", describe="above the air's, on the wetted part"
+    )
+    optical_limit: float | None = quantity(
+        None,
+        "power",
+        optional=True,
+        gt="0 W",
+        le="100 W",
+        describe="certified limit of optical power for an explosive atmosphere; this tool holds none of its own",
     )
