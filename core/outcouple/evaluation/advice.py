@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 from outcouple.design import Design
 from outcouple.design.load import design_model
 from outcouple.evaluation.judge import value_for
-from outcouple.evaluation.table import Table, tabulate
+from outcouple.evaluation.table import Table
 from outcouple.fields import Leaf, leaves
 from outcouple.geometry import MetricValue, Missing
 from outcouple.metrics import metrics_of
@@ -25,6 +25,8 @@ Floats = NDArray[np.float64]
 STEP = 0.2
 """Relative step of every input; inputs at zero step by a fifth of their range's lower decade."""
 KEPT = 3
+DEAR = 10_000_000
+"""Array elements of all steps together from which only the deciding inputs step."""
 LEFT_ALONE = ("environment", "decision")
 """Sections that state the requirement rather than the design."""
 
@@ -84,17 +86,24 @@ def advise(
     judged: Sequence[Judged],
     found: Mapping[str, MetricValue | Missing],
 ) -> tuple[Advice, ...]:
-    """The few inputs whose step of a fifth moves the worst margin most, best first."""
-    from outcouple.evaluation.batch import measure
+    """The few inputs whose step of a fifth moves the worst margin most, best first.
 
+    Metrics that cost a map take no part; of a dear design only the deciding inputs step.
+    """
+    from outcouple.evaluation.batch import evaluate_batch, sample_elements
+
+    known = metrics_of(design.geometry)
+    found = {name: value for name, value in found.items() if known[name].cost == "scalar"}
     states = [(row.laid.state.name, row.laid.state.family) for row in table.rows]
     before, owners = worst_margin(design, found, states)
     steps = _steps(design)
+    if len(steps) * sample_elements(table) > DEAR:
+        steps = [step for step in steps if step[0].deciding]
     if not steps or not np.isfinite(before[0]) or not owners[0]:
         return ()
     samples = _samples(steps)
     names = tuple(dict.fromkeys([*(one.metric for one in design.requirements if one.metric in found), owners[0]]))
-    measured = measure(tabulate(design, samples), names)
+    measured = evaluate_batch(design, samples, names).metrics
     after, _ = worst_margin(design, measured, states)
     gains = np.broadcast_to(after, (len(steps),)) - before[0]
     best: dict[tuple[str, ...], int] = {}

@@ -18,7 +18,7 @@ from outcouple.geometry import ContinuousCurve, MetricValue, Missing, Results
 from outcouple.metrics import metrics_of
 from outcouple.notes import Note, merge_notes
 
-__all__ = ["Batch", "evaluate_batch", "measure", "results_of"]
+__all__ = ["Batch", "evaluate_batch", "measure", "results_of", "sample_elements"]
 
 Floats = NDArray[np.float64]
 
@@ -51,7 +51,7 @@ def evaluate_batch(design: Design, samples: Samples, want: Sequence[str] | None 
     names = wanted(design, want)
     count = samples_count(samples)
     first = tabulate(design, {path: values[:1] for path, values in samples.items()})
-    size = max(1, min(count, ELEMENTS // _elements(first)))
+    size = max(1, min(count, ELEMENTS // sample_elements(first)))
     parts = []
     for start in range(0, count, size):
         part = {path: values[start : start + size] for path, values in samples.items()}
@@ -68,7 +68,7 @@ def wanted(design: Design, want: Sequence[str] | None) -> tuple[str, ...]:
     return tuple(want)
 
 
-def _elements(table: Table) -> int:
+def sample_elements(table: Table) -> int:
     """Array elements one sample of a design needs at its widest."""
     light = next(iter(table.lights.values()))
     channels = max(light.hits.shape[1], light.length.shape[1])

@@ -153,7 +153,7 @@ def _metric(metric: Metric, found: MetricValue | Missing | None) -> MetricResult
 def _state(row: StateRow, table: Table, views: Sequence[View]) -> StateOutcome:
     state, reading = row.laid.state, row.reading
     mean, noise = reading.mean[0], np.broadcast_to(reading.noise, reading.mean.shape)[0]
-    at = int(np.argmin(mean))
+    at = _faintest(row)
     score = row.score
     pick = int(np.argmax(score.mean[0])) if score is not None else 0
     losses, stages = _stages(row, at)
@@ -195,3 +195,11 @@ def _stages(row: StateRow, channel: int) -> tuple[dict[str, float], tuple[Stage,
         stages.append(Stage(label, after / left if left > 0 else 0.0, after, after * power, share))
         left = after
     return {**ledger.losses, **{k: -v for k, v in ledger.returned.items()}}, tuple(stages)
+
+
+def _faintest(row: StateRow) -> int:
+    """Channel of the faintest reading at the first sample, blind ones left out."""
+    mean = row.reading.mean[0]
+    if row.score is None or np.all(row.score.blind[0]):
+        return int(np.argmin(mean))
+    return int(np.argmin(np.where(row.score.blind[0], np.inf, mean)))

@@ -195,8 +195,10 @@ def _score(laid: LaidState, reading: Reading, untouched: StateRow | None, design
     if untouched is not None:
         with np.errstate(divide="ignore", invalid="ignore"):
             base = untouched.reading.mean
-            mean = np.where(base > 0, mean / base - 1, 0.0)
-            noise = np.where(base > 0, noise / base, np.inf)
+            # A channel that no light reaches may still read the ambient light: it is blind all the same.
+            lit = (base > 0) & (untouched.result.share > 0)
+            mean = np.where(lit, mean / base - 1, 0.0)
+            noise = np.where(lit, noise / base, np.inf)
     return Score(laid.state.name, laid.state.expect, sign * mean, noise)
 
 

@@ -20,6 +20,9 @@ __all__ = ["Survival", "mean_power", "received", "survive"]
 Floats = NDArray[np.float64]
 Complexes = NDArray[np.complex128]
 
+LOSSLESS = 1 - 1e-13
+"""Reflectance from which a face counts as totally reflecting."""
+
 
 @dataclass(frozen=True)
 class Survival:
@@ -77,7 +80,7 @@ def _powers(light: Light, answers: Sequence[Answer | None], strips: Strips | Non
     back: list[Floats] = []
     turned: list[Floats] = []
     for column, reply in enumerate(answers):
-        if reply is None or not _is_hit(light, column, strips):
+        if reply is None or not _is_hit(light, column, strips) or _reflects_all(reply):
             for store in (drawn, entered, back, turned):
                 store.append(np.zeros((1, 1, 1, 1)))
             continue
@@ -98,6 +101,11 @@ def _on_spot(light: Light, column: int, strips: Strips | None) -> bool:
     return strips is not None and light.spot is not None and light.spot.column == column
 
 
+def _reflects_all(reply: Answer) -> bool:
+    """True where nothing is lost but what rounding loses: most columns of most states."""
+    return bool(np.all(reply.Rs >= LOSSLESS) and np.all(reply.Rp >= LOSSLESS))
+
+
 def _is_hit(light: Light, column: int, strips: Strips | None) -> bool:
     if strips is not None and _on_spot(light, column, strips):
         return bool(np.any(strips.lengths))
@@ -107,8 +115,6 @@ def _is_hit(light: Light, column: int, strips: Strips | None) -> bool:
 def _kept(light: Light, reflectance: Floats, column: int, strips: Strips | None) -> Floats:
     """Survival of one column's hits, (S, L, C|1, K)."""
     if strips is None or light.spot is None or not _on_spot(light, column, strips):
-        if np.all(reflectance >= 1.0):
-            return np.ones((1, 1, 1, 1))
         return mean_power(reflectance[:, :, None, :], light.hits[:, None, :, :, column])
     return 1.0 - _taken(strips, light.spot.hop, reflectance)
 

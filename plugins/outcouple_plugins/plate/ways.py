@@ -16,11 +16,13 @@ from outcouple.light import Strips
 from outcouple.optics import interface
 
 __all__ = [
+    "NORMALS",
     "Pairs",
     "Ways",
     "disc_lengths",
     "edge_reflectance",
     "pairs_of",
+    "places_of",
     "reflections",
     "strips_on",
     "tiles_of",
@@ -173,7 +175,7 @@ def _beside(trip: int, level: NDArray[np.bool_], width: Floats, height: Floats, 
     return [0, *(k for j in range(1, most + 1) for k in (j, -j))]
 
 
-def _place(edges: Sequence[str], at: Floats, width: Floats, height: Floats) -> tuple[Floats, Floats]:
+def places_of(edges: Sequence[str], at: Floats, width: Floats, height: Floats) -> tuple[Floats, Floats]:
     """Coordinates (S, C) of parts on edges."""
     names = np.array(edges)
     w, h = width[:, None], height[:, None]
@@ -184,8 +186,8 @@ def _place(edges: Sequence[str], at: Floats, width: Floats, height: Floats) -> t
 
 def ways_of(pairs: Pairs, tiles: tuple[Ints, Ints], *, width: Floats, height: Floats) -> Ways:
     """The ways of every pair through every of its tiles; width and height of the plate (S,)."""
-    xe, ye = _place(pairs.emitter_edge, pairs.emitter_at, width, height)
-    xd, yd = _place(pairs.detector_edge, pairs.detector_at, width, height)
+    xe, ye = places_of(pairs.emitter_edge, pairs.emitter_at, width, height)
+    xd, yd = places_of(pairs.detector_edge, pairs.detector_at, width, height)
     m, n = tiles
     flip_x, flip_y = (-1.0) ** m, (-1.0) ** n
     x = m * width[:, None, None] + flip_x * xe[:, :, None]

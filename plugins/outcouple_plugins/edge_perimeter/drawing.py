@@ -1,0 +1,114 @@
+"""Plan and cross-section of a perimeter-read plate, to scale."""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+
+from outcouple.geometry import Outline, RayPath, Setting, View
+from outcouple_plugins.edge_perimeter.chords import Chords, chords_of
+from outcouple_plugins.edge_perimeter.light import FACES
+from outcouple_plugins.plate.parameters import edges_of
+from outcouple_plugins.plate.ways import NORMALS, places_of
+
+__all__ = ["plan", "section"]
+
+Floats = NDArray[np.float64]
+
+MOST_CHORDS = 400
+"""Chords drawn; more would only fill the plate."""
+RAYS = (0.15, 0.45, 0.75)
+"""Drawn elevations as shares of the highest."""
+
+
+def plan(setting: Setting) -> View:
+    """The plate from above with its emitters, detectors and the chords that carry light."""
+    p = setting.p
+    chords = chords_of(setting)
+    width, height = float(chords.width[0]), float(chords.height[0])
+    depth = 0.012 * max(width, height)
+    margin = min(float(setting.spread(p.field.margin)[0]), 0.49 * min(width, height))
+    outlines = [Outline("guide", "plate", _box(0, 0, width, height))]
+    outlines += _parts("emitter", edges_of(p.emitters.edges), chords, depth, emitters=True)
+    outlines += _parts("detector", edges_of(p.detectors.edges), chords, depth, emitters=False)
+    field = _box(0, 0, width - 2 * margin, height - 2 * margin)
+    outlines.append(Outline("axis", "field that must see objects", field))
+    return View("plan", tuple(outlines), _chord_lines(chords))
+
+
+def _chord_lines(chords: Chords) -> tuple[RayPath, ...]:
+    ways = chords.ways
+    limit = min(chords.emitter.highest[0], chords.detector.highest[0])
+    seen = np.flatnonzero(ways.possible[0, :, 0] & (ways.out[0, :, 0] < limit) & (ways.into[0, :, 0] < limit))
+    step = max(1, -(-len(seen) // MOST_CHORDS))
+    lines = []
+    for at in seen[::step]:
+        start = np.array([ways.x[0, at, 0], ways.y[0, at, 0]])
+        end = start + ways.length[0, at, 0] * np.array([ways.dx[0, at, 0], ways.dy[0, at, 0]])
+        lines.append(RayPath(np.stack([start, end]), (-1, -1), (0.0, 0.0)))
+    return tuple(lines)
+
+
+def _parts(role: str, edges: tuple[str, ...], chords: Chords, depth: float, *, emitters: bool) -> list[Outline]:
+    """Emitters or detectors as boxes outside their edges."""
+    pairs = chords.pairs
+    names, at = (pairs.emitter_edge, pairs.emitter_at) if emitters else (pairs.detector_edge, pairs.detector_at)
+    own = pairs.emitter if emitters else pairs.detector
+    first = np.unique(own, return_index=True)[1]
+    picked = tuple(names[i] for i in first)
+    x, y = places_of(picked, at[first], chords.width[:1], chords.height[:1])
+    size = float(chords.beams[0 if emitters else 1][0])
+    found = []
+    for edge, cx, cy in zip(picked, x[0], y[0], strict=True):
+        nx, ny = NORMALS[edge]
+        across, along = (depth, size) if nx else (size, depth)
+        box = _box(cx - nx * depth / 2, cy - ny * depth / 2, across, along)
+        found.append(Outline(role, role, box))  # type: ignore[arg-type]
+    return found
+
+
+def _box(x: float, y: float, width: float, height: float) -> Floats:
+    half = np.array([[-1, -1], [1, -1], [1, 1], [-1, 1]]) / 2
+    return half * [width, height] + [x, y]
+
+
+def section(setting: Setting) -> View:
+    """A stretch of plate behind an emitter, to scale, with rays that climb at three elevations."""
+    p = setting.p
+    chords = chords_of(setting)
+    thickness = float(setting.spread(p.plate.thickness)[0])
+    span = min(14 * thickness, float(chords.width[0]))
+    height = float(setting.spread(p.emitters.height)[0])
+    offset = float(setting.spread(p.emitters.offset)[0])
+    gap = float(setting.spread(p.emitters.gap)[0]) if p.emitters.coupling == "air" else 0.0
+    outlines = (
+        Outline("guide", "plate", _box(span / 2, 0, span, thickness)),
+        Outline("emitter", "emitter", _box(-gap - 0.2 * thickness, offset, 0.4 * thickness, height)),
+    )
+    top = float(chords.emitter.highest[0])
+    index = 1.0 if chords.emitter.bonded else float(chords.emitter.index[0])
+    rays = [_climb(offset, sign * share * top, index, thickness, span, gap) for share in RAYS for sign in (1, -1)]
+    return View("cross-section", outlines, tuple(rays))
+
+
+def _climb(start: float, rise: float, index: float, thickness: float, span: float, gap: float) -> RayPath:
+    """Follow one ray from the emitter through the edge along the plate."""
+    outside = np.arcsin(np.clip(index * np.sin(rise), -1, 1))
+    y = start + gap * np.tan(outside)
+    points, columns, angles = [np.array([-gap, start])], [-1], [0.0]
+    if abs(y) >= thickness / 2:
+        return RayPath(np.array([*points, [0.0, y]]), (-1, -1), (0.0, 0.0))
+    points.append(np.array([0.0, y]))
+    columns.append(-1)
+    angles.append(0.0)
+    x, slope = 0.0, np.tan(rise)
+    while x < span:
+        wall = np.sign(slope) * thickness / 2
+        step = min((wall - y) / slope, span - x)
+        x, y = x + step, y + step * slope
+        points.append(np.array([x, y]))
+        reflected = x < span - 1e-12
+        columns.append(FACES.index("front" if slope > 0 else "back") if reflected else -1)
+        angles.append(np.pi / 2 - abs(rise) if reflected else 0.0)
+        slope = -slope
+    return RayPath(np.array(points), tuple(columns), tuple(float(angle) for angle in angles))
