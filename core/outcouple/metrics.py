@@ -111,12 +111,116 @@ COMMON: tuple[Metric, ...] = (
         "optical power that equals the noise of the darkest state",
     ),
     Metric(
+        "stage_bandwidth",
+        "bandwidth of the stage",
+        "frequency",
+        "kHz",
+        "higher",
+        "frequency at which the transimpedance stage passes half the power",
+    ),
+    Metric(
+        "phase_margin",
+        "phase margin",
+        "angle",
+        "deg",
+        "higher",
+        "of the transimpedance stage; below 45 deg it rings",
+    ),
+    Metric(
+        "stage_settling",
+        "settling of the stage",
+        "time",
+        "us",
+        "lower",
+        "time after which a step of light stays within a thousandth",
+    ),
+    Metric(
+        "bits_used",
+        "converter bits used",
+        "number",
+        "",
+        "higher",
+        "bits of the converter that the brightest state makes use of",
+    ),
+    Metric(
+        "dangerous_probability",
+        "dangerous error per decision",
+        "number",
+        "",
+        "lower",
+        "largest chance that a decision misses the demand unnoticed, over the states, the faults and a dead emitter",
+    ),
+    Metric(
+        "spurious_per_year",
+        "spurious trips per year",
+        "number",
+        "",
+        "lower",
+        "decisions per year of one healthy state that act without demand or tell a fault that is none",
+    ),
+    Metric(
+        "dead_emitter_unnoticed",
+        "dead emitter unnoticed",
+        "number",
+        "",
+        "lower",
+        "chance that a decision on a dead emitter misses the demand and is not told as a fault",
+    ),
+    Metric(
+        "undetected_dangerous_causes",
+        "dangerous causes unnoticed",
+        "number",
+        "",
+        "lower",
+        "dangerous rows of the failure table that no diagnostic of the design reveals",
+    ),
+    Metric(
+        "fault_band_coverage",
+        "faults told as such",
+        "ratio",
+        "%",
+        "higher",
+        "least chance that a dead emitter or a stated fault is told by the fault bands or by what watches the emitter",
+    ),
+    Metric(
+        "margin_at_end_of_life",
+        "margin at end of life",
+        "number",
+        "",
+        "higher",
+        "margin in sigma with 70 % of the light left and the level where it was set when new",
+    ),
+    Metric(
         "response_time",
         "response time",
         "time",
         "ms",
         "lower",
-        "time from a change to the confirmed decision",
+        "longest time from a clear change to the confirmed decision",
+    ),
+    Metric(
+        "release_time",
+        "release time",
+        "time",
+        "ms",
+        "lower",
+        "longest time from the end of a clear change to the cleared decision",
+    ),
+    Metric(
+        "slowest_touch",
+        "slowest touch",
+        "time",
+        "s",
+        "higher",
+        "longest rise of a change that still reaches the level through the tracked baseline; slower ones are swallowed",
+    ),
+    Metric(
+        "held_time",
+        "time a touch is held",
+        "time",
+        "s",
+        "higher",
+        "time a resting object stays beyond the level until the tracked baseline has swallowed it",
     ),
 )
 
@@ -171,9 +275,6 @@ CONTINUOUS: tuple[Metric, ...] = (
         "range of {label} about the states over which one reading means one value",
     ),
 )
-
-BINARY = ("worst_ratio", "margin_sigma", "margin_span", "false_alarms_per_year", "miss_probability")
-"""Common metrics that need states expecting both absent and present."""
 
 
 def metrics_of(geometry: Geometry) -> Mapping[str, Metric]:

@@ -109,6 +109,7 @@ class FailureDirection:
     direction: Literal["dangerous", "spurious", "none", "open"]
     covered_by: tuple[str, ...] = ()
     slow: bool = False
+    missing: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -188,6 +189,7 @@ class Outcome:
                     "direction": row.direction,
                     "covered_by": list(row.covered_by),
                     "slow": row.slow,
+                    "could_cover": list(row.missing),
                 }
                 for row in self.failures
             ],

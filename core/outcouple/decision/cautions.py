@@ -16,6 +16,7 @@ from outcouple.notes import Note
 __all__ = [
     "EyeScreening",
     "ageing_note",
+    "axial_intensity",
     "bare_emitter_irradiance",
     "burn_hazard_weight",
     "corneal_irradiance_limit",
@@ -23,6 +24,7 @@ __all__ = [
     "explosive_notes",
     "eye_notes",
     "eye_screening",
+    "retinal_share",
     "service_notes",
     "skin_note",
     "touch_note",
@@ -36,6 +38,7 @@ EYE_DISTANCE: Final = 0.2
 """Distance [m] at which lamps are assessed (200 mm, usual after the IEC 62471 family; from memory)."""
 EYE_TIME: Final = 1000.0
 """Exposure [s] beyond which the limit for the cornea no longer falls."""
+EYE_DECIDES: Final = "an assessment of the finished product after the IEC 62471 family"
 
 
 def corneal_irradiance_limit(time: ArrayLike) -> Floats:
@@ -78,15 +81,30 @@ def weak_stimulus_radiance_limit(subtense: ArrayLike) -> Floats:
         return np.asarray(np.where((alpha >= 0.011) & (alpha <= 0.1), 6300.0 / alpha, np.nan))
 
 
+def axial_intensity(*, power: ArrayLike, exponent: ArrayLike = 1.0, half_angle: ArrayLike = np.pi / 2) -> Floats:
+    """Radiant intensity [W/sr] on the axis of a lobe cos^m cut at ``half_angle`` [rad].
+
+    P (m + 1) / (2 pi (1 - cos^(m+1) of the half-angle)): all of the power goes into the cut lobe.
+    """
+    m = np.asarray(exponent, dtype=float) + 1
+    inside = 1 - np.cos(np.asarray(half_angle, dtype=float)) ** m
+    return np.asarray(np.asarray(power, dtype=float) * m / (2 * np.pi * inside))
+
+
 def bare_emitter_irradiance(
-    *, power: ArrayLike, exponent: ArrayLike = 1.0, distance: ArrayLike = EYE_DISTANCE, duty: ArrayLike = 1.0
+    *,
+    power: ArrayLike,
+    exponent: ArrayLike = 1.0,
+    half_angle: ArrayLike = np.pi / 2,
+    distance: ArrayLike = EYE_DISTANCE,
+    duty: ArrayLike = 1.0,
 ) -> Floats:
-    """Mean irradiance [W/m2] on the axis of a bare lobe cos^m: duty P (m + 1) / (2 pi d^2).
+    """Mean irradiance [W/m2] on the axis of a bare emitter: duty times `axial_intensity` over d^2.
 
     The worst case of a broken plate or an open housing: all emitters [W] taken as one point, aimed at one eye.
     Range: distance [m] well beyond the size of the emitter or row.
     """
-    intensity = np.asarray(power, dtype=float) * (np.asarray(exponent) + 1) / (2 * np.pi)
+    intensity = axial_intensity(power=power, exponent=exponent, half_angle=half_angle)
     return np.asarray(np.asarray(duty) * intensity / np.asarray(distance, dtype=float) ** 2)
 
 
@@ -112,22 +130,55 @@ def eye_screening(
     *,
     power: ArrayLike,
     exponent: ArrayLike = 1.0,
+    half_angle: ArrayLike = np.pi / 2,
     duty: ArrayLike = 1.0,
     distance: ArrayLike = EYE_DISTANCE,
     time: ArrayLike = EYE_TIME,
 ) -> EyeScreening:
     """The corneal figure for the bare emitter; arguments of `bare_emitter_irradiance` and an exposure time [s]."""
-    irradiance = bare_emitter_irradiance(power=power, exponent=exponent, distance=distance, duty=duty)
+    irradiance = bare_emitter_irradiance(
+        power=power, exponent=exponent, half_angle=half_angle, distance=distance, duty=duty
+    )
     return EyeScreening(irradiance, corneal_irradiance_limit(time))
 
 
+def retinal_share(
+    *,
+    power: ArrayLike,
+    size: ArrayLike,
+    wavelength: ArrayLike,
+    exponent: ArrayLike = 1.0,
+    half_angle: ArrayLike = np.pi / 2,
+    duty: ArrayLike = 1.0,
+) -> Floats:
+    """Weighted radiance of a round bright area over the limit for a lamp that shows no light, seen from 200 mm.
+
+    power  of this one area while on [W]; size its diameter [m]; wavelength [m]
+
+    nan where the area subtends less than 0.011 or more than 0.1 rad, or the wavelength has no weight: the rules there
+    differ, see `weak_stimulus_radiance_limit` and `burn_hazard_weight`.
+    """
+    diameter = np.asarray(size, dtype=float)
+    intensity = np.asarray(duty) * axial_intensity(power=power, exponent=exponent, half_angle=half_angle)
+    radiance = intensity / (np.pi / 4 * diameter**2) * burn_hazard_weight(wavelength)
+    return np.asarray(radiance / weak_stimulus_radiance_limit(diameter / EYE_DISTANCE))
+
+
 def eye_notes(
-    *, kind: str, wavelength: ArrayLike, power: ArrayLike, exponent: ArrayLike = 1.0, duty: ArrayLike = 1.0
+    *,
+    kind: str,
+    wavelength: ArrayLike,
+    power: ArrayLike,
+    exponent: ArrayLike = 1.0,
+    half_angle: ArrayLike = np.pi / 2,
+    duty: ArrayLike = 1.0,
+    size: ArrayLike | None = None,
 ) -> tuple[Note, ...]:
     """Eye safety of the emitter.
 
     kind        "led" or "laser"
     wavelength  peak [m]; power all emitters together while on [W]; duty share of time on
+    size        diameter of the bright area [m]; None where it is not stated and the retina is not screened
     """
     if kind == "laser":
         return (
@@ -140,32 +191,57 @@ def eye_notes(
         )
     if kind != "led":
         raise ValueError(f"kind must be 'led' or 'laser'; got {kind!r}")
-    found = eye_screening(power=power, exponent=exponent, duty=duty)
-    decides = "an assessment of the finished product after the IEC 62471 family"
-    over = np.atleast_1d(found.share >= 1)
-    notes = [
-        Note(
-            "eye-cornea",
-            "A bare emitter at 200 mm exceeds the long-exposure infrared limit for the cornea: shield it, lower the "
-            "drive, and consider a broken plate and an open housing.",
-            severity="danger",
-            trigger=f"up to {np.max(found.share):.2g} times 18000 t^-0.75 at 1000 s",
-            decides=decides,
-            where=over,
-        )
-    ]
+    found = eye_screening(power=power, exponent=exponent, half_angle=half_angle, duty=duty)
+    notes = [_corneal_note(found)]
     if np.any(np.asarray(wavelength) > 700e-9):
+        retina, words = None, "the retina (radiance) is not assessed: state emitter.source_size"
+        if size is not None:
+            retina = retinal_share(
+                power=power, size=size, wavelength=wavelength, exponent=exponent, half_angle=half_angle, duty=duty
+            )
+            known = np.isfinite(retina)
+            words = (
+                f"the retinal figure is {np.max(retina[known]):.2g} of 6300 / alpha"
+                if np.any(known)
+                else "the retina is not assessed: the source lies outside the range of the simple limit"
+            )
+            notes.append(_retinal_note(retina))
         notes.append(
             Note(
                 "eye-infrared",
-                "Infrared is invisible and nobody blinks. The corneal figure is a screening of the bare emitter, not a "
-                "classification; the retina (radiance) is not assessed.",
+                "Infrared is invisible and nobody blinks. These figures screen the bare emitter and classify nothing; "
+                f"{words}.",
                 severity="caution",
-                trigger=f"screening {np.max(found.share):.2g} of the corneal figure at 200 mm and 1000 s",
-                decides=decides,
+                trigger=f"{np.max(found.share):.2g} of the corneal limit at 200 mm and 1000 s",
+                decides=EYE_DECIDES,
             )
         )
     return tuple(note for note in notes if note.holds())
+
+
+def _corneal_note(found: EyeScreening) -> Note:
+    return Note(
+        "eye-cornea",
+        "A bare emitter at 200 mm exceeds the long-exposure infrared limit for the cornea: shield it, lower the drive, "
+        "and consider a broken plate and an open housing.",
+        severity="danger",
+        trigger=f"up to {np.max(found.share):.2g} times 18000 t^-0.75 at 1000 s",
+        decides=EYE_DECIDES,
+        where=np.atleast_1d(found.share >= 1),
+    )
+
+
+def _retinal_note(share: Floats) -> Note:
+    safe = np.nan_to_num(np.atleast_1d(share))
+    return Note(
+        "eye-retina",
+        "The bare emitter's weighted radiance exceeds the limit for a lamp that shows no light: spread it, lower the "
+        "drive, or shield it.",
+        severity="danger",
+        trigger=f"up to {np.max(safe):.2g} times 6300 / alpha at 200 mm",
+        decides=EYE_DECIDES,
+        where=safe >= 1,
+    )
 
 
 def explosive_notes(
@@ -207,12 +283,13 @@ def explosive_notes(
     )
 
 
-def demand_notes(demand: str, *, dark_is_present: bool, uncovered: int = 0) -> tuple[Note, ...]:
+def demand_notes(demand: str, *, dark_is_present: bool, uncovered: int = 0, watched: bool = False) -> tuple[Note, ...]:
     """Cautions of a level or leak function.
 
     demand           "high level", "low level", "leak", or "" where none is stated
     dark_is_present  a low reading means wet
     uncovered        dangerous failures no diagnostic of the design reveals
+    watched          a diagnostic of the design tells a dead emitter
     """
     decides = f"IEC 61508 and IEC 61511 where they apply, {LOCAL}"
     notes = []
@@ -239,8 +316,9 @@ def demand_notes(demand: str, *, dark_is_present: bool, uncovered: int = 0) -> t
         notes.append(
             Note(
                 "dry-run-light-loss",
-                "Light lost reads wet, so a dead emitter, a broken cable or an aged lamp hides a dry run.",
-                severity="danger",
+                "Light lost reads wet, so a dead emitter, a broken cable or an aged lamp hides a dry run"
+                + ("; all rests on the diagnostics that tell it." if watched else "."),
+                severity="caution" if watched else "danger",
                 trigger="demand = low level, a low reading means wet",
                 decides=f"diagnostics that reveal lost light, {decides}",
             )

@@ -108,7 +108,7 @@ COMMON_FAILURES: Final[tuple[Failure, ...]] = (
         "emitter aged or hot",
         "less light in every state",
         True,
-        ("reference", "fault band", "trend", "second channel", "proof test"),
+        ("reference", "trend", "second channel", "proof test"),
         slow=True,
     ),
     Failure(
@@ -128,7 +128,7 @@ COMMON_FAILURES: Final[tuple[Failure, ...]] = (
         "outside light that the read-out does not reject",
         "reading rises",
         False,
-        ("dark test", "fault band", "second channel"),
+        ("dark test", "second channel"),
     ),
     Failure(
         "detector dead or its lead open",
@@ -140,7 +140,7 @@ COMMON_FAILURES: Final[tuple[Failure, ...]] = (
         "optical face scratched, hazed or crazed",
         "bright reading falls slowly",
         True,
-        ("trend", "fault band", "second channel", "proof test"),
+        ("trend", "second channel", "proof test"),
         slow=True,
     ),
 )

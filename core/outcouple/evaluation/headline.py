@@ -6,8 +6,11 @@ from collections.abc import Mapping, Sequence
 
 import numpy as np
 
+from outcouple.decision.failure_modes import DEMANDS
 from outcouple.design import Design
-from outcouple.evaluation.failures import consequence
+from outcouple.evaluation.decision_measures import DECISION_MEASURES
+from outcouple.evaluation.failures import consequence, dangerous_uncovered
+from outcouple.evaluation.faults import DEAD
 from outcouple.evaluation.ledger import ledger_of
 from outcouple.evaluation.table import StateRow, Table
 from outcouple.geometry import MetricValue, Missing
@@ -15,6 +18,11 @@ from outcouple.outcome import Judged, Verdict
 from outcouple.quantities import format_quantity
 
 __all__ = ["headline_of", "limiting_of", "worst_state_of"]
+
+DEAD_EMITTER = ("dead_emitter_unnoticed", "fault_band_coverage")
+"""Metrics that a dead emitter decides."""
+TIED = 1e-6
+"""Standard deviations below which a state lies on the level but for rounding."""
 
 
 def worst_state_of(table: Table, judged: Sequence[Judged]) -> str:
@@ -83,22 +91,48 @@ def headline_of(
     )
     if missed:
         first = missed[0]
-        reads = _misread(design, table, first)
-        rest = f"; {limiting}" if limiting else ""
-        return f"FAIL: {reads}{_against(first)}{rest}."
+        why = _why(table, first) or limiting
+        return f"FAIL: {_misread(design, table, first)}{_against(first)}{f'; {why}' if why else ''}."
     if verdict == "open":
         waiting = ", ".join(f"{one.label} ({one.why})" for one in judged if one.verdict == "open")
-        return f"OPEN: nothing is missed, but not everything was evaluated: {waiting}."
+        return f"OPEN: nothing is missed, but not everything was evaluated: {waiting}. Unknown is not a pass."
+    dead = _dead(design, table, found)
+    rest = f" But {dead}, and nothing tells it." if dead else ""
     if verdict == "none stated":
-        margin = found.get("margin_sigma")
-        told = (
-            f"; the least margin is {float(margin.values[0]):.3g} sigma ({margin.at})"
-            if isinstance(margin, MetricValue)
-            else ""
-        )
-        return f"NO VERDICT: the design states no requirements{told}."
+        return f"NO VERDICT: the design states no requirements{_least_margin(found)}.{rest}"
     tight = min(judged, key=lambda one: float(one.margin or 0) / (abs(one.limit) or 1.0))
-    return f"PASS: all {len(judged)} requirements are met; closest is {_against(tight)}."
+    return f"PASS: {_all_met(len(judged))}; closest is {_against(tight)}.{rest}"
+
+
+def _all_met(count: int) -> str:
+    return "the one requirement is met" if count == 1 else f"all {count} requirements are met"
+
+
+def _least_margin(found: Mapping[str, MetricValue | Missing]) -> str:
+    margin = found.get("margin_sigma")
+    if not isinstance(margin, MetricValue):
+        return ""
+    return f"; the least margin is {float(margin.values[0]):.3g} sigma ({margin.at})"
+
+
+def _why(table: Table, one: Judged) -> str:
+    """What keeps a requirement that is not about light from being met."""
+    if one.metric in DEAD_EMITTER or one.at == DEAD:
+        return "no reference channel, drive monitor or fault band tells it"
+    if one.metric == "undetected_dangerous_causes":
+        would = list(dict.fromkeys(name for row in dangerous_uncovered(table) for name in row.missing))
+        return f"the diagnostics that would tell more are {', '.join(would)}" if would else ""
+    return ""
+
+
+def _dead(design: Design, table: Table, found: Mapping[str, MetricValue | Missing]) -> str:
+    """ "a dead emitter reads wet (dangerous: ...)" where that passes for a healthy sensor."""
+    unnoticed = found.get("dead_emitter_unnoticed")
+    if not isinstance(unnoticed, MetricValue) or float(unnoticed.values[0]) < 0.5:
+        return ""
+    wrong = "present" if DEMANDS[str(table.view.decision.demand)] == "absent" else "absent"
+    word = dict(zip(("absent", "present"), design.geometry.words, strict=True))[wrong]
+    return f"a dead emitter reads {word}{consequence(design, table, wrong)}"
 
 
 def _against(one: Judged) -> str:
@@ -113,11 +147,17 @@ def _misread(design: Design, table: Table, one: Judged) -> str:
     """ "milk reads dry (dangerous: ...); " where the state named lies on the wrong side of the level."""
     if table.decided is None:
         return ""
+    if one.metric in DEAD_EMITTER or one.at == DEAD:
+        dead = _dead(design, table, {"dead_emitter_unnoticed": DECISION_MEASURES["dead_emitter_unnoticed"](table)})
+        return f"{dead}; " if dead else ""
     absent, present = design.geometry.words
     for part in reversed(one.at.split(" : ")):
         sigma = table.decided.sigma.get(part)
-        if sigma is not None and float(sigma[0]) < 0:
-            expect = table.row(part).laid.state.expect
-            reads, kind = (absent, "absent") if expect == "present" else (present, "present")
-            return f"{part} reads {reads}{consequence(design, table, kind)}; "
+        if sigma is None or float(sigma[0]) >= 0:
+            continue
+        expect = table.row(part).laid.state.expect
+        if abs(float(sigma[0])) < TIED:
+            return f"{part} cannot be told from {present if expect == 'absent' else absent}; "
+        reads, kind = (absent, "absent") if expect == "present" else (present, "present")
+        return f"{part} reads {reads}{consequence(design, table, kind)}; "
     return ""

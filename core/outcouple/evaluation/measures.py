@@ -3,10 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
 
+from outcouple.evaluation.decision_measures import DECISION_MEASURES
 from outcouple.evaluation.table import StateRow, Table
 from outcouple.geometry import ContinuousCurve, MetricValue, Missing
 
@@ -122,12 +124,20 @@ def _noise_equivalent_power(table: Table) -> Found:
     return MetricValue(noise.values, noise.at)
 
 
-def _response_time(table: Table) -> Found:
-    decision = table.view.decision
-    readings = decision.window / decision.rate
-    first = table.rows[0].reading.settling
-    return MetricValue(np.broadcast_to(readings + first, (table.samples,)))
+def _stage(name: str) -> Callable[[Table], Found]:
+    """A figure of the read-out's stage; of the state that is worst off."""
 
+    def of(table: Table) -> Found:
+        figures = {row.laid.state.name: row.reading.stage for row in table.rows if row.laid.state.role == "normal"}
+        if not all(name in stage for stage in figures.values()):
+            return Missing("this kind of read-out has no such stage")
+        return _worst({state: stage[name] for state, stage in figures.items()}, table.samples, highest=name in LARGEST)
+
+    return of
+
+
+LARGEST = ("stage_settling", "bits_used")
+"""Figures of the stage whose largest value over the states counts."""
 
 MEASURES: Mapping[str, Callable[[Table], Found]] = {
     "signal": _signal,
@@ -142,7 +152,11 @@ MEASURES: Mapping[str, Callable[[Table], Found]] = {
     "saturation_headroom": _headroom,
     "ambient_ratio": _ambient_ratio,
     "noise_equivalent_power": _noise_equivalent_power,
-    "response_time": _response_time,
+    "stage_bandwidth": _stage("stage_bandwidth"),
+    "phase_margin": _stage("phase_margin"),
+    "stage_settling": _stage("stage_settling"),
+    "bits_used": _stage("bits_used"),
+    **DECISION_MEASURES,
 }
 
 
@@ -194,7 +208,7 @@ def _monotonic_span(table: Table, curve: ContinuousCurve) -> Found:
     for slope in curve.slope:
         turns = np.flatnonzero(np.sign(slope[1:]) * np.sign(slope[:-1]) < 0) + 1
         edges = np.concatenate([[0], turns, [len(slope) - 1]])
-        counts = [np.sum(inside[a : b + 1]) for a, b in zip(edges[:-1], edges[1:], strict=True)]
+        counts = [np.sum(inside[a : b + 1]) for a, b in pairwise(edges)]
         best = int(np.argmax(counts))
         spans.append(curve.values[edges[best + 1]] - curve.values[edges[best]])
     return MetricValue(np.array(spans))

@@ -10,7 +10,7 @@ from outcouple.design import Design
 from outcouple.evaluation.advice import advise
 from outcouple.evaluation.batch import measure, results_of, wanted
 from outcouple.evaluation.curves import continuous_curve, response_curve
-from outcouple.evaluation.failures import failure_directions
+from outcouple.evaluation.failures import failure_table
 from outcouple.evaluation.headline import headline_of, limiting_of, worst_state_of
 from outcouple.evaluation.judge import judge, verdict_of
 from outcouple.evaluation.ledger import ledger_of
@@ -74,7 +74,7 @@ def evaluate(
         level=_level(table),
         level_kind="relative change" if design.geometry.reading == "change" else table.rows[0].reading.unit,
         notes=merge_notes([*design_notes(design, table), *table.notes, *design.geometry.remarks(results)]),
-        failures=failure_directions(design, table),
+        failures=failure_table(design, table),
         advice=advise(design, table, judged, found) if advice else (),
         curve=_curve(table, results) if (views if curve is None else curve) else None,
         surfaces=surfaces,

@@ -43,6 +43,7 @@ def read_camera(lit: Lit, share: Floats) -> Reading:
     capacity = camera.capacity()
     efficiency = np.asarray(camera.quantum_efficiency)
     mean = _read(load, np.asarray(ambient + dark), capacity, difference=difference)
+    unlit = _read(0 * signal + ambient + dark, np.asarray(ambient + dark), capacity, difference=difference)
     budget = camera.budget(
         signal=signal / efficiency,
         ambient=ambient / efficiency,
@@ -53,6 +54,7 @@ def read_camera(lit: Lit, share: Floats) -> Reading:
     budget = budget.plus("emitter intensity", (signal * readout.intensity_noise[:, None]) ** 2)
     return Reading(
         mean=mean,
+        unlit=unlit,
         budget=budget,
         ambient=ambient,
         load=load,

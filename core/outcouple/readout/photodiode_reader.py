@@ -58,6 +58,7 @@ def read_photodiode(lit: Lit, share: Floats) -> Reading:
     full_scale = stage.full_scale()
     reading = Reading(
         mean=_read(signal, np.asarray(ambient + dark), full_scale, modulation),
+        unlit=_read(0 * signal, np.asarray(ambient + dark), full_scale, modulation),
         budget=_budget(p, stage, modulation, signal=signal, ambient=ambient, dark=dark),
         ambient=ambient,
         load=signal + ambient + dark,

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
-from typing import Any, Protocol
+from typing import Any, Final, Protocol
 
 import numpy as np
 from numpy.typing import NDArray
@@ -15,6 +15,9 @@ from outcouple.readout.noise import NoiseBudget
 __all__ = ["Lit", "Reading"]
 
 Floats = NDArray[np.float64]
+
+OF_THE_LIGHT: Final = ("signal shot", "emitter intensity", "reference channel")
+"""Causes of noise that go out with the emitter."""
 
 
 class Lit(Protocol):
@@ -47,6 +50,7 @@ class Reading:
 
     mean        photocurrent [A] or electrons, (S, C); with what ambient and dark current leave in it; clipped where the
                 stage saturates
+    unlit       reading while the emitter gives no light, (S, C)
     budget      variances by cause
     ambient     what outside light brings to the stage, whether or not the reading keeps it, (S, C)
     load        all the stage carries: signal, ambient and dark, (S, C)
@@ -57,6 +61,7 @@ class Reading:
     """
 
     mean: Floats
+    unlit: Floats
     budget: NoiseBudget
     ambient: Floats
     load: Floats
@@ -82,6 +87,12 @@ class Reading:
     def noise(self) -> Floats:
         """Standard deviation, (S, C)."""
         return np.asarray(np.sqrt(self.variance))
+
+    @property
+    def unlit_noise(self) -> Floats:
+        """Standard deviation of ``unlit``, (S, C): what the emitter's light does not bring with it."""
+        parts = (part for cause, part in self.variances.items() if cause not in OF_THE_LIGHT)
+        return np.asarray(np.sqrt(np.broadcast_to(sum(parts, np.zeros(())), self.mean.shape)))
 
     def headroom(self) -> Floats:
         """Full scale over the largest load of any channel, (S,); below 1 the stage saturates."""

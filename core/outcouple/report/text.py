@@ -6,7 +6,7 @@ import shutil
 import textwrap
 from collections.abc import Iterator, Sequence
 
-from outcouple.outcome import Judged, MetricResult, Outcome, StateOutcome
+from outcouple.outcome import FailureDirection, Judged, MetricResult, Outcome, StateOutcome
 from outcouple.quantities import format_quantity
 
 __all__ = ["format_outcome", "table"]
@@ -61,7 +61,8 @@ def _head(outcome: Outcome, width: int) -> str:
     if outcome.defaults:
         lines.append(
             _wrap(
-                f"{len(outcome.defaults)} decisive inputs are unverified defaults: {', '.join(outcome.defaults)}",
+                f"{_many(len(outcome.defaults), 'decisive input')} left at an unverified default: "
+                f"{', '.join(outcome.defaults)}",
                 width,
                 "",
                 "  ",
@@ -166,18 +167,26 @@ def _noise(outcome: Outcome) -> str:
 def _failures(outcome: Outcome, width: int) -> str:
     if not outcome.failures:
         return ""
-    rows = [("", "cause", "reads", "covered by")]
+    rows = [("", "cause", "reads", "told by")]
     rows += [
         (
             row.direction.upper() if row.direction == "dangerous" else row.direction,
-            row.cause,
+            textwrap.shorten(row.cause, 60, placeholder=" ...") + (" (creeps in)" if row.slow else ""),
             row.reads,
-            ", ".join(row.covered_by) or "nothing",
+            _told_by(row),
         )
         for row in outcome.failures
     ]
-    demand = f" (demand: {outcome.demand})" if outcome.demand else " (no demand stated: direction open)"
+    demand = f" (demand: {outcome.demand})" if outcome.demand else " (no demand stated: every direction is open)"
     return f"Failure directions{demand}\n" + table(rows)
+
+
+def _told_by(row: FailureDirection) -> str:
+    if row.covered_by:
+        return ", ".join(row.covered_by)
+    if row.direction != "dangerous":
+        return "-"
+    return "nothing" + (f"; {' or '.join(row.missing[:2])} would" if row.missing else "")
 
 
 def _metrics(outcome: Outcome, every: bool) -> str:
@@ -217,5 +226,20 @@ def _caution_lines(outcome: Outcome, width: int) -> Iterator[str]:
 
 
 def _tail(outcome: Outcome, width: int) -> str:
-    verdict = outcome.verdict.upper()
-    return f"Verdict: {verdict}"
+    lines = [_beside(outcome), f"Verdict: {outcome.verdict.upper()}"]
+    return "\n".join(line for line in lines if line)
+
+
+def _beside(outcome: Outcome) -> str:
+    """What stands beside the verdict: inputs nobody has confirmed, and dangers."""
+    parts = []
+    if outcome.defaults:
+        parts.append(_many(len(outcome.defaults), "unverified decisive input"))
+    dangers = sum(note.severity == "danger" for note in outcome.notes)
+    if dangers:
+        parts.append(_many(dangers, "danger"))
+    return f"Beside the verdict: {' and '.join(parts)}, told above" if parts else ""
+
+
+def _many(count: int, word: str) -> str:
+    return f"{count} {word}{'' if count == 1 else 's'}"
