@@ -8,7 +8,7 @@ from pathlib import Path
 from typing import Any
 
 import dash_mantine_components as dmc
-from dash import ClientsideFunction, Dash, Input, Output, dcc, html, set_props
+from dash import Dash, Input, Output, dcc, html, set_props
 
 from outcouple.hooks import Host, build_host
 from outcouple_dashboard import editing, guard, shelf
@@ -16,6 +16,7 @@ from outcouple_dashboard.desk import Desk
 from outcouple_dashboard.files import Folder
 from outcouple_dashboard.jobs import Jobs
 from outcouple_dashboard.pages import compare, design, vary
+from outcouple_dashboard.tags import aria, local
 
 __all__ = ["create_app", "register"]
 
@@ -35,18 +36,24 @@ THEME = {
 }
 
 
+class Page(Dash):
+    """The application with what its callbacks share."""
+
+    desk: Desk
+
+
 def create_app(
     folder: str | Path, *, host: Host | None = None, hosts: Sequence[str] = (), token: str = "", workers: int = 2
-) -> Dash:
+) -> Page:
     """The page on a folder of design files; ``app.server`` is what a web server runs.
 
     hosts  names it may be called by beside those of this machine's loopback
     token  what a browser must bring, where others can reach it; empty where nobody can
     """
-    app = Dash(
+    app = Page(
         __name__,
         title="outcouple",
-        update_title=None,
+        update_title="",
         index_string=INDEX,
         assets_folder=str(Path(__file__).parent / "assets"),
         suppress_callback_exceptions=True,
@@ -54,10 +61,9 @@ def create_app(
         enable_mcp=False,
         serve_locally=True,
     )
-    desk = Desk(Folder(Path(folder)), host or build_host(), Jobs(workers))
+    desk = app.desk = Desk(Folder(Path(folder)), host or build_host(), Jobs(workers))
     app.layout = layout(desk)
     register(app, desk)
-    app.desk = desk
     guard.protect(app, hosts=hosts, token=token)
     return app
 
@@ -103,7 +109,7 @@ def layout(desk: Desk) -> Any:
                             html.Aside(
                                 html.Div(id="form", className="form"),
                                 className="side",
-                                **{"aria-label": "Inputs of the design"},
+                                **aria(label="Inputs of the design"),
                             ),
                             html.Div(
                                 [
@@ -141,14 +147,14 @@ def _header() -> Any:
     return html.Header(
         [
             html.Span("outcouple", className="brand"),
-            html.Nav(links, **{"aria-label": "Pages"}),
+            html.Nav(links, **aria(label="Pages")),
             html.Span([html.Span("no design", id="file-name"), html.Span("", id="file-standing")], className="file"),
             button("Undo", "undo", title="Ctrl+Z", disabled=True),
             button("Redo", "redo", title="Ctrl+Shift+Z", disabled=True),
             button("Designs…", "shelf-open"),
             button("Save", "save", title="Ctrl+S"),
             button("Copy link", "copy-link", title="a link that carries the whole design as it stands"),
-            button("Dark", "theme-switch", **{"aria-pressed": "false"}),
+            button("Dark", "theme-switch", **aria(pressed="false")),
         ],
         className="bar",
     )
@@ -167,28 +173,26 @@ def register(app: Dash, desk: Desk) -> None:
 def _register_frame(app: Dash) -> None:
     """What happens in the browser alone: which page shows, the theme, undo, the address."""
 
-    def local(function: str, *wires: Any, **more: Any) -> None:
-        app.clientside_callback(ClientsideFunction("outcouple", function), *wires, **more)
+    def here(function: str, *wires: Any, **more: Any) -> None:
+        local(app, function, *wires, **more)
 
-    local("newTab", Output("tab", "data"), Input("url", "id"))
-    local(
+    here("newTab", Output("tab", "data"), Input("url", "id"))
+    here(
         "showPage",
         Output("page-design", "hidden"),
         Output("page-vary", "hidden"),
         Output("page-compare", "hidden"),
         Input("url", "pathname"),
     )
-    local(
-        "firstTheme", Output("theme", "data"), Input("theme-switch", "n_clicks"), Input("theme", "modified_timestamp")
-    )
-    local(
+    here("firstTheme", Output("theme", "data"), Input("theme-switch", "n_clicks"), Input("theme", "modified_timestamp"))
+    here(
         "applyTheme",
         Output("provider", "forceColorScheme"),
         Output("theme-switch", "children"),
         Output("theme-switch", "aria-pressed"),
         Input("theme", "data"),
     )
-    local(
+    here(
         "remember",
         Output("history", "data"),
         Output("undo", "disabled"),
@@ -197,22 +201,22 @@ def _register_frame(app: Dash) -> None:
         Input("history", "id"),
         prevent_initial_call=True,
     )
-    local(
+    here(
         "timeTravel",
         Output("doc", "data", allow_duplicate=True),
         Input("undo", "n_clicks"),
         Input("redo", "n_clicks"),
         prevent_initial_call=True,
     )
-    local("address", Output("sink", "children"), Input("link", "data"), Input("url", "pathname"))
-    local("copyLink", Output("copy-link", "children"), Input("copy-link", "n_clicks"), prevent_initial_call=True)
-    local(
+    here("address", Output("sink", "children"), Input("link", "data"), Input("url", "pathname"))
+    here("copyLink", Output("copy-link", "children"), Input("copy-link", "n_clicks"), prevent_initial_call=True)
+    here(
         "closeMessage",
         Output("message-box", "hidden", allow_duplicate=True),
         Input("message-close", "n_clicks"),
         prevent_initial_call=True,
     )
-    local(
+    here(
         "standing",
         Output("work", "hidden"),
         Output("welcome", "hidden"),

@@ -24,6 +24,7 @@ from outcouple_dashboard.entries import (
     state_entries,
     words,
 )
+from outcouple_dashboard.tags import aria
 
 __all__ = ["contact_choices", "form", "material_choices", "ref"]
 
@@ -83,7 +84,7 @@ def _section(group: Group, design: Design, saved: Mapping[str, Any]) -> Any:
         own = sum(entry.given for entry in rest)
         told = f"{len(rest)} more" + (f", {own} set in the file" if own else "")
         parts.append(_folded(told, [controls[entry.path] for entry in rest]))
-    return html.Section(parts, className="group", **{"aria-labelledby": heading})
+    return html.Section(parts, className="group", **aria(labelledby=heading))
 
 
 def _folded(summary: str, parts: list[Any]) -> Any:
@@ -118,7 +119,7 @@ def control(entry: Entry, catalogue: Catalogue, saved: Mapping[str, Any]) -> Any
         hidden=not changed,
         title="put the value of the file back",
         type="button",
-        **{"aria-label": f"{entry.label}: back to the value of the file"},
+        **aria(label=f"{entry.label}: back to the value of the file"),
     )
     name = "line" if position is not None else "line alone"
     return html.Div([html.Div(line, className=name), back], className="control")
@@ -199,7 +200,7 @@ def _states(design: Design, saved: Mapping[str, Any]) -> Any:
     ]
     add = html.Button("Add a state", id="state-add", className="quiet", type="button")
     return html.Section(
-        [html.H3("States", id="section-states"), *rows, add], className="group", **{"aria-labelledby": "section-states"}
+        [html.H3("States", id="section-states"), *rows, add], className="group", **aria(labelledby="section-states")
     )
 
 
@@ -252,7 +253,7 @@ def _state(design: Design, at: int, saved: Mapping[str, Any]) -> Any:
             id=ref("remove", path),
             className="quiet",
             type="button",
-            **{"aria-label": f"Remove the state {name}"},
+            **aria(label=f"Remove the state {name}"),
         )
     )
     return _folded(f"{name} · {worded}{fault}", fields)
@@ -282,7 +283,7 @@ def _requirements(design: Design, saved: Mapping[str, Any]) -> Any:
                         id=ref("remove", entry.path[:2]),
                         className="quiet",
                         type="button",
-                        **{"aria-label": f"Remove the requirement on {metric.label}"},
+                        **aria(label=f"Remove the requirement on {metric.label}"),
                     ),
                 ],
                 className="control",
@@ -315,5 +316,5 @@ def _requirements(design: Design, saved: Mapping[str, Any]) -> Any:
             _folded(told, [*rows, add]),
         ],
         className="group",
-        **{"aria-labelledby": "section-requirements"},
+        **aria(labelledby="section-requirements"),
     )

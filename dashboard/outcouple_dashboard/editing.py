@@ -6,7 +6,7 @@ from typing import Any
 from urllib.parse import parse_qs
 
 import tomlkit
-from dash import ALL, ClientsideFunction, Dash, Input, Output, State, ctx, no_update, set_props
+from dash import ALL, Dash, Input, Output, State, ctx, no_update, set_props
 
 from outcouple.errors import UserMistake
 from outcouple_dashboard import changes
@@ -15,6 +15,7 @@ from outcouple_dashboard.desk import Desk
 from outcouple_dashboard.documents import from_link, link_of, with_text
 from outcouple_dashboard.edits import get_value
 from outcouple_dashboard.entries import Entry, contact_of, entry_at, slider_position, slider_text, split
+from outcouple_dashboard.tags import local
 
 __all__ = ["register", "shown_text"]
 
@@ -52,8 +53,9 @@ def _register_link(app: Dash) -> None:
 
 def _register_form(app: Dash, desk: Desk) -> None:
     """The form is built anew only where a change did not come from one of its own controls."""
-    app.clientside_callback(
-        ClientsideFunction("outcouple", "formKey"),
+    local(
+        app,
+        "formKey",
         Output("form-key", "data"),
         Input("doc", "data"),
         State("form-key", "data"),
@@ -126,6 +128,7 @@ def _register_values(app: Dash, desk: Desk) -> None:
 def change(desk: Desk, doc: Any, kind: str, path_text: str, given: Any) -> Any:
     """The document after one control was moved; what is wrong is said beside that control and changes nothing."""
     text = doc["text"]
+    shown: str | None = ""
     try:
         shown = shown_text(desk, text, path_text)
         if shown is None:
@@ -142,15 +145,15 @@ def change(desk: Desk, doc: Any, kind: str, path_text: str, given: Any) -> Any:
                 set_props(ref("value", path_text), {"error": None})
                 return no_update
             new = changes.put(desk.design(text), text, path_text, str(given))
-        design = desk.design(new)
+        desk.design(new)
     except UserMistake as mistake:
-        set_props(ref("value", path_text), {"error": " ".join(changes.plain_mistake(mistake))})
+        told = " ".join(changes.plain_mistake(mistake))
+        set_props(ref("value", path_text), {"error": f"{told}. Everything shown keeps {shown or 'what it was'}."})
         return no_update
     _follow_controls(desk, doc, path_text, new)
     structural = new.count("[[states]]") != text.count("[[states]]") or path_text.endswith(
         ("/touching", "/name", "/expect")
     )
-    del design
     return with_text(doc, new, origin="structure" if structural else "control")
 
 

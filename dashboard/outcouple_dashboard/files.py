@@ -127,7 +127,7 @@ class Folder:
         return path
 
     def _write(self, path: Path, data: bytes, *, replace: bool) -> None:
-        """Whole or not at all: a file beside it, flushed, then moved into place (or linked, where none may be there)."""
+        """Whole or not at all: a file beside it, flushed, then moved into place (linked, where none may be there)."""
         temporary = ""
         try:
             handle, temporary = tempfile.mkstemp(dir=path.parent, prefix=f".{path.name}.")

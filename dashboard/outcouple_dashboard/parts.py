@@ -11,6 +11,7 @@ from outcouple.notes import Note
 from outcouple.outcome import Judged, Outcome
 from outcouple.quantities import format_quantity
 from outcouple.report.figures import CONFIG
+from outcouple_dashboard.tags import aria
 
 __all__ = [
     "card",
@@ -25,6 +26,8 @@ __all__ = [
     "verdict",
 ]
 
+GRAPH: Any = {**CONFIG, "displayModeBar": False}
+"""Options of every picture: zoom by dragging, a double click goes back; no buttons over the drawing."""
 WORDS = {"pass": "Pass", "fail": "Fail", "open": "Open", "none stated": "No verdict"}
 SHAPES = {"pass": "●", "fail": "▲", "open": "◇", "none stated": "○"}
 DIRECTIONS = {
@@ -41,16 +44,17 @@ def card(title: str, body: Any, *, name: str, wide: bool = False, note: str = ""
     inner = [html.H2(title, id=f"{name}-title"), html.Div(body, id=name)]
     if note:
         inner.insert(1, html.P(note, className="faint"))
-    return html.Section(inner, className="card wide" if wide else "card", **{"aria-labelledby": f"{name}-title"})
+    return html.Section(inner, className="card wide" if wide else "card", **aria(labelledby=f"{name}-title"))
 
 
-def graph(name: str, figure: Mapping[str, Any] | None = None, *, label: str = "") -> Any:
-    """A picture; nothing of it is ever sent anywhere."""
-    shown = figure or {"data": [], "layout": {"height": 120, "xaxis": {"visible": False}, "yaxis": {"visible": False}}}
+def graph(name: str, figure: Mapping[str, Any] | None = None, *, label: str = "", height: int = 0) -> Any:
+    """A picture in its own height; nothing of it is ever sent anywhere."""
+    shown = figure or {"data": [], "layout": {"xaxis": {"visible": False}, "yaxis": {"visible": False}}}
+    tall = height or shown["layout"].get("height", 320)
     return html.Div(
-        dcc.Graph(id=name, figure=shown, config=dict(CONFIG), responsive=True, className="graph"),
+        dcc.Graph(id=name, figure=shown, config=GRAPH, responsive=True, style={"height": f"{tall}px"}),
         role="img",
-        **{"aria-label": label or name},
+        **aria(label=label or name),
     )
 
 
@@ -63,14 +67,12 @@ def table(head: Sequence[str], rows: Sequence[Sequence[Any]], *, numbers: Sequen
     parts: list[Any] = [html.Caption(caption, className="hidden-text")] if caption else []
     parts.append(html.Thead(html.Tr([html.Th(one, scope="col") for one in head])))
     parts.append(html.Tbody([html.Tr([cell(at, one) for at, one in enumerate(row)]) for row in rows]))
-    return html.Div(
-        html.Table(parts), className="scroll", tabIndex=0, role="region", **{"aria-label": caption or "table"}
-    )
+    return html.Div(html.Table(parts), className="scroll", tabIndex=0, role="region", **aria(label=caption or "table"))
 
 
 def mark(shape: str, word: str, tone: str) -> Any:
     """A word with its shape; colour only repeats them."""
-    return html.Span([html.Span(shape, className="shape", **{"aria-hidden": "true"}), word], className=f"mark {tone}")
+    return html.Span([html.Span(shape, className="shape", **aria(hidden="true")), word], className=f"mark {tone}")
 
 
 def verdict(outcome: Outcome) -> list[Any]:
@@ -98,7 +100,7 @@ def verdict(outcome: Outcome) -> list[Any]:
             [
                 html.P(
                     [
-                        html.Span(SHAPES[outcome.verdict], className="shape", **{"aria-hidden": "true"}),
+                        html.Span(SHAPES[outcome.verdict], className="shape", **aria(hidden="true")),
                         WORDS[outcome.verdict],
                     ],
                     className="word",
@@ -250,9 +252,7 @@ def mistakes(lines: Sequence[str]) -> list[Any]:
     return [
         html.Div(
             [
-                html.P(
-                    [html.Span("✕", className="shape", **{"aria-hidden": "true"}), "Not readable"], className="word"
-                ),
+                html.P([html.Span("✕", className="shape", **aria(hidden="true")), "Not readable"], className="word"),
                 html.P(
                     "This design has mistakes and cannot be evaluated. Mend them in its text.", className="consequence"
                 ),

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 import dash_mantine_components as dmc
-from dash import ALL, ClientsideFunction, Dash, Input, Output, State, ctx, dcc, html, no_update, set_props
+from dash import ALL, Dash, Input, Output, State, ctx, dcc, html, no_update, set_props
 
 from outcouple.design.starter import starter_text
 from outcouple.errors import UserMistake
@@ -14,6 +14,7 @@ from outcouple_dashboard.desk import Desk
 from outcouple_dashboard.documents import LONGEST_TEXT, document, with_text
 from outcouple_dashboard.editing import say
 from outcouple_dashboard.files import Changed
+from outcouple_dashboard.tags import aria, local
 
 __all__ = ["drawer", "register", "welcome"]
 
@@ -133,7 +134,7 @@ def drawer(desk: Desk) -> Any:
                         maxRows=24,
                         spellCheck=False,
                         className="raw",
-                        **{"aria-label": "Text of the design file"},
+                        **aria(label="Text of the design file"),
                     ),
                     html.Button("Use this text", id="raw-use", className="quiet", type="button"),
                 ]
@@ -175,8 +176,9 @@ def _opened(desk: Desk, trigger: Any, job: str | None, uploaded: Any) -> Any:
 
 
 def _register_opening(app: Dash, desk: Desk) -> None:
-    app.clientside_callback(
-        ClientsideFunction("outcouple", "readUpload"),
+    local(
+        app,
+        "readUpload",
         Output("uploaded", "data"),
         Input("upload", "contents"),
         State("upload", "filename"),

@@ -17,6 +17,7 @@ COMMANDS: dict[str, str] = {
     "validate": "Check a design file and name every mistake.",
     "budget": "Where the light goes, signal, noise, decision, verdict.",
     "draw": "Pictures: cross-section with rays, ledger, readings, response.",
+    "dashboard": "A page on a folder of designs: explore, vary, compare.",
     "list": "Materials, geometries, contacts, metrics, plugins.",
 }
 """Command -> its line in the help; module ``outcouple.cli.<command>`` holds ``command``."""

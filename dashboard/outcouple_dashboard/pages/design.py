@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 import dash_mantine_components as dmc
-from dash import ClientsideFunction, Dash, Input, Output, State, ctx, dcc, html, no_update
+from dash import Dash, Input, Output, State, ctx, dcc, html, no_update
 
 from outcouple.errors import UserMistake
 from outcouple.outcome import Outcome
@@ -13,11 +13,12 @@ from outcouple.report import figures
 from outcouple_dashboard import parts
 from outcouple_dashboard.changes import plain_mistake
 from outcouple_dashboard.desk import Desk
+from outcouple_dashboard.tags import aria, local
 from outcouple_dashboard.work import has_maps
 
 __all__ = ["layout", "register"]
 
-SECTION_HEIGHT = 350
+SECTION_HEIGHT = 330
 FOLLOW_EVERY = 400
 """Milliseconds between looks at background work."""
 
@@ -29,7 +30,7 @@ def layout() -> Any:
             html.Section(
                 [
                     html.H2("Verdict", className="hidden-text"),
-                    html.Div(id="verdict", **{"aria-live": "polite"}),
+                    html.Div(id="verdict", **aria(live="polite")),
                     html.Div(
                         [
                             html.Div(id="advice", className="advice"),
@@ -64,21 +65,23 @@ def layout() -> Any:
                                 clearable=True,
                                 placeholder="states to draw, two at most",
                                 className="inline-pick",
-                                **{"aria-label": "States whose rays are drawn"},
+                                **aria(label="States whose rays are drawn"),
                             ),
                         ],
                         className="card-head",
                     ),
                     parts.graph(
-                        "section", label="Cross-section to scale with rays coloured by the power they still carry"
+                        "section",
+                        height=SECTION_HEIGHT,
+                        label="Cross-section to scale with rays coloured by the power they still carry",
                     ),
                     html.P(
-                        "To scale. Rays: dark and thick carry all of their power; thin and dotted have less than 0.1 % left.",
+                        "To scale. Dark, thick rays carry all of their power; thin, dotted ones less than 0.1 % of it.",
                         className="faint",
                     ),
                 ],
                 className="card wide",
-                **{"aria-labelledby": "section-title"},
+                **aria(labelledby="section-title"),
             ),
             html.Div(id="cautions-place", className="wide"),
             parts.card("Requirements", None, name="requirements", wide=True),
@@ -320,8 +323,9 @@ def _register_follow(app: Dash, desk: Desk) -> None:
         prevent_initial_call=True,
     )(on_tick)
 
-    app.clientside_callback(
-        ClientsideFunction("outcouple", "hideStop"),
+    local(
+        app,
+        "hideStop",
         Output("follow-stop", "hidden"),
         Input("follow-clock", "disabled"),
     )
