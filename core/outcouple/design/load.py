@@ -102,16 +102,24 @@ def _geometry(data: Mapping[str, Any], host: Host, problems: list[Problem]) -> G
 
 @lru_cache(maxsize=64)
 def design_model(geometry: type[Geometry]) -> type[Section]:
-    """The pydantic model of all sections of one geometry's design file."""
+    """The pydantic model of all sections of one geometry's design file.
+
+    A geometry may restate a common section with defaults that suit it, or with a section derived from it.
+    """
     own = {name: (info.annotation, info) for name, info in geometry.Parameters.model_fields.items()}
+    after = {
+        "readout": own.pop("readout", (READOUTS[geometry.readout], READOUTS[geometry.readout]())),
+        "decision": own.pop("decision", (Decision, Decision())),
+    }
     model: type[Section] = create_model(  # type: ignore[call-overload]
         f"{geometry.__name__}Design",
         __base__=Section,
-        environment=(Environment, Environment()),
-        emitter=(Emitter, Emitter()),
-        **own,
-        readout=(READOUTS[geometry.readout], READOUTS[geometry.readout]()),
-        decision=(Decision, Decision()),
+        **{
+            "environment": (Environment, Environment()),
+            "emitter": (Emitter, Emitter()),
+            **own,
+            **after,
+        },
     )
     return model
 

@@ -45,6 +45,7 @@ def perimeter_light(setting: Setting) -> Light:
         spot=Spot(SPOT, np.tile(hop, (1, rays)), partial(_strips, chords)),
         ambient=_outside(setting, chords),
         entry={"reflected at the edge": fan.reflected, "misses the edge": fan.missed},
+        acceptance=_acceptance(chords),
         parted=True,
         slot=spread(p.scan.slot),
     )
@@ -79,14 +80,13 @@ def _reach(setting: Setting, chords: Chords) -> Floats:
         launch = sent[:, None, None, :] / bundles
         with np.errstate(divide="ignore", invalid="ignore"):
             parts.append(np.where(launch > 0, scale * flux * kept * got / launch, 0.0))
-    return np.minimum(np.stack(parts, axis=3).reshape(*shape[:2], -1), 1.0)
+    return np.asarray(np.minimum(np.stack(parts, axis=3).reshape(*shape[:2], -1), 1.0))
 
 
 def _images(setting: Setting, chords: Chords, rise: Floats) -> tuple[Floats, Floats]:
     """What the edges return on every way, s and p, broadcast against (S, C, W, E)."""
     ways, p = chords.ways, setting.p
-    kept_s: Floats = np.ones((1, 1, 1, 1))
-    kept_p: Floats = np.ones((1, 1, 1, 1))
+    kept_s, kept_p = np.ones((1, 1, 1, 1)), np.ones((1, 1, 1, 1))
     if p.plate.edges == "absorbing":
         return kept_s, kept_p
     used = {*edges_of(p.emitters.edges), *edges_of(p.detectors.edges)}
@@ -128,6 +128,18 @@ def _outside(setting: Setting, chords: Chords) -> Floats:
     open_share = setting.spread(detectors.outside_share)
     etendue = np.pi * np.sin(setting.spread(detectors.half_angle)) ** 2 * area * open_share
     return np.asarray(etendue[:, None])
+
+
+def _acceptance(chords: Chords) -> Floats:
+    """Half-angle of the cone that holds as much solid angle as the window a turned ray must still hit, (S,).
+
+    Drops turn rays; a detector gets those that stay within its own width in azimuth, at any elevation it takes. Mean
+    over the direct chords.
+    """
+    ways = chords.ways
+    window = np.where(ways.possible[..., 0], np.cos(ways.into[..., 0]) / ways.length[..., 0], 0.0)
+    azimuth = chords.beams[1] * np.sum(window, axis=1) / np.sum(ways.possible[..., 0], axis=1)
+    return np.asarray(np.sqrt(azimuth * 2 * np.sin(chords.detector.highest) / np.pi))
 
 
 def _strips(chords: Chords, diameter: Floats, x: Floats, y: Floats) -> Strips:

@@ -13,7 +13,7 @@ from outcouple.geometry import MetricValue, Missing, Results, StateResult, Surfa
 from outcouple_plugins.edge_perimeter.bands import Grid, Hits, Segments, Tables, hits_of, segments_of, tables_of
 from outcouple_plugins.edge_perimeter.chords import Chords
 from outcouple_plugins.edge_perimeter.contact import spot_loss
-from outcouple_plugins.edge_perimeter.measures import NO_OBJECT, blind, chords_shared, needed, objects
+from outcouple_plugins.edge_perimeter.measures import NO_OBJECT, chords_shared, needed, objects
 
 __all__ = ["FieldMap", "measured_on_maps", "surfaces_of"]
 
@@ -153,7 +153,8 @@ def _field_map(results: Results, state: StateResult, sample: int, diameter: floa
     segments = segments_of(chords, lit, sample)
     signal, noise = (_row(part, sample) for part in (results.untouched.signal, results.untouched.noise))
     noise = np.broadcast_to(noise, signal.shape)
-    carries = (signal > 0) & ~_row(blind(results), sample)
+    share = _row(results.untouched.share, sample)
+    carries = (signal > 0) & (share > 0)
     relative = np.divide(noise, signal, out=np.full(signal.shape, np.inf), where=carries)
     level = np.broadcast_to(_row(results.decision.level, sample), signal.shape)
     certainty = results.setting.spread(results.setting.p.field.certainty)[sample]

@@ -210,8 +210,15 @@ def _immunity(results: Results) -> Found:
         loss = strongest(state, need)
         with np.errstate(divide="ignore", invalid="ignore"):
             ratios[state.name] = np.where(loss > 1e-12, touch.values / loss, np.inf)
-    worst = _by_state(ratios, results.setting.samples, highest=False)
+    worst = _worst_of(ratios, others, results.setting.samples)
     return MetricValue(worst.values, f"{touch.at} : {worst.at}", worst.states)
+
+
+def _worst_of(found: Mapping[str, Floats], states: Sequence[StateResult], samples: int) -> MetricValue:
+    """The least value among states that are no faults (among faults where there are only those), and all values."""
+    normal = {state.name: found[state.name] for state in states if state.role == "normal"}
+    worst = _by_state(normal or found, samples, highest=False)
+    return MetricValue(worst.values, worst.at, found)
 
 
 def darkened(state: StateResult, results: Results) -> Floats:
@@ -243,7 +250,7 @@ def _extent_ratio(results: Results) -> Found:
         with np.errstate(divide="ignore", invalid="ignore"):
             apart = np.where(count >= most, count / most, np.where(count <= least, least / count, 1.0))
         found[state.name] = np.where(count > 0, apart, np.inf)
-    return _by_state(found, results.setting.samples, highest=False)
+    return _worst_of(found, others, results.setting.samples)
 
 
 MEASURES: Mapping[str, Callable[[Results], Found]] = {

@@ -3,16 +3,23 @@
 from __future__ import annotations
 
 from outcouple.fields import Section, choice, count, quantity
-from outcouple_plugins.plate.parameters import ROWS, Plate, Row
+from outcouple_plugins.plate.parameters import ROWS, EdgeEmitter, Plate, Row
 
-__all__ = ["Baseline", "Detectors", "Field", "Parameters", "Scan"]
+__all__ = ["Baseline", "Detectors", "Emitters", "Field", "Parameters", "Scan"]
+
+
+class Emitters(Row):
+    """Rows of equal emitters along edges of the plate."""
+
+    edges: str = choice("left and bottom", list(ROWS), describe="edges that carry emitters", deciding=True)
+    per_edge: int = count(24, ge=1, le=1000, describe="on each of these edges, evenly spaced", deciding=True)
 
 
 class Detectors(Section):
     """A row of equal detectors along edges of the plate."""
 
-    edges: str = choice("right", list(ROWS), describe="edges that carry detectors", deciding=True)
-    per_edge: int = count(12, ge=1, le=1000, describe="on each of these edges, evenly spaced", deciding=True)
+    edges: str = choice("right and top", list(ROWS), describe="edges that carry detectors", deciding=True)
+    per_edge: int = count(24, ge=1, le=1000, describe="on each of these edges, evenly spaced", deciding=True)
     width: float = quantity(
         "2 mm", "length", ge="0.05 mm", le="200 mm", describe="of one, along the edge", deciding=True
     )
@@ -92,9 +99,10 @@ class Field(Section):
 class Parameters(Section):
     """A plate lit at its edges and read around its perimeter."""
 
+    emitter: EdgeEmitter = EdgeEmitter()
     plate: Plate = Plate()
-    emitters: Row = Row(edges="left and bottom", per_edge=24)
-    detectors: Detectors = Detectors(edges="right and top", per_edge=24)
+    emitters: Emitters = Emitters()
+    detectors: Detectors = Detectors()
     scan: Scan = Scan()
     baseline: Baseline = Baseline()
     field: Field = Field()

@@ -5,6 +5,9 @@ from __future__ import annotations
 __all__ = ["TOUCH"]
 
 TOUCH = """\
+[decision]
+level = "noise"
+
 [[states]]
 name = "untouched"
 expect = "absent"

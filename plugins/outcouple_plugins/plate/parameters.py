@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
+from outcouple.design.sections import Emitter
 from outcouple.fields import Section, choice, count, name, quantity
 
-__all__ = ["ROWS", "Plate", "Row", "edges_of"]
+__all__ = ["ROWS", "EdgeEmitter", "Plate", "Row", "edges_of"]
 
 ROWS: dict[str, tuple[str, ...]] = {
     "left": ("left",),
@@ -23,6 +24,19 @@ ROWS: dict[str, tuple[str, ...]] = {
 def edges_of(words: str) -> tuple[str, ...]:
     """The edges that the words of a design file name."""
     return ROWS[words]
+
+
+class EdgeEmitter(Emitter):
+    """The lamps along the edges, equal ones; a plate needs them wide, for only steep rays leak into a touch."""
+
+    half_angle: float = quantity(
+        "75 deg",
+        "angle",
+        gt="0 deg",
+        le="90 deg",
+        describe="angle from the axis at which the lobe is cut, in the medium it emits into",
+        deciding=True,
+    )
 
 
 class Plate(Section):
