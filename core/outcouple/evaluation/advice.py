@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from outcouple.design import Design
 from outcouple.design.load import design_model
+from outcouple.design.sections.groups import CONDITIONS, IMPERFECTIONS
 from outcouple.evaluation.judge import value_for
 from outcouple.evaluation.table import Table
 from outcouple.fields import Leaf, leaves
@@ -27,6 +28,8 @@ STEP = 0.2
 KEPT = 3
 DEAR = 10_000_000
 """Array elements of all steps together from which only the deciding inputs step."""
+EMITTERS = tuple(nm * 1e-9 for nm in (470, 525, 590, 625, 660, 740, 810, 850, 880, 940, 1050))
+"""Peak wavelengths [m] that light-emitting diodes are widely sold with; common practice, no source."""
 LEFT_ALONE = ("environment", "decision")
 """Sections that state the requirement rather than the design."""
 
@@ -68,16 +71,28 @@ def worst_margin(
 
 
 def _steps(design: Design) -> list[tuple[Leaf, float, float]]:
-    """(leaf, value, stepped value), up and down, inside the leaf's bounds."""
+    """(leaf, value, stepped value), up and down, inside the leaf's bounds; only what a designer may choose."""
     found = []
     for leaf, value in numeric_inputs(design):
-        if leaf.path[0] in LEFT_ALONE or leaf.path == design.geometry.measurand:
+        if leaf.path[0] in LEFT_ALONE or leaf.group == CONDITIONS or leaf.path == design.geometry.measurand:
             continue
-        for sign in (1.0, -1.0):
-            stepped = leaf.clip(value * (1 + sign * STEP) if value else sign * leaf.small_step())
-            if stepped != value:
-                found.append((leaf, value, stepped))
+        found += [(leaf, value, stepped) for stepped in _stepped(leaf, value) if stepped != value]
     return found
+
+
+def _stepped(leaf: Leaf, value: float) -> list[float]:
+    if leaf.path == ("emitter", "wavelength"):
+        return _neighbours(value)
+    if leaf.group == IMPERFECTIONS:
+        return [leaf.clip(value * (1 - STEP))]
+    return [leaf.clip(value * (1 + sign * STEP) if value else sign * leaf.small_step()) for sign in (1.0, -1.0)]
+
+
+def _neighbours(wavelength: float) -> list[float]:
+    """The next shorter and longer wavelength that emitters come in."""
+    shorter = [one for one in EMITTERS if one < wavelength - 1e-9]
+    longer = [one for one in EMITTERS if one > wavelength + 1e-9]
+    return [*shorter[-1:], *longer[:1]]
 
 
 def advise(

@@ -90,7 +90,7 @@ def _dead_unnoticed(table: Table) -> Found:
     if table.design.geometry.reading != "level":
         return NOT_LEVEL
     chances = wrong_chances(table, lambda expect: expect == target)
-    return MetricValue(np.broadcast_to(chances[DEAD], (table.samples,)))
+    return MetricValue(np.broadcast_to(chances[DEAD], (table.samples,)), DEAD)
 
 
 def _response(table: Table) -> Found:

@@ -21,6 +21,22 @@ __all__ = ["headline_of", "limiting_of", "worst_state_of"]
 
 DEAD_EMITTER = ("dead_emitter_unnoticed", "fault_band_coverage")
 """Metrics that a dead emitter decides."""
+OF_LIGHT = ("worst_ratio", "margin_span")
+"""Metrics that stray light limits and noise does not."""
+OF_NOISE = (
+    "signal_to_noise",
+    "noise",
+    "margin_sigma",
+    "margin_at_end_of_life",
+    "false_alarms_per_year",
+    "miss_probability",
+    "dangerous_probability",
+    "spurious_per_year",
+    "resolution",
+    "best_resolution",
+    "resolution_density",
+    "noise_equivalent_power",
+)
 TIED = 1e-6
 """Standard deviations below which a state lies on the level but for rounding."""
 
@@ -91,7 +107,7 @@ def headline_of(
     )
     if missed:
         first = missed[0]
-        why = _why(table, first) or limiting
+        why = _why(table, first) or _limits(table, first, limiting)
         return f"FAIL: {_misread(design, table, first)}{_against(first)}{f'; {why}' if why else ''}."
     if verdict == "open":
         waiting = ", ".join(f"{one.label} ({one.why})" for one in judged if one.verdict == "open")
@@ -125,6 +141,15 @@ def _why(table: Table, one: Judged) -> str:
     return ""
 
 
+def _limits(table: Table, one: Judged, limiting: str) -> str:
+    """What limits the metric that is missed: stray light, noise, or neither of them."""
+    if one.metric in OF_NOISE:
+        return limiting
+    if one.metric in OF_LIGHT:
+        return _floor(table, table.row(worst_state_of(table, (one,))))
+    return ""
+
+
 def _dead(design: Design, table: Table, found: Mapping[str, MetricValue | Missing]) -> str:
     """ "a dead emitter reads wet (dangerous: ...)" where that passes for a healthy sensor."""
     unnoticed = found.get("dead_emitter_unnoticed")
@@ -136,7 +161,7 @@ def _dead(design: Design, table: Table, found: Mapping[str, MetricValue | Missin
 
 
 def _against(one: Judged) -> str:
-    where = f" ({one.at})" if one.at else ""
+    where = f" ({one.at.strip('()')})" if one.at else ""
     value = "unknown" if one.value is None else format_quantity(one.value, one.kind, unit=one.unit or None)
     return (
         f"{one.label} {value}{where}, needs {one.sense} {format_quantity(one.limit, one.kind, unit=one.unit or None)}"

@@ -132,7 +132,10 @@ def _change(outcome: Outcome, width: int) -> str:
     if not outcome.advice:
         return ""
     lines = [_wrap(one.text, width, "  - ", "    ") for one in outcome.advice]
-    return "What would move the worst margin most (one input, a step of a fifth)\n" + "\n".join(lines)
+    return (
+        "What would move the worst margin most (one input at a time, by a fifth; wavelengths to the next usual one)\n"
+        + "\n".join(lines)
+    )
 
 
 def _ledger(outcome: Outcome) -> str:

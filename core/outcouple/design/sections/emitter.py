@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from outcouple.design.sections.groups import CONDITIONS, IMPERFECTIONS
 from outcouple.fields import Section, choice, quantity
 
 __all__ = ["Emitter"]
@@ -27,6 +28,7 @@ class Emitter(Section):
         unit="nm",
         describe="full width at half maximum of the spectrum",
         reference="typical of infrared LEDs, common practice, no source",
+        group=IMPERFECTIONS,
     )
     power: float = quantity(
         "10 mW",
@@ -57,7 +59,12 @@ class Emitter(Section):
         "led", ["led", "laser"], describe="a laser falls under other safety rules and is not screened here"
     )
     duty: float = quantity(
-        "100 %", "ratio", gt="0 %", le="100 %", describe="share of time it is on, for the eye-safety screening"
+        "100 %",
+        "ratio",
+        gt="0 %",
+        le="100 %",
+        describe="share of time it is on, for the eye-safety screening",
+        group=CONDITIONS,
     )
     source_size: float | None = quantity(
         None,
@@ -66,12 +73,18 @@ class Emitter(Section):
         ge="10 um",
         le="1 m",
         describe="diameter of one emitter's bright area, for the eye-safety screening of the retina",
+        group=CONDITIONS,
     )
     drive: float = quantity(
         "100 %", "ratio", gt="0 %", le="1000 %", describe="current over that at which the power is stated"
     )
     drive_exponent: float = quantity(
-        1, "number", ge=0.3, le=2, describe="x in power = current^x; a little below 1 where the emitter droops"
+        1,
+        "number",
+        ge=0.3,
+        le=2,
+        describe="x in power = current^x; a little below 1 where the emitter droops",
+        group=CONDITIONS,
     )
     power_drift: float = quantity(
         "0 %/K",
@@ -80,6 +93,7 @@ class Emitter(Section):
         le="5 %/K",
         describe="change of power with the electronics' temperature, from 25 degC",
         reference="infrared LEDs: about -0.5 %/K (-0.9 to -0.3), from memory",
+        group=IMPERFECTIONS,
     )
     peak_drift: float = quantity(
         "0 nm/K",
@@ -89,6 +103,7 @@ class Emitter(Section):
         unit="nm/K",
         describe="shift of the peak with the electronics' temperature, from 25 degC",
         reference="infrared LEDs: about 0.25 nm/K (0.1 to 0.3), from memory",
+        group=IMPERFECTIONS,
     )
     age_left: float = quantity(
         "100 %",
@@ -96,4 +111,5 @@ class Emitter(Section):
         ge="0 %",
         le="100 %",
         describe="power left by ageing; 70 % is the customary end of life",
+        group=CONDITIONS,
     )
