@@ -25,6 +25,8 @@ EDGE = 0.1
 """Width of the soft edge of an object, as a share of its diameter; a hard edge would tell its place infinitely well."""
 PIECES = 6
 """Pieces of a way where its beam tapers."""
+SAMPLED = (1 / 6, 1 / 2, 5 / 6)
+"""Where along a piece the beam's spread is taken."""
 BLOCK = 400_000
 """Cells worked on at once; arrays of this size stay in the caches."""
 
@@ -54,7 +56,7 @@ class Segments:
     way     row of the way, chord times bundles plus bundle
     chord   its chord
     x, y    start; dx, dy unit direction; length
-    beam    width of the beam in the middle of the piece
+    beam    width of the even spread that varies as much as the lines of the beam do, along the piece
     """
 
     way: Ints
@@ -128,8 +130,9 @@ def _in_tile(
     for piece in range(pieces):
         run = (high - low)[keep] / pieces
         gone = low[keep] + piece * run
-        share = (gone + run / 2) / length[keep]
         first_beam, last_beam = beams[0] * np.cos(out[keep]), beams[1] * np.cos(into[keep])
+        share = np.stack([(gone + part * run) / length[keep] for part in SAMPLED])
+        beam = np.sqrt(np.mean((first_beam * (1 - share)) ** 2 + (last_beam * share) ** 2, axis=0))
         found.append(
             (
                 (chord * ways.length.shape[2] + bundle)[keep].astype(float),
@@ -139,7 +142,7 @@ def _in_tile(
                 sign_x * dx[keep],
                 sign_y * dy[keep],
                 run,
-                first_beam + (last_beam - first_beam) * share,
+                beam,
             )
         )
     return tuple(np.concatenate(part) for part in zip(*found, strict=True))

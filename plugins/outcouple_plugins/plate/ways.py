@@ -19,6 +19,7 @@ __all__ = [
     "NORMALS",
     "Pairs",
     "Ways",
+    "across_beam",
     "disc_lengths",
     "edge_reflectance",
     "pairs_of",
@@ -263,6 +264,20 @@ def _between(tile: int, image: Ints) -> NDArray[np.bool_]:
     return np.asarray((np.minimum(image, 0) <= tile) & (tile <= np.maximum(image, 0)))
 
 
+def across_beam(share: Floats, width: Floats, other: Floats) -> Floats:
+    """Offset from the middle of a beam below which 1/2 + ``share`` of its lines lie.
+
+    The offset of a line is the sum of two even spreads of ``width`` and ``other``: flat in the middle, straight slopes.
+
+    >>> [float(across_beam(np.array(q), np.array(2.0), np.array(1.0))) for q in (0.25, 0.5)]
+    [0.5, 1.5]
+    """
+    wide, narrow = np.maximum(width, other), np.minimum(width, other)
+    mass = np.abs(share)
+    tail = (wide + narrow) / 2 - np.sqrt(2 * wide * narrow * (0.5 - mass))
+    return np.asarray(np.sign(share) * np.where(mass * 2 * wide <= wide - narrow, mass * wide, tail))
+
+
 def strips_on(
     ways: Ways,
     *,
@@ -276,20 +291,22 @@ def strips_on(
 ) -> Strips:
     """Contact of a disc on every way, in ``count`` strips across a beam.
 
-    widths  (S,) of the emitter and of the detector, between which the beam tapers
+    widths  (S,) of the emitter and of the detector
+
+    Straight lines from anywhere on the emitter to anywhere on the detector lie trapezoidally about the middle of the
+    beam; strips carry equal shares of them.
     """
     share = (np.arange(count) + 0.5) / count - 0.5
     gone = np.clip(((x[:, None, None] - ways.x) * ways.dx + (y[:, None, None] - ways.y) * ways.dy) / ways.length, 0, 1)
     first = widths[0][:, None, None] * np.abs(np.cos(ways.out))
     last = widths[1][:, None, None] * np.abs(np.cos(ways.into))
-    beam = first + (last - first) * gone
     return Strips(
         disc_lengths(
             ways,
             radius=diameter / 2,
             x=x,
             y=y,
-            offsets=beam[..., None] * share,
+            offsets=across_beam(share, (first * (1 - gone))[..., None], (last * gone)[..., None]),
             width=width,
             height=height,
         )
