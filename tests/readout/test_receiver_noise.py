@@ -127,7 +127,7 @@ def test_gain_against_a_stage_run_in_time(kind: str) -> None:
 def test_ripple_never_exceeds_its_leak(cycles: float, kind: str, periods: int, phase: float) -> None:
     reading = Modulation(kind, periods * 1e-3, 1e3)
     total = float(reading.time)
-    count = 40_000
+    count = 40_320  # whole samples in every half-period
     at = (np.arange(count) + 0.5) / count * total
     square = np.where((at / float(reading.period)) % 1 < 0.5, 2.0, -2.0)
     weight = {"steady": np.ones(count), "sine": 4 * np.sin(2e3 * np.pi * at)}.get(kind, square) / count

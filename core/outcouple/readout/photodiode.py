@@ -69,8 +69,15 @@ def responsivity(
 
     The temperature coefficient [1/K] is near zero where silicon absorbs everything and grows towards the
     band edge, where warmth makes it absorb more. Curve and coefficient are typical values from memory, good
-    to about 10 % (1000 nm and beyond: 30 %): a measured responsivity wins.
+    to about 10 % (1000 nm and beyond: 30 %): a measured responsivity wins. Held between zero and one electron per
+    photon where the straight coefficient leaves them, with a caution (`responsivity_notes`).
     """
+    straight = _straight(wavelength, detector, temperature)
+    return np.asarray(np.clip(straight, 0.0, quantum_ceiling(wavelength)))
+
+
+def _straight(wavelength: ArrayLike, detector: str, temperature: ArrayLike) -> Floats:
+    """Responsivity [A/W] with its temperature coefficient drawn straight, however far."""
     table = columns("silicon_responsivity.csv")
     nm = np.asarray(wavelength, dtype=float) * 1e9
     at = table["wavelength_nm"]
@@ -88,7 +95,7 @@ def responsivity_notes(
     """What to know about `responsivity` at these wavelengths (S,) and temperatures (S,)."""
     nm = np.asarray(wavelength, dtype=float) * 1e9
     at = columns("silicon_responsivity.csv")["wavelength_nm"]
-    above = responsivity(wavelength, detector, temperature=temperature) > quantum_ceiling(wavelength)
+    straight = _straight(wavelength, detector, temperature)
     typical = Note(
         "responsivity-typical",
         f"Responsivity of the {detector} photodiode is a typical curve from memory, {SPREAD:.0%} either way.",
@@ -102,10 +109,16 @@ def responsivity_notes(
     )
     ceiling = Note(
         "responsivity-ceiling",
-        "Too hot for the temperature coefficient: the responsivity comes out above one electron per photon.",
-        where=_mask(above),
+        "Too hot for the temperature coefficient: the responsivity is held at one electron per photon.",
+        where=_mask(straight > quantum_ceiling(wavelength)),
     )
-    return (typical, *(note for note in (ranges, ceiling) if note.holds()))
+    floor = Note(
+        "responsivity-cold",
+        "Too cold for the temperature coefficient: the responsivity is held at zero. Measure it, or keep the detector "
+        "warm.",
+        where=_mask(straight < 0),
+    )
+    return (typical, *(note for note in (ranges, ceiling, floor) if note.holds()))
 
 
 def _mask(condition: NDArray[np.bool_]) -> NDArray[np.bool_]:
