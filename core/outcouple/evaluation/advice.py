@@ -30,6 +30,14 @@ DEAR = 10_000_000
 """Array elements of all steps together from which only the deciding inputs step."""
 EMITTERS = tuple(nm * 1e-9 for nm in (470, 525, 590, 625, 660, 740, 810, 850, 880, 940, 1050))
 """Peak wavelengths [m] that light-emitting diodes are widely sold with; common practice, no source."""
+NEEDS: Mapping[str, tuple[str, tuple[str, ...]]] = {
+    "transistor_gain": ("detector", ("phototransistor",)),
+    "reference_share": ("reference_channel", ("yes",)),
+    "modulation_frequency": ("modulation", ("synchronous",)),
+}
+"""Inputs of the read-out that take effect only with one word of another."""
+OF_THE_FILTER = ("filter_width", "filter_transmission", "filter_blocking")
+"""Inputs that take effect only where a filter is stated."""
 LEFT_ALONE = ("environment", "decision")
 """Sections that state the requirement rather than the design."""
 
@@ -76,8 +84,21 @@ def _steps(design: Design) -> list[tuple[Leaf, float, float]]:
     for leaf, value in numeric_inputs(design):
         if leaf.path[0] in LEFT_ALONE or leaf.group == CONDITIONS or leaf.path == design.geometry.measurand:
             continue
+        if _idle(design, leaf):
+            continue
         found += [(leaf, value, stepped) for stepped in _stepped(leaf, value) if stepped != value]
     return found
+
+
+def _idle(design: Design, leaf: Leaf) -> bool:
+    """True for inputs of the read-out that the design's own choices leave without effect."""
+    section, name = leaf.path[0], leaf.path[-1]
+    if section != "readout":
+        return False
+    readout: Any = design.sections.readout  # type: ignore[attr-defined]
+    if name in OF_THE_FILTER:
+        return readout.filter_centre is None
+    return name in NEEDS and getattr(readout, NEEDS[name][0]) not in NEEDS[name][1]
 
 
 def _stepped(leaf: Leaf, value: float) -> list[float]:

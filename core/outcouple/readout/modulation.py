@@ -143,6 +143,8 @@ class Modulation:
         A reading whose duration is a multiple of the mains period nulls the ripple only as well as the
         mains keeps its frequency, hence the average.
         """
+        if not np.any(depth) or not np.any(ambient):
+            return np.zeros(np.broadcast_shapes(np.shape(ambient), np.shape(depth), np.shape(self.time)))
         total = np.zeros(())
         for frequency, amplitude in lamp_ripple(mains=mains):
             spread = frequency * (1 + tolerance * np.linspace(-1, 1, 9))
