@@ -74,7 +74,9 @@ class Desk:
     _designs: Kept = field(default_factory=lambda: Kept(128))
     _quick: Kept = field(default_factory=lambda: Kept(128))
     whole: Kept = field(default_factory=lambda: Kept(64))
-    """Outcomes with advice, response curve and maps, by text; background jobs put them here."""
+    """Outcomes with what background jobs found, by text."""
+    complete: Kept = field(default_factory=lambda: Kept(64))
+    """Texts of which nothing more is to come."""
 
     def design(self, text: str) -> Design:
         """The design of a text; UserMistake with every mistake and its place."""

@@ -14,7 +14,6 @@ from outcouple_dashboard import parts
 from outcouple_dashboard.changes import plain_mistake
 from outcouple_dashboard.desk import Desk
 from outcouple_dashboard.tags import aria, local
-from outcouple_dashboard.work import has_maps
 
 __all__ = ["layout", "register"]
 
@@ -108,9 +107,15 @@ def look_of(theme: str | None) -> figures.Look:
     return figures.DARK if theme == "dark" else figures.LIGHT
 
 
+def first_view(outcome: Outcome) -> str:
+    """Name of the drawing on the first screen: the cross-section where there is one."""
+    names = [view.name for view in outcome.views]
+    return next((name for name in names if "section" in name), names[0] if names else "")
+
+
 def section_picture(outcome: Outcome, states: list[str], theme: str | None) -> dict[str, Any]:
-    """The first drawing of the sensor, for the first screen."""
-    return figures.section_figure(outcome, states, look=look_of(theme), height=SECTION_HEIGHT)
+    """The drawing on the first screen."""
+    return figures.section_figure(outcome, states, view=first_view(outcome), look=look_of(theme), height=SECTION_HEIGHT)
 
 
 def first_screen(desk: Desk, text: str, states: list[str], theme: str | None) -> tuple[Any, Any, Any]:
@@ -157,7 +162,7 @@ def other_drawings(outcome: Outcome, states: list[str], theme: str | None) -> li
             wide=True,
         )
         for at, view in enumerate(outcome.views)
-        if at > 0
+        if view.name != first_view(outcome)
     ]
 
 
@@ -174,12 +179,19 @@ def plugin_views(outcome: Outcome, desk: Desk) -> list[Any]:
     return found
 
 
+def untitled(figure: dict[str, Any]) -> dict[str, Any]:
+    """A picture without its own title, for a card that has one."""
+    return {**figure, "layout": {**figure["layout"], "title": {"text": ""}}}
+
+
 def maps(outcome: Outcome, theme: str | None) -> list[Any]:
     """Maps over the surface, once they are there."""
     return [
         parts.card(
             surface.label.capitalize(),
-            parts.graph(f"map-{at}", figures.surface_figure(surface, look=look_of(theme)), label=surface.label),
+            parts.graph(
+                f"map-{at}", untitled(figures.surface_figure(surface, look=look_of(theme))), label=surface.label
+            ),
             name=f"map-card-{at}",
             wide=True,
         )
@@ -277,13 +289,11 @@ def _register_follow(app: Dash, desk: Desk) -> None:
 
     def on_change(doc: Any, tab: str) -> Any:
         try:
-            design = desk.design(doc["text"]) if doc else None
+            if not doc or not desk.design(doc["text"]):
+                return no_update, True
         except UserMistake:
-            design = None
-        if design is None:
-            return no_update, True
-        found = desk.whole.peek(doc["text"])
-        if found is not None and found.advice and (found.surfaces or not has_maps(design)):
+            return None, True
+        if desk.complete.peek(doc["text"]):
             return None, True
         return desk.jobs.start(tab, "follow", text=doc["text"]).number, False
 
@@ -303,8 +313,11 @@ def _register_follow(app: Dash, desk: Desk) -> None:
             return no_update, True, "", True
         if job.parts:
             desk.whole.put(job.arguments["text"], job.parts[-1])
+        if job.state == "done":
+            desk.complete.put(job.arguments["text"], True)
         over = job.over or job.cancelled.is_set()
-        told = {"failed": " ".join(job.why), "cancelled": "Stopped; what is open stays open."}.get(job.state, "")
+        state = "cancelled" if job.cancelled.is_set() else job.state
+        told = {"failed": " ".join(job.why), "cancelled": "Stopped; what is open stays open."}.get(state, "")
         if not over:
             told = f"Computing: {job.step or 'waiting for a free worker'}…"
         seen = [number, len(job.parts), over]
