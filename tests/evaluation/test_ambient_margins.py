@@ -45,7 +45,8 @@ def test_modulated_reading_twice_the_ambient_lowers_every_margin_in_noise_and_no
 
 def test_shot_noise_of_ambient_grows_as_its_root():
     """Where outside light makes nearly all of the noise, twice of it costs a factor of root 2."""
-    bright = {"modulation": "difference", "bits": 32, "full_scale": "50 V", "feedback_resistance": "4 kohm", "voltage_noise": "0 V/rtHz"}
+    bright = {"modulation": "difference", "bits": 32, "voltage_noise": "0 V/rtHz"}
+    bright |= {"feedback_resistance": "4 kohm", "full_scale": "50 V"}
     design = tank(readout=bright, emitter={"power": "0.01 mW"})
     found = evaluate_batch(design, {("readout", "ambient_current"): np.array([5e-3, 1e-2])}, ["margin_sigma"])
     assert doubled(found.metrics["margin_sigma"].values) == pytest.approx(1 / np.sqrt(2), rel=0.01)

@@ -103,7 +103,7 @@ def _level(absent: Sequence[Score], present: Sequence[Score], settings: Any, nee
     feet = _stack([kth(score.seeing, need) for score in present])
     top, foot = tops.max(axis=0), feet.min(axis=0)
     if settings.level == "midpoint":
-        return ((top + foot) / 2)[:, None]
+        return np.asarray((top + foot) / 2)[:, None]
     rows = np.arange(top.shape[0])
     level = equal_error_level(
         absent=top,
