@@ -5,6 +5,8 @@ Names and numbers of the demos are invented; what they must show is physics and 
 
 from __future__ import annotations
 
+import tomllib
+import warnings
 from functools import cache
 from pathlib import Path
 
@@ -12,6 +14,8 @@ import numpy as np
 import pytest
 
 from outcouple import evaluate, load_design
+from outcouple.design import design_from_mapping
+from outcouple.hooks import build_host
 
 DEMOS = sorted((Path(__file__).parents[2] / "demo_configs").glob("*.toml"))
 
@@ -71,3 +75,50 @@ def test_force_cell_shows_that_temperature_dominates():
     assert found.metrics["best_resolution"].value < 0.2e-9
     assert found.metrics["thermal_error"].value == pytest.approx(60e-9)
     assert "temperature" in found.headline
+
+
+@pytest.mark.parametrize("file", DEMOS, ids=lambda file: file.stem)
+def test_no_demo_saturates_its_read_out(file):
+    found = outcome(file.stem)
+    assert found.metrics["saturation_headroom"].value > 1
+    assert "saturated" not in [note.code for note in found.notes]
+
+
+def test_coffee_reservoir_is_red_because_a_dead_emitter_lets_the_pump_run_dry():
+    """Light lost reads wet, and the demand is low level; with a fault band the same design passes."""
+    found = outcome("coffee_reservoir")
+    assert found.verdict == "fail"
+    assert [one.metric for one in found.requirements if one.verdict == "fail"] == ["dead_emitter_unnoticed"]
+    assert found.headline.startswith("FAIL: a dead emitter reads wet (dangerous: the pump runs dry)")
+    row = found.failures[0]
+    assert (row.cause, row.direction, row.reads) == ("emitter dead, cable open, supply lost", "dangerous", "wet")
+    text = next(file for file in DEMOS if file.stem == "coffee_reservoir").read_text()
+    mended = tomllib.loads(text)
+    mended["decision"]["fault_low"] = "2 %"
+    assert evaluate(design_from_mapping(mended, host=build_host())).verdict == "pass"
+
+
+def test_day_tank_fails_safe_on_a_dead_emitter_and_carries_its_banners():
+    found = outcome("oil_tank_overfill")
+    assert found.failures[0].direction == "dangerous"
+    dead = next(row for row in found.failures if row.cause.startswith("emitter dead"))
+    assert (dead.reads, dead.direction) == ("wet", "spurious")
+    dangers = {note.code for note in found.notes if note.severity == "danger"}
+    assert {"explosive-atmosphere", "overfill"} <= dangers
+
+
+@pytest.mark.parametrize("name", ["dewar_ladder_silica", "dewar_ladder_sapphire"])
+def test_cold_tips_read_positive_currents_without_a_warning(name):
+    with warnings.catch_warnings():
+        warnings.simplefilter("error")
+        found = evaluate(load_design(next(file for file in DEMOS if file.stem == name)))
+    assert min(state.signal for state in found.states) > 0
+    assert "electronics-temperature" not in [note.code for note in found.notes]
+
+
+def test_advice_names_what_a_designer_may_choose():
+    facts = ("environment.", "decision.", "readout.voltage_corner", "readout.intensity_noise")
+    for file in DEMOS:
+        for one in outcome(file.stem).advice:
+            assert not one.path.startswith(facts)
+            assert one.value_before != one.value_after
