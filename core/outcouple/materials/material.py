@@ -18,6 +18,7 @@ Floats = NDArray[np.float64]
 Span = tuple[float, float]
 
 KINDS = ("solid", "elastomer", "liquid", "gas", "tissue", "metal")
+ROUNDING = 1e-9
 VERIFIED = ("published", "computed", "unverified")
 
 
@@ -118,19 +119,24 @@ class Material:
         return tuple(notes)
 
     def _range_note(self, values: Floats, span: Span, what: str, show: Callable[[float], str]) -> Note:
-        outside = (values < span[0]) | (values > span[1])
+        outside = _outside(values, span)
         known = f"{what}s from {show(span[0])} to {show(span[1])}"
         text = f"The index of {self.name} is known for {known}; outside, it is estimated."
         return Note("material-range", text, trigger=_extremes(values, outside, show), where=outside)
 
     def _absorption_note(self, values: Floats, absorbs: Absorption) -> Note:
         low, high = absorbs.span
-        outside = (values < low) | (values > high)
+        outside = _outside(values, (low, high))
         text = (
             f"The absorption of {self.name} is known from {_nanometres(low)} to {_nanometres(high)}; "
             "beyond, the value at the end is taken."
         )
         return Note("material-absorption", text, trigger=_extremes(values, outside, _nanometres), where=outside)
+
+
+def _outside(values: Floats, span: Span) -> NDArray[np.bool_]:
+    """Where values leave a range by more than rounding: -20 degC in kelvin is 253.15 but for its last digit."""
+    return np.asarray((values < span[0] * (1 - ROUNDING)) | (values > span[1] * (1 + ROUNDING)))
 
 
 def _extremes(values: Floats, where: NDArray[np.bool_], show: Callable[[float], str]) -> str:
