@@ -54,7 +54,7 @@ def _judged(
     if one.over != over:
         why = f"asked for over {one.over}, which this evaluation did not run"
     elif found is None:
-        why = "was not evaluated here"
+        why = "needs a map, which was not asked for" if metric.cost == "map" else "was not evaluated here"
     else:
         picked = value_for(one, found, states)
         if isinstance(picked, Missing):

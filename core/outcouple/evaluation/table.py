@@ -117,9 +117,14 @@ def _media_of(design: Design, states: Sequence[State], view: View) -> tuple[str,
 
 
 def nodes_for(design: Design, state: State, view: View) -> int:
-    """Wavelength nodes a state needs: more where a film may show fringes."""
+    """Wavelength nodes a state needs: more where a film may show fringes.
+
+    Where readings are changes against the untouched sensor, all states share their nodes: two sums over the line that
+    differ in nodes would differ in their error.
+    """
+    states = (*design.states, state) if design.geometry.reading == "change" else (state,)
     films = bool(design.geometry.measurand) or any(
-        patch.films for cover in state.covers(view).values() for patch in cover.patches
+        patch.films for one in states for cover in one.covers(view).values() for patch in cover.patches
     )
     return FRINGE_NODES if films else SMOOTH_NODES
 

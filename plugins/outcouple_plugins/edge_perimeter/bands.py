@@ -19,7 +19,7 @@ __all__ = ["Grid", "Hits", "Segments", "Tables", "hits_of", "segments_of", "tabl
 Floats = NDArray[np.float64]
 Ints = NDArray[np.int64]
 
-OFFSETS = 256
+OFFSETS = 96
 """Points of a table over the offset."""
 EDGE = 0.1
 """Width of the soft edge of an object, as a share of its diameter; a hard edge would tell its place infinitely well."""
