@@ -16,6 +16,7 @@ COMMANDS: dict[str, str] = {
     "new": "Write a commented starter design.",
     "validate": "Check a design file and name every mistake.",
     "budget": "Where the light goes, signal, noise, decision, verdict.",
+    "vary": "Sweep inputs: curves, maps, where the requirements are met.",
     "draw": "Pictures: cross-section with rays, ledger, readings, response.",
     "dashboard": "A page on a folder of designs: explore, vary, compare.",
     "list": "Materials, geometries, contacts, metrics, plugins.",

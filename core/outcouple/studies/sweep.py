@@ -1,0 +1,273 @@
+"""Metrics of a design over one, two or more axes, evaluated as batches."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping, Sequence
+from concurrent.futures import Executor
+from dataclasses import dataclass, field
+from itertools import product
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from outcouple.design import Design, Requirement
+from outcouple.errors import UserMistake, nearest
+from outcouple.evaluation.batch import Batch
+from outcouple.evaluation.judge import value_for
+from outcouple.geometry import Metric, MetricValue, Missing
+from outcouple.metrics import metrics_of
+from outcouple.notes import Note, merge_notes
+from outcouple.studies.axes import Axis, read_axes
+from outcouple.studies.places import with_values
+from outcouple.studies.work import Task, chunked, run_tasks
+
+__all__ = ["Limit", "Sweep", "SweptMetric", "sweep", "wanted_metrics"]
+
+Floats = NDArray[np.float64]
+Bools = NDArray[np.bool_]
+
+ALWAYS = ("margin_sigma",)
+"""Metrics of every sweep, beside those that requirements name."""
+
+
+@dataclass(frozen=True)
+class SweptMetric:
+    """One metric over the grid of a sweep.
+
+    values  SI, one axis of the array per axis of the sweep; nan where there is no value
+    states  the same per state
+    why     what was said where there is no value
+    """
+
+    metric: Metric
+    values: Floats
+    states: Mapping[str, Floats]
+    why: tuple[str, ...] = ()
+
+
+@dataclass(frozen=True)
+class Limit:
+    """One requirement over the grid.
+
+    margin  distance to the limit in the metric's own unit, positive where it is met; nan where unknown
+    scaled  the same in units of the limit (of the metric's unit where the limit is zero)
+    why     why it is open throughout; empty where it was judged
+    """
+
+    requirement: Requirement
+    label: str
+    margin: Floats
+    why: str = ""
+
+    @property
+    def scaled(self) -> Floats:
+        """Margins in units of the limit."""
+        return self.margin / (abs(self.requirement.limit) or 1.0)
+
+    @property
+    def met(self) -> Bools:
+        """True where it is known to be met."""
+        return np.asarray(self.margin >= 0)
+
+
+@dataclass(frozen=True)
+class Sweep:
+    """What a sweep found. Arrays have one axis per axis of the sweep.
+
+    signals  state -> reading of its faintest channel (SI)
+    done     points that were evaluated; all of them unless it was interrupted
+    reading  the metric that says what the signals are
+    notes    cautions, each with the points it holds for (flat, in the order of the arrays)
+    """
+
+    title: str
+    file: str
+    geometry: str
+    axes: tuple[Axis, ...]
+    metrics: Mapping[str, SweptMetric]
+    signals: Mapping[str, Floats]
+    limits: tuple[Limit, ...]
+    done: Bools
+    reading: Metric
+    notes: tuple[Note, ...] = ()
+    raw: Mapping[str, Any] = field(default_factory=dict)
+
+    @property
+    def shape(self) -> tuple[int, ...]:
+        """Points on every axis."""
+        return tuple(len(axis.values) for axis in self.axes)
+
+    @property
+    def finished(self) -> bool:
+        """True where nothing was left out."""
+        return bool(np.all(self.done))
+
+    @property
+    def worst(self) -> Floats:
+        """Least margin over all requirements in units of their limits; nan where one is open or nothing is asked."""
+        if not self.limits:
+            return np.full(self.shape, np.nan)
+        return np.asarray(np.min(np.stack([limit.scaled for limit in self.limits]), axis=0))
+
+    @property
+    def verdicts(self) -> NDArray[np.str_]:
+        """ "pass", "fail", "open" or "none stated" at every point; "" where it was not evaluated."""
+        if not self.limits:
+            return np.where(self.done, "none stated", "")
+        stack = np.stack([limit.margin for limit in self.limits])
+        missed, unknown = np.any(stack < 0, axis=0), np.any(np.isnan(stack), axis=0)
+        return np.where(~self.done, "", np.where(missed, "fail", np.where(unknown, "open", "pass")))
+
+
+def sweep(
+    design: Design,
+    axes: Sequence[str] | Sequence[Axis],
+    *,
+    metrics: Sequence[str] = (),
+    executor: Executor | None = None,
+    progress: Callable[[int, int], None] | None = None,
+) -> Sweep:
+    """Evaluate a design over the grid of some axes.
+
+    axes      sentences ("plate.thickness from 2 mm to 10 mm in 17"), or axes made of them
+    metrics   names of metrics beside those that requirements name
+    executor  any of ``concurrent.futures``; the numbers are the same with and without
+    progress  called with the points done and the points of all
+
+    An interrupt (Ctrl-C) ends it early: what was evaluated is returned, ``finished`` is false.
+    Raises UserMistake for axes, metrics and values that cannot be taken.
+    """
+    read = tuple(axis for axis in axes if isinstance(axis, Axis)) or read_axes(design, [str(text) for text in axes])
+    want = wanted_metrics(design, metrics)
+    grid = _Grid(design, read, want)
+    tasks = [task for made, at in _designs(design, read) for task in chunked(made, *_laid(read, at, want))]
+    total, count = grid.total, 0
+    try:
+        for task, batch in run_tasks(tasks, executor):
+            grid.take(task, batch)
+            count += len(task.places)
+            if progress is not None:
+                progress(count, total)
+    except KeyboardInterrupt:
+        if count == 0:
+            raise
+    return grid.sweep()
+
+
+def wanted_metrics(design: Design, metrics: Sequence[str]) -> tuple[str, ...]:
+    """Names of metrics to evaluate: those asked for, those of requirements, the margin. Maps only where asked for."""
+    known = metrics_of(design.geometry)
+    for name in metrics:
+        if name not in known:
+            raise UserMistake(f"--metric {name}: no such metric{nearest(name, known)}; there are: {', '.join(known)}")
+    required = [one.metric for one in design.requirements]
+    return tuple(dict.fromkeys([*required, *metrics, *ALWAYS]))
+
+
+def _designs(design: Design, axes: Sequence[Axis]) -> list[tuple[Design, tuple[int | None, ...]]]:
+    """A design for every combination of the values that cannot run as arrays; None stands for a whole axis."""
+    choices = [[None] if axis.runs else range(len(axis.values)) for axis in axes]
+    found = []
+    for at in product(*choices):
+        values = {axis.place: axis.values[one] for axis, one in zip(axes, at, strict=True) if one is not None}
+        found.append((with_values(design, values), at))
+    return found
+
+
+def _laid(
+    axes: Sequence[Axis], at: Sequence[int | None], want: tuple[str, ...]
+) -> tuple[dict[tuple[str, ...], Floats], tuple[str, ...], NDArray[np.int64]]:
+    """Samples over the axes that run, what is wanted, and the places of the samples in the flat grid."""
+    shape = tuple(len(axis.values) for axis in axes)
+    indices = np.meshgrid(
+        *([np.arange(size) if one is None else np.array([one]) for size, one in zip(shape, at, strict=True)]),
+        indexing="ij",
+    )
+    places = np.ravel_multi_index([index.ravel() for index in indices], shape)
+    samples = {
+        axis.place.path: np.array(axis.values, dtype=float)[index.ravel()]
+        for axis, index in zip(axes, indices, strict=True)
+        if axis.runs
+    }
+    return samples, want, places
+
+
+class _Grid:
+    """Collects the answers of batches into arrays over the whole grid."""
+
+    def __init__(self, design: Design, axes: tuple[Axis, ...], want: tuple[str, ...]) -> None:
+        self.design, self.axes, self.want = design, axes, want
+        self.shape = tuple(len(axis.values) for axis in axes)
+        self.total = int(np.prod(self.shape))
+        self.done = np.zeros(self.total, dtype=bool)
+        self.values = {name: self._empty() for name in want}
+        self.states: dict[str, dict[str, Floats]] = {name: {} for name in want}
+        self.why: dict[str, dict[str, None]] = {name: {} for name in want}
+        self.signals: dict[str, Floats] = {}
+        self.margins = [self._empty() for _ in design.requirements]
+        self.notes: list[Note] = []
+
+    def _empty(self) -> Floats:
+        return np.full(self.total, np.nan)
+
+    def take(self, task: Task, batch: Batch) -> None:
+        """Put one batch's answers in their places."""
+        at = task.places
+        families = [(state.name, state.family) for state in task.design.states]
+        for name in self.want:
+            found = batch.metrics[name]
+            if isinstance(found, Missing):
+                self.why[name][found.why] = None
+                continue
+            self.values[name][at] = found.values
+            for state, values in found.states.items():
+                self.states[name].setdefault(state, self._empty())[at] = values
+        for state, values in batch.signals.items():
+            self.signals.setdefault(state, self._empty())[at] = values
+        for one, margin in zip(task.design.requirements, self.margins, strict=True):
+            picked = value_for(one, batch.metrics[one.metric], families)
+            if one.over == "nominal" and isinstance(picked, MetricValue):
+                margin[at] = one.margin(picked.values)
+        for note in batch.notes:
+            where = np.zeros(self.total, dtype=bool)
+            where[at] = True if note.where is None else note.where
+            self.notes.append(Note(note.code, note.text, note.severity, note.trigger, note.decides, where))
+        self.done[at] = True
+
+    def sweep(self) -> Sweep:
+        """All of it as a sweep."""
+        known = metrics_of(self.design.geometry)
+        return Sweep(
+            title=self.design.title,
+            file=self.design.file,
+            geometry=self.design.geometry.name,
+            axes=self.axes,
+            metrics={
+                name: SweptMetric(
+                    known[name],
+                    self.values[name].reshape(self.shape),
+                    {state: values.reshape(self.shape) for state, values in self.states[name].items()},
+                    tuple(self.why[name]),
+                )
+                for name in self.want
+            },
+            signals={state: values.reshape(self.shape) for state, values in self.signals.items()},
+            limits=tuple(
+                Limit(one, _label(one, known[one.metric]), margin.reshape(self.shape), self._open(one))
+                for one, margin in zip(self.design.requirements, self.margins, strict=True)
+            ),
+            done=self.done.reshape(self.shape),
+            reading=known["signal"],
+            notes=merge_notes(self.notes),
+            raw=self.design.raw,
+        )
+
+    def _open(self, one: Requirement) -> str:
+        if one.over != "nominal":
+            return f"asked for over {one.over}, which a sweep does not run"
+        return "; ".join(self.why[one.metric]) if np.all(np.isnan(self.values[one.metric])) else ""
+
+
+def _label(one: Requirement, metric: Metric) -> str:
+    return f"{metric.label} [{one.state}]" if one.state else metric.label
