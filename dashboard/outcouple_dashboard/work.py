@@ -15,6 +15,7 @@ from outcouple.evaluation import evaluate
 from outcouple.hooks import Host, build_host
 from outcouple.metrics import metrics_of
 from outcouple.outcome import Outcome
+from outcouple.studies.sweep import Sweep, sweep
 
 __all__ = ["TASKS", "follow", "has_maps", "serve"]
 
@@ -46,7 +47,17 @@ def follow(step: Step, *, text: str) -> Iterator[Outcome]:
     yield evaluate(design, maps=maps)
 
 
-TASKS: dict[str, Callable[..., Iterator[Any]]] = {"follow": follow}
+def vary(step: Step, *, text: str, axes: list[str], metric: str) -> Iterator[Sweep]:
+    """A sweep over one or two inputs."""
+    design = design_of(text)
+    known = metrics_of(design.geometry)
+    wanted = [metric] if metric in known else []
+    yield sweep(
+        design, axes, metrics=wanted, progress=lambda done, total: step(done / total, f"{done} of {total} points")
+    )
+
+
+TASKS: dict[str, Callable[..., Iterator[Any]]] = {"follow": follow, "vary": vary}
 """Task -> what does it; every answer it yields is a part, the last one the whole."""
 
 

@@ -57,7 +57,6 @@ def served(folder):
     thread.start()
     yield found
     found.close()
-    thread.join(5)
 
 
 @pytest.fixture(scope="session")

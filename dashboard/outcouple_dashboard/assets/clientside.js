@@ -118,6 +118,7 @@
         }
       },
 
+      redraw: function () { relayout(); return keep(); },
       closeMessage: (clicks) => (clicks ? true : keep()),
       hideStop: (off) => Boolean(off),
 

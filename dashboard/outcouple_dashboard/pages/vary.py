@@ -1,20 +1,425 @@
-"""The Vary page."""
+"""The Vary page: one or two inputs run, a metric follows, a click takes a point over."""
 
 from __future__ import annotations
 
 from typing import Any
 
-from dash import Dash, html
+import dash_ag_grid as dag
+import dash_mantine_components as dmc
+import numpy as np
+from dash import Dash, Input, Output, State, ctx, dcc, html, no_update
 
+from outcouple.design import Design
+from outcouple.errors import UserMistake
+from outcouple.metrics import metrics_of
+from outcouple.quantities import format_quantity
+from outcouple.studies.sweep import Sweep
+from outcouple_dashboard import changes, parts
 from outcouple_dashboard.desk import Desk
+from outcouple_dashboard.documents import with_text
+from outcouple_dashboard.editing import say
+from outcouple_dashboard.entries import join
+from outcouple_dashboard.pages.design import look_of
+from outcouple_dashboard.pictures import WORST, sweep_picture, swept_values
+from outcouple_dashboard.ranges import MAP_POINTS, POINTS, Varying, find_varying, sentence, span_of, varying
+from outcouple_dashboard.tags import aria, local
 
 __all__ = ["layout", "register"]
+
+EVERY = 300
+"""Milliseconds between looks at a running sweep."""
+WORDS = {"pass": "all met", "fail": "missed", "open": "open", "none stated": "–", "": "not run"}
 
 
 def layout() -> Any:
     """All parts, empty."""
-    return html.Div()
+    return html.Div(
+        [
+            html.Section(
+                [
+                    html.H2("What varies", id="vary-title"),
+                    _axis_line("x", "input"),
+                    html.Details([html.Summary("A second input, for a map"), _axis_line("y", "second input")]),
+                    html.Div(
+                        [
+                            dmc.Select(
+                                id="vary-metric",
+                                label="what to show",
+                                data=[],
+                                searchable=True,
+                                size="xs",
+                                w=320,
+                                allowDeselect=False,
+                            ),
+                            html.Div(
+                                [
+                                    dmc.Progress(
+                                        id="vary-share", value=0, w=160, **aria(label="Progress of the sweep")
+                                    ),
+                                    html.Span("", id="vary-step"),
+                                    html.Button("Stop", id="vary-stop", className="quiet", type="button"),
+                                ],
+                                id="vary-bar",
+                                className="progress",
+                                role="status",
+                                hidden=True,
+                            ),
+                            html.P("", id="vary-said", className="said", role="status"),
+                        ],
+                        className="pair",
+                    ),
+                ],
+                className="card wide",
+                **aria(labelledby="vary-title"),
+            ),
+            html.Section(
+                [
+                    html.H2("", id="vary-heading"),
+                    parts.graph("vary-picture", height=430, label="What the sweep found"),
+                    html.Div(
+                        [
+                            html.Span("Click a point to try it.", id="vary-picked-text"),
+                            html.Button(
+                                "Take it over", id="vary-take", className="quiet", type="button", disabled=True
+                            ),
+                        ],
+                        className="picked",
+                        **aria(live="polite"),
+                    ),
+                ],
+                className="card wide",
+                id="vary-result",
+                hidden=True,
+            ),
+            html.Section(
+                [
+                    html.H2("Points", id="vary-points-title"),
+                    dag.AgGrid(
+                        id="vary-points",
+                        columnDefs=[],
+                        rowData=[],
+                        columnSize="responsiveSizeToFit",
+                        dashGridOptions={
+                            "rowSelection": {"mode": "singleRow", "enableClickSelection": True, "checkboxes": False},
+                            "domLayout": "autoHeight",
+                            "pagination": True,
+                            "paginationPageSize": 20,
+                            "paginationPageSizeSelector": False,
+                        },
+                        className="ag-theme-quartz",
+                        style={"height": None},
+                    ),
+                ],
+                className="card wide",
+                id="vary-table",
+                hidden=True,
+            ),
+            dcc.Store(id="vary-job"),
+            dcc.Store(id="vary-seen"),
+            dcc.Store(id="vary-picked"),
+            dcc.Interval(id="vary-clock", interval=EVERY, disabled=True),
+        ],
+        className="cards",
+    )
+
+
+def _axis_line(which: str, label: str) -> Any:
+    def end(name: str, told: str) -> Any:
+        return dmc.TextInput(id=f"vary-{which}-{name}", label=told, value="", debounce=True, size="xs", w=150)
+
+    return html.Div(
+        [
+            dmc.Select(
+                id=f"vary-{which}",
+                label=label,
+                data=[],
+                searchable=True,
+                clearable=which == "y",
+                size="xs",
+                w=320,
+                clearButtonProps=aria(label="no second input"),
+                allowDeselect=False,
+                placeholder="none" if which == "y" else "choose an input",
+            ),
+            end("from", "from, or a list"),
+            end("to", "to"),
+        ],
+        className="pair",
+    )
+
+
+def _choices(design: Design) -> list[dict[str, Any]]:
+    groups: dict[str, list[dict[str, str]]] = {}
+    for one in varying(design):
+        groups.setdefault(one.group, []).append({"value": one.name, "label": f"{one.label} · {one.group}"})
+    return [{"group": group, "items": items} for group, items in groups.items()]
+
+
+def _metrics(design: Design) -> list[dict[str, str]]:
+    known = metrics_of(design.geometry)
+    asked = list(dict.fromkeys(one.metric for one in design.requirements))
+    rest = [name for name, metric in known.items() if metric.cost == "scalar" and name not in asked]
+    first = [{"value": WORST, "label": "least margin over all requirements"}] if asked else []
+    return [*first, *({"value": name, "label": known[name].label} for name in (*asked, *rest))]
+
+
+def setup(desk: Desk, text: str, x: str | None, y: str | None, metric: str | None) -> tuple[Any, ...]:
+    """(inputs to choose, the same, x, y, metrics, metric): what still fits stays chosen."""
+    design = desk.design(text)
+    names = [one.name for one in varying(design)]
+    metrics = _metrics(design)
+    shown = [row["value"] for row in metrics]
+    choices = _choices(design)
+    first = next((one.name for one in varying(design) if one.entry.leaf.deciding and one.numeric), names[0])
+    return (
+        choices,
+        choices,
+        x if x in names else first,
+        y if y in names else None,
+        metrics,
+        metric if metric in shown else shown[0],
+    )
+
+
+def axes_of(design: Design, given: list[tuple[str | None, str, str]]) -> list[str]:
+    """Sentences of the axes that are set."""
+    rows = [(find_varying(design, name), start, stop) for name, start, stop in given if name]
+    points = POINTS if len(rows) == 1 else MAP_POINTS
+    return [sentence(one, start, stop, points) for one, start, stop in rows if one is not None]
+
+
+def present_of(design: Design, found: Sweep) -> list[Any]:
+    """Where the design stands on every axis."""
+    rows = [find_varying(design, one.name) for one in found.axes]
+    return [None if one is None else one.entry.value if one.numeric else one.entry.text for one in rows]
+
+
+def points_of(found: Sweep, metric: str) -> tuple[list[dict[str, Any]], list[dict[str, Any]]]:
+    """(columns, rows) of the table of points."""
+    label, kind, unit, values = swept_values(found, metric)
+    verdicts, worst = found.verdicts, found.worst
+    columns = [{"field": f"axis{at}", "headerName": one.name} for at, one in enumerate(found.axes)]
+    columns += [
+        {"field": "value", "headerName": label},
+        {"field": "margin", "headerName": "least margin"},
+        {"field": "verdict", "headerName": "requirements"},
+    ]
+    texts = [one.texts() for one in found.axes]
+    rows = []
+    for at in np.ndindex(found.shape):
+        row: dict[str, Any] = {f"axis{n}": texts[n][place] for n, place in enumerate(at)}
+        row["value"] = format_quantity(float(values[at]), kind, unit=unit or None)
+        row["margin"] = "–" if np.isnan(worst[at]) else f"{worst[at]:+.0%}"
+        row["verdict"] = WORDS[str(verdicts[at])]
+        row["at"] = [int(place) for place in at]
+        rows.append(row)
+    return columns, rows
+
+
+def picked_at(found: Sweep, at: list[int], metric: str) -> dict[str, Any]:
+    """A point as it is told and taken over."""
+    texts = [one.texts()[place] for one, place in zip(found.axes, at, strict=True)]
+    label, kind, unit, values = swept_values(found, metric)
+    value = format_quantity(float(values[tuple(at)]), kind, unit=unit or None)
+    where = ", ".join(f"{one.name} = {text}" for one, text in zip(found.axes, texts, strict=True))
+    return {
+        "told": f"{where}: {label} {value}, requirements {WORDS[str(found.verdicts[tuple(at)])]}",
+        "values": {one.name: text for one, text in zip(found.axes, texts, strict=True)},
+    }
+
+
+def take_over(desk: Desk, text: str, values: dict[str, str]) -> str:
+    """The text of the design with a point's values in it."""
+    for name, value in values.items():
+        design = desk.design(text)
+        one: Varying | None = find_varying(design, name)
+        if one is None:
+            raise UserMistake(f"{name}: the design has no such input any more")
+        text = changes.put(design, text, join(one.entry.path), value)
+    desk.design(text)
+    return text
 
 
 def register(app: Dash, desk: Desk) -> None:
-    """Nothing yet."""
+    """Pickers, the sweep as a job, its picture, and points taken over."""
+    _register_pickers(app, desk)
+    _register_job(app, desk)
+    _register_result(app, desk)
+
+
+def _register_pickers(app: Dash, desk: Desk) -> None:
+    def on_doc(doc: Any, pathname: str, x: Any, y: Any, metric: Any) -> Any:
+        if not doc or pathname != "/vary":
+            return (no_update,) * 6
+        try:
+            return setup(desk, doc["text"], x, y, metric)
+        except UserMistake:
+            return (no_update,) * 6
+
+    app.callback(
+        Output("vary-x", "data"),
+        Output("vary-y", "data"),
+        Output("vary-x", "value"),
+        Output("vary-y", "value"),
+        Output("vary-metric", "data"),
+        Output("vary-metric", "value"),
+        Input("doc", "data"),
+        Input("url", "pathname"),
+        State("vary-x", "value"),
+        State("vary-y", "value"),
+        State("vary-metric", "value"),
+    )(on_doc)
+
+    def on_pick(name: str | None, doc: Any) -> Any:
+        if not doc:
+            return no_update, no_update
+        one = find_varying(desk.design(doc["text"]), name)
+        return span_of(one) if one is not None else ("", "")
+
+    for which in ("x", "y"):
+        app.callback(
+            Output(f"vary-{which}-from", "value"),
+            Output(f"vary-{which}-to", "value"),
+            Input(f"vary-{which}", "value"),
+            State("doc", "data"),
+            prevent_initial_call=True,
+        )(on_pick)
+
+
+def _register_job(app: Dash, desk: Desk) -> None:
+    def on_setup(
+        doc: Any, pathname: str, x0: str, x1: str, y0: str, y1: str, metric: str | None, x: Any, y: Any, tab: str
+    ) -> Any:
+        if not doc or pathname != "/vary" or not x or not x0 or not metric or (y and not y0):
+            return no_update, no_update, no_update
+        try:
+            design = desk.design(doc["text"])
+            axes = axes_of(design, [(x, x0, x1), (y, y0, y1)])
+        except UserMistake:
+            return no_update, no_update, no_update
+        if not axes:
+            return no_update, no_update, no_update
+        return desk.jobs.start(tab, "vary", text=doc["text"], axes=axes, metric=metric).number, False, ""
+
+    app.callback(
+        Output("vary-job", "data"),
+        Output("vary-clock", "disabled"),
+        Output("vary-said", "children"),
+        Input("doc", "data"),
+        Input("url", "pathname"),
+        Input("vary-x-from", "value"),
+        Input("vary-x-to", "value"),
+        Input("vary-y-from", "value"),
+        Input("vary-y-to", "value"),
+        Input("vary-metric", "value"),
+        State("vary-x", "value"),
+        State("vary-y", "value"),
+        State("tab", "data"),
+        prevent_initial_call=True,
+    )(on_setup)
+
+    def on_tick(_ticks: Any, _stop: Any, number: str | None, tab: str) -> Any:
+        if ctx.triggered_id == "vary-stop":
+            desk.jobs.cancel(number, tab)
+        job = desk.jobs.find(number, tab)
+        if job is None:
+            return no_update, True, 0, "", True, no_update
+        if job.cancelled.is_set():
+            return no_update, True, 0, "", True, "Stopped."
+        if not job.over:
+            return no_update, False, 100 * job.share, job.step or "waiting for a free worker", False, no_update
+        if job.state == "failed":
+            return no_update, True, 0, "", True, " ".join(changes.plain_mistake(UserMistake(*job.why)))
+        return number, True, 100, "", True, ""
+
+    app.callback(
+        Output("vary-seen", "data"),
+        Output("vary-clock", "disabled", allow_duplicate=True),
+        Output("vary-share", "value"),
+        Output("vary-step", "children"),
+        Output("vary-bar", "hidden"),
+        Output("vary-said", "children", allow_duplicate=True),
+        Input("vary-clock", "n_intervals"),
+        Input("vary-stop", "n_clicks"),
+        State("vary-job", "data"),
+        State("tab", "data"),
+        prevent_initial_call=True,
+    )(on_tick)
+
+
+def _register_result(app: Dash, desk: Desk) -> None:
+    def on_seen(number: str | None, theme: str | None, doc: Any, tab: str) -> Any:
+        job = desk.jobs.find(number, tab)
+        if job is None or not job.parts or not doc:
+            return (no_update,) * 6
+        found: Sweep = job.parts[-1]
+        metric = job.arguments["metric"]
+        figure = sweep_picture(found, metric, present_of(desk.design(doc["text"]), found), look_of(theme))
+        columns, rows = points_of(found, metric)
+        names = " and ".join(one.name for one in found.axes)
+        heading = f"{swept_values(found, metric)[0].capitalize()} against {names}"
+        return figure, heading, columns, rows, False, False
+
+    app.callback(
+        Output("vary-picture", "figure"),
+        Output("vary-heading", "children"),
+        Output("vary-points", "columnDefs"),
+        Output("vary-points", "rowData"),
+        Output("vary-result", "hidden"),
+        Output("vary-table", "hidden"),
+        Input("vary-seen", "data"),
+        Input("theme", "data"),
+        State("doc", "data"),
+        State("tab", "data"),
+        prevent_initial_call=True,
+    )(on_seen)
+
+    def on_point(click: Any, rows: Any, number: str | None, tab: str) -> Any:
+        job = desk.jobs.find(number, tab)
+        if job is None or not job.parts:
+            return no_update, no_update, no_update
+        found: Sweep = job.parts[-1]
+        at = rows[0]["at"] if ctx.triggered_id == "vary-points" and rows else clicked_at(found, click)
+        if at is None:
+            return no_update, no_update, no_update
+        point = picked_at(found, at, job.arguments["metric"])
+        return point["values"], point["told"], False
+
+    app.callback(
+        Output("vary-picked", "data"),
+        Output("vary-picked-text", "children"),
+        Output("vary-take", "disabled"),
+        Input("vary-picture", "clickData"),
+        Input("vary-points", "selectedRows"),
+        State("vary-seen", "data"),
+        State("tab", "data"),
+        prevent_initial_call=True,
+    )(on_point)
+
+    def on_take(clicks: Any, values: Any, doc: Any) -> Any:
+        if not clicks or not values or not doc:
+            return no_update
+        try:
+            return with_text(doc, take_over(desk, doc["text"], values), origin="vary")
+        except UserMistake as mistake:
+            say(" ".join(changes.plain_mistake(mistake)))
+            return no_update
+
+    app.callback(
+        Output("doc", "data", allow_duplicate=True),
+        Input("vary-take", "n_clicks"),
+        State("vary-picked", "data"),
+        State("doc", "data"),
+        prevent_initial_call=True,
+    )(on_take)
+    local(app, "redraw", Output("vary-result", "title"), Input("vary-result", "hidden"), prevent_initial_call=True)
+
+
+def clicked_at(found: Sweep, click: Any) -> list[int] | None:
+    """Indices of the point that was clicked in the picture."""
+    point = (click or {}).get("points", [{}])[0]
+    if len(found.axes) == 1:
+        index = point.get("pointNumber") if point.get("curveNumber") == 0 else None
+        return None if index is None else [int(index)]
+    index = point.get("pointNumber")
+    return [int(index[1]), int(index[0])] if isinstance(index, list) and len(index) == 2 else None
