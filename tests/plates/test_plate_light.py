@@ -29,7 +29,8 @@ CROSSING = {
     5e-3: ((0.142, 0.042), (0.231, 0.069), (0.283, 0.085)),
     10e-3: ((0.071, 0.021), (0.116, 0.035), (0.141, 0.042)),
 }
-"""Thickness -> (loss at full contact, at 30 %) under 8 mm of media 1.33, 1.43, 1.50; an earlier trace of two million rays."""
+"""Thickness -> (loss at full contact, at 30 %) under 8 mm of media 1.33, 1.43, 1.50; an earlier trace, two million
+rays."""
 
 
 def port(index, *, bonded=False, half_angle=np.pi / 2, thickness=3e-3, height=1e-3, gap=0.0):
@@ -69,7 +70,8 @@ def entered(index, least, points=1500):
 
 @pytest.mark.parametrize("index", LEAKABLE)
 def test_leakable_share_is_that_of_an_own_sum_and_of_the_earlier_table(index):
-    """The table prints two digits; water in crown glass is 0.155 and was cut to 0.15, silicone in acrylic 0.386 to 0.38."""
+    """The table prints two digits; water in crown glass is 0.155 and was cut to 0.15, silicone in acrylic 0.386, cut
+    to 0.38."""
     laid = fan(port(index), *MEDIA)
     whole = entered(index, np.inf)
     for medium, printed in zip(MEDIA, LEAKABLE[index], strict=True):

@@ -7,7 +7,7 @@ from numpy.typing import NDArray
 
 from outcouple.geometry import Outline, RayPath, Setting, View
 from outcouple_plugins.edge_perimeter.chords import Chords, chords_of
-from outcouple_plugins.edge_perimeter.light import FACES
+from outcouple_plugins.edge_perimeter.light import FACES, SPOT
 from outcouple_plugins.plate.parameters import edges_of
 from outcouple_plugins.plate.ways import NORMALS, places_of
 
@@ -15,38 +15,80 @@ __all__ = ["plan", "section"]
 
 Floats = NDArray[np.float64]
 
-MOST_CHORDS = 400
-"""Chords drawn; more would only fill the plate."""
 RAYS = (0.15, 0.45, 0.75)
 """Drawn elevations as shares of the highest."""
 
 
 def plan(setting: Setting) -> View:
-    """The plate from above with its emitters, detectors and the chords that carry light."""
+    """The plate from above: emitters, detectors, the fans of the middle emitters, the chords under the objects."""
     p = setting.p
     chords = chords_of(setting)
     width, height = float(chords.width[0]), float(chords.height[0])
     depth = 0.012 * max(width, height)
     margin = min(float(setting.spread(p.field.margin)[0]), 0.49 * min(width, height))
+    discs = _objects(setting)
     outlines = [Outline("guide", "plate", _box(0, 0, width, height))]
     outlines += _parts("emitter", edges_of(p.emitters.edges), chords, depth, emitters=True)
     outlines += _parts("detector", edges_of(p.detectors.edges), chords, depth, emitters=False)
     field = _box(0, 0, width - 2 * margin, height - 2 * margin)
     outlines.append(Outline("axis", "field that must see objects", field))
-    return View("plan", tuple(outlines), _chord_lines(chords))
+    outlines += [Outline("object", name, _circle(*disc)) for name, disc in discs.items()]
+    return View("plan", tuple(outlines), _chord_lines(chords, list(discs.values())))
 
 
-def _chord_lines(chords: Chords) -> tuple[RayPath, ...]:
-    ways = chords.ways
+def _objects(setting: Setting) -> dict[str, tuple[float, float, float]]:
+    """Diameter, x and y of the objects of all states; of several at one place the largest."""
+    found: dict[tuple[float, float], tuple[str, float]] = {}
+    for name, state in setting.p.states.items():
+        if state.object is None:
+            continue
+        values = (state.object.diameter, state.object.x, state.object.y)
+        size, x, y = (0.0 if value is None else float(np.atleast_1d(value)[0]) for value in values)
+        if (x, y) not in found or size > found[x, y][1]:
+            found[x, y] = (name, size)
+    return {name: (size, x, y) for (x, y), (name, size) in found.items()}
+
+
+def _chord_lines(chords: Chords, discs: list[tuple[float, float, float]]) -> tuple[RayPath, ...]:
+    """Chords of the middle emitters and under objects; where one passes under an object it has a vertex there."""
+    ways, pairs = chords.ways, chords.pairs
     limit = min(chords.emitter.highest[0], chords.detector.highest[0])
-    seen = np.flatnonzero(ways.possible[0, :, 0] & (ways.out[0, :, 0] < limit) & (ways.into[0, :, 0] < limit))
-    step = max(1, -(-len(seen) // MOST_CHORDS))
+    seen = ways.possible[0, :, 0] & (ways.out[0, :, 0] < limit) & (ways.into[0, :, 0] < limit)
+    per_edge = pairs.emitters // len(set(pairs.emitter_edge))
+    incidence = np.pi / 2 - float(_middle_elevation(chords))
     lines = []
-    for at in seen[::step]:
+    for at in np.flatnonzero(seen):
         start = np.array([ways.x[0, at, 0], ways.y[0, at, 0]])
-        end = start + ways.length[0, at, 0] * np.array([ways.dx[0, at, 0], ways.dy[0, at, 0]])
-        lines.append(RayPath(np.stack([start, end]), (-1, -1), (0.0, 0.0)))
+        step = np.array([ways.dx[0, at, 0], ways.dy[0, at, 0]])
+        stops = _under(start, step, discs)
+        if not stops and pairs.emitter[at] % per_edge != per_edge // 2:
+            continue
+        gone = [0.0, *stops, float(ways.length[0, at, 0])]
+        points = np.array([start + length * step for length in gone])
+        inner = len(stops)
+        lines.append(RayPath(points, (-1, *[SPOT] * inner, -1), (0.0, *[incidence] * inner, 0.0)))
     return tuple(lines)
+
+
+def _under(start: Floats, step: Floats, discs: list[tuple[float, float, float]]) -> list[float]:
+    """How far along a chord the middles of the objects lie that it passes under, in order."""
+    found = []
+    for size, x, y in discs:
+        away = np.array([x, y]) - start
+        if abs(away[0] * step[1] - away[1] * step[0]) < size / 2:
+            found.append(float(away @ step))
+    return sorted(found)
+
+
+def _middle_elevation(chords: Chords) -> float:
+    """Elevation below which half of the light travels."""
+    power = np.cumsum((chords.fan.s + chords.fan.p)[0][np.argsort(chords.fan.elevation[0])])
+    return float(np.sort(chords.fan.elevation[0])[np.searchsorted(power, power[-1] / 2)])
+
+
+def _circle(size: float, x: float, y: float) -> Floats:
+    turn = np.linspace(0, 2 * np.pi, 48, endpoint=False)
+    return np.stack([x + size / 2 * np.cos(turn), y + size / 2 * np.sin(turn)], axis=1)
 
 
 def _parts(role: str, edges: tuple[str, ...], chords: Chords, depth: float, *, emitters: bool) -> list[Outline]:

@@ -108,7 +108,7 @@ class EdgePerimeter(Geometry):
         grid = np.linspace(0.0, widest, POINTS)
         return Curve(
             name="response",
-            label=f"loss of a chord under the middle, contact as in {first.name!r}",
+            label=f"loss of a chord under {first.name!r} against its diameter",
             axes=(("diameter of the object", "mm", grid),),
             values=crossing_loss(results, first, grid[None, :])[0],
             kind="ratio",

@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+import math
 from typing import Any
 
 import numpy as np
+from numpy.typing import NDArray
 
 from outcouple.geometry import Surface
 from outcouple.outcome import Outcome
@@ -31,6 +33,11 @@ def _titled(label: str, unit: str) -> str:
     return f"{label} ({symbol(unit)})" if unit else label
 
 
+def _ordinate(surface: Surface) -> str:
+    """What a curve shows: its label up to "against"."""
+    return surface.label.partition(" against ")[0]
+
+
 def _axis_values(surface: Surface, at: int) -> tuple[str, list[float]]:
     label, unit, values = surface.axes[at]
     kind = _kind_of_unit(unit)
@@ -47,7 +54,7 @@ def _curve(surface: Surface, look: Look, level: float | None) -> dict[str, Any]:
     known = surface.unit in ("A", "e-")
     unit, y = best_unit(surface.values.tolist(), surface.kind, "" if known else surface.unit)
     layout = base_layout(look)
-    layout.update(xaxis=axis(look, title), yaxis=axis(look, _titled("reading", unit), rangemode="tozero"))
+    layout.update(xaxis=axis(look, title), yaxis=axis(look, _titled(_ordinate(surface), unit), rangemode="tozero"))
     data: list[dict[str, Any]] = [
         {
             "type": "scatter",
@@ -141,7 +148,7 @@ def _map(surface: Surface, look: Look) -> dict[str, Any]:
             "type": "heatmap",
             "x": x,
             "y": y,
-            "z": np.where(np.isfinite(values), values, np.nan),
+            "z": _rows(values),
             "colorscale": ramp(look),
             "colorbar": {"title": {"text": unit}, "thickness": 14, "outlinewidth": 0},
             "hovertemplate": "%{x:.4g}, %{y:.4g}: %{z:.4g}<extra></extra>",
@@ -154,7 +161,7 @@ def _map(surface: Surface, look: Look) -> dict[str, Any]:
                 "type": "contour",
                 "x": x,
                 "y": y,
-                "z": values,
+                "z": _rows(values),
                 "contours": {"start": limit, "end": limit, "size": 1, "coloring": "none"},
                 "line": {"color": look.states[1], "width": 2},
                 "showscale": False,
@@ -176,6 +183,11 @@ def _map(surface: Surface, look: Look) -> dict[str, Any]:
             }
         )
     return {"data": data, "layout": layout}
+
+
+def _rows(values: NDArray[np.float64]) -> list[list[float | None]]:
+    """Plain rows, empty where there is no number."""
+    return [[value if math.isfinite(value) else None for value in row] for row in values.tolist()]
 
 
 def _same_kind(surface: Surface) -> bool:
