@@ -101,3 +101,19 @@ def test_an_electronics_of_its_own_temperature_keeps_a_cold_tip_readable():
     assert "electronics-temperature" in codes[0]
     assert "electronics-temperature" not in codes[1]
     assert min(state.signal for state in alone.states) > 0
+
+
+def test_a_warm_emitter_shifts_its_line():
+    """0.25 nm/K over 40 K moves the peak by 10 nm, and with it the light that a narrow filter passes."""
+    drift = {"peak_drift": "0.25 nm/K", "linewidth": "5 nm"}
+    narrow = {"filter_centre": "940 nm", "filter_width": "10 nm", "filter_transmission": "100 %"}
+    signals = [
+        evaluate(
+            tank(emitter=drift, readout=narrow, environment={"temperature": temperature}), advice=False, views=False
+        )
+        .states[0]
+        .signal
+        for temperature in ("25 degC", "65 degC")
+    ]
+    # a Gaussian 5 nm wide at half maximum: 98.15 % within 5 nm of its peak, 0.93 % from 5 to 15 nm, and 0.1 % blocked
+    assert signals[1] / signals[0] == pytest.approx(0.01027 / 0.98147, rel=0.1)

@@ -55,8 +55,8 @@ def test_common_drift_is_the_same_on_every_channel(host):
     """20 K at -0.5 %/K: exp(-0.1) - 1 = -9.5 %, which reads as a touch of 9.5 % on all chords at once."""
     table = tabulate(plate(host, (CLEAR, HOT, TOUCH), emitter={"power_drift": "-0.5 %/K"}))
     change = table.row("hot").score.mean[0]
-    assert np.ptp(change) < 1e-5
-    # the rest is the detector's own temperature over the width of the line
+    # the rest is the detector's and the plate's own temperature over the width of the line
+    assert np.ptp(change) < 1e-4
     assert change.mean() == pytest.approx(1 - np.exp(-0.1), rel=3e-3)
 
 

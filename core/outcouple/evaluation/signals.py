@@ -18,6 +18,7 @@ from outcouple.geometry import Setting
 from outcouple.light import Light, Strips
 from outcouple.notes import Note, merge_notes
 from outcouple.optics import spectrum_nodes
+from outcouple.readout.emitted import peak
 
 __all__ = ["LaidState", "Way", "lay_state", "setting_of", "trial_share"]
 
@@ -74,8 +75,8 @@ class LaidState:
 
 
 def spectrum_of(p: View, nodes: int) -> tuple[Floats, Floats]:
-    """Wavelengths (S, L) and weights (L,) of the emitter's line at its own wavelength and width."""
-    wavelengths, weights = spectrum_nodes(p.emitter.wavelength, p.emitter.linewidth, nodes)
+    """Wavelengths (S, L) and weights (L,) of the emitter's line at its own peak, warm or cold, and its width."""
+    wavelengths, weights = spectrum_nodes(peak(p), p.emitter.linewidth, nodes)
     return np.asarray(wavelengths), np.asarray(weights)
 
 

@@ -12,7 +12,7 @@ from outcouple.notes import Note
 from outcouple.readout.ambient import band_centres
 from outcouple.readout.camera import Camera
 from outcouple.readout.constants import LIGHT_SPEED, PLANCK
-from outcouple.readout.emitted import electronics_notes, electronics_temperature, emitted_power, passed
+from outcouple.readout.emitted import electronics_notes, electronics_temperature, emitted_power, passed, peak
 from outcouple.readout.outside import outside_light, outside_notes
 from outcouple.readout.photodiode import quantum_ceiling, responsivity
 from outcouple.readout.reading import Lit, Reading
@@ -96,28 +96,28 @@ def _shape() -> Floats:
     return np.asarray(responsivity(band_centres(), SHAPE) / quantum_ceiling(band_centres()))
 
 
-def _relative(wavelength: Floats, peak: Floats) -> Floats:
+def _relative(wavelength: Floats, top: Floats) -> Floats:
     """Quantum efficiency at a wavelength over that at the emitter's peak."""
-    at, top = (responsivity(one, SHAPE) / quantum_ceiling(one) for one in (wavelength, peak))
-    return np.asarray(at / np.maximum(top, 1e-12))
+    here, most = (responsivity(one, SHAPE) / quantum_ceiling(one) for one in (wavelength, top))
+    return np.asarray(here / np.maximum(most, 1e-12))
 
 
 def _electrons_per_joule(p: Any, wavelengths: Floats) -> Floats:
     """Photoelectrons per joule at the pixel, (S, L)."""
     photons = wavelengths / (PLANCK * LIGHT_SPEED)
-    efficiency = p.readout.quantum_efficiency[:, None] * _relative(wavelengths, p.emitter.wavelength[:, None])
+    efficiency = p.readout.quantum_efficiency[:, None] * _relative(wavelengths, peak(p)[:, None])
     return np.asarray(photons * np.minimum(efficiency, 1.0))
 
 
 def _ambient(lit: Lit, signal: Floats) -> Floats:
     """Electrons of outside light in one exposure, (S, C)."""
     p = lit.p
-    peak = p.emitter.wavelength
-    top = responsivity(peak, SHAPE) / quantum_ceiling(peak)
+    at = peak(p)
+    top = responsivity(at, SHAPE) / quantum_ceiling(at)
     scale = p.readout.quantum_efficiency / np.maximum(top, 1e-12)
     # per watt of outside light: photons times the shape; the size of the efficiency is put on afterwards
     shape = _shape() * band_centres() / (PLANCK * LIGHT_SPEED)
-    rate = outside_light(lit, shape, peak * top / (PLANCK * LIGHT_SPEED))
+    rate = outside_light(lit, shape, at * top / (PLANCK * LIGHT_SPEED))
     return np.asarray(signal * 0 + rate * (scale * p.readout.exposure)[:, None])
 
 

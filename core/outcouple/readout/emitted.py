@@ -9,9 +9,17 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.notes import Note
-from outcouple.readout.drift import current_factor, fouling_factor, power_factor
+from outcouple.readout.drift import current_factor, fouling_factor, peak_wavelength, power_factor
 
-__all__ = ["ELECTRONICS", "common_factor", "electronics_notes", "electronics_temperature", "emitted_power", "passed"]
+__all__ = [
+    "ELECTRONICS",
+    "common_factor",
+    "electronics_notes",
+    "electronics_temperature",
+    "emitted_power",
+    "passed",
+    "peak",
+]
 
 Floats = NDArray[np.float64]
 
@@ -49,6 +57,13 @@ def electronics_notes(p: Any) -> tuple[Note, ...]:
     return (note,) if note.holds() else ()
 
 
+def peak(p: Any) -> Floats:
+    """Peak wavelength of the emitter at its own temperature [m], (S,)."""
+    return peak_wavelength(
+        p.emitter.wavelength, temperature=electronics_temperature(p), coefficient=p.emitter.peak_drift
+    )
+
+
 def common_factor(p: Any) -> Floats:
     """What temperature, drive and age leave of the emitter's stated power, (S,): the part that a reference sees too."""
     emitter = p.emitter
@@ -69,7 +84,7 @@ def passed(p: Any) -> Floats:
         return np.ones(1)
     deviation = emitter.linewidth * WIDTH_TO_DEVIATION
     low, high = (
-        (readout.filter_centre + side * readout.filter_width / 2 - emitter.wavelength) / (deviation * math.sqrt(2))
+        (readout.filter_centre + side * readout.filter_width / 2 - peak(p)) / (deviation * math.sqrt(2))
         for side in (-1, 1)
     )
     inside = (np.asarray(_erf(high), dtype=float) - np.asarray(_erf(low), dtype=float)) / 2

@@ -16,6 +16,7 @@ from outcouple.readout.emitted import (
     electronics_temperature,
     emitted_power,
     passed,
+    peak,
 )
 from outcouple.readout.modulation import RIPPLE_DEPTH, Modulation
 from outcouple.readout.noise import NoiseBudget
@@ -101,7 +102,7 @@ def _ambient(lit: Lit, signal: Floats) -> Floats:
     if p.readout.ambient_current is not None:
         return np.asarray(signal * 0 + p.readout.ambient_current[:, None])
     temperature = electronics_temperature(p)
-    at_peak = responsivity(p.emitter.wavelength, _curve(p), temperature=temperature)
+    at_peak = responsivity(peak(p), _curve(p), temperature=temperature)
     scale = np.ones(1)
     if p.readout.responsivity is not None:
         scale = p.readout.responsivity / np.maximum(at_peak, 1e-12)
@@ -145,7 +146,7 @@ def _notes(lit: Lit, stage: Transimpedance, modulation: Modulation) -> tuple[Not
     p = lit.p
     notes = [*electronics_notes(p), *stage_notes(stage), *timing_notes(lit, stage, signal_gain(stage, modulation))]
     if p.readout.responsivity is None:
-        notes += responsivity_notes(p.emitter.wavelength, _curve(p), temperature=electronics_temperature(p))
+        notes += responsivity_notes(peak(p), _curve(p), temperature=electronics_temperature(p))
     if p.readout.ambient_current is None:
         notes += outside_notes(lit)
     if p.readout.detector == "phototransistor":

@@ -8,7 +8,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from outcouple.readout.emitted import electronics_temperature
+from outcouple.readout.emitted import electronics_temperature, peak
 from outcouple.readout.noise import NoiseBudget, shot_variance, thermal_variance
 from outcouple.readout.photodiode import responsivity
 from outcouple.readout.reading import Reading
@@ -41,7 +41,7 @@ def against_reference(p: Any, reading: Reading, common: Floats) -> Reading:
 def _relative_variance(p: Any, bandwidth: Floats, common: Floats) -> Floats:
     """Variance of the reference over its square, (S,): shot and thermal noise of its own stage; 0 without light."""
     temperature = electronics_temperature(p)
-    per_watt = responsivity(p.emitter.wavelength, temperature=temperature)
+    per_watt = responsivity(peak(p), temperature=temperature)
     full = p.emitter.power * p.readout.reference_share * per_watt
     current = full * common
     safe = np.where(current > 0, current, 1.0)
