@@ -11,7 +11,7 @@ import pytest
 
 from outcouple import hookimpl
 from outcouple.design import design_from_mapping
-from outcouple.evaluation import evaluate_batch
+from outcouple.evaluation import evaluate, evaluate_batch
 from outcouple.evaluation.table import tabulate
 from outcouple.hooks import build_host
 
@@ -110,3 +110,9 @@ def test_a_level_set_by_noise_keeps_the_alarms_asked_for(host):
     design = plate(host, decision={"level": "noise", "false_alarms": 12, "confirm": 2, "window": 3})
     found = evaluate_batch(design, {}, ["false_alarms_per_year"]).metrics["false_alarms_per_year"]
     assert found.values[0] == pytest.approx(12, rel=1e-6)
+
+
+def test_a_touch_surface_has_no_demand_to_miss(host):
+    found = evaluate(plate(host), advice=False, views=False)
+    assert found.failures == ()
+    assert "demand-open" not in [note.code for note in found.notes]

@@ -20,7 +20,7 @@ from outcouple.evaluation.faults import band_coverage, declared_diagnostics, fau
 from outcouple.evaluation.table import Table
 from outcouple.outcome import FailureDirection
 
-__all__ = ["consequence", "dangerous_uncovered", "failure_table"]
+__all__ = ["consequence", "dangerous_uncovered", "failure_table", "has_function"]
 
 SURE: Final = 0.99
 """Chance of telling a fault from which on a fault band counts as covering it."""
@@ -45,8 +45,19 @@ def consequence(design: Design, table: Table, reads: str) -> str:
     return " (a spurious trip)" if reads == DEMANDS[demand] else f" (dangerous: {HARM[demand]})"
 
 
+def has_function(table: Table) -> bool:
+    """Whether the sensor decides about a level or a leak, so that its failures have a direction.
+
+    A surface that is touched in places has none unless a demand is stated.
+    """
+    geometry = table.design.geometry
+    if table.decided is None or geometry.reading != "level":
+        return False
+    return bool(table.view.decision.demand) or not geometry.spot_face
+
+
 def failure_table(design: Design, table: Table) -> tuple[FailureDirection, ...]:
-    """Cause, effect and direction, made for this design; empty where nothing is decided or only touches are sought."""
+    """Cause, effect and direction, made for this design; empty where nothing is decided."""
     words = dict(zip(("absent", "present"), design.geometry.words, strict=True)) | {"unchanged": "unchanged"}
     return tuple(
         FailureDirection(
@@ -68,7 +79,7 @@ def dangerous_uncovered(table: Table) -> tuple[FailureEffect, ...]:
 
 
 def _effects(table: Table) -> tuple[FailureEffect, ...]:
-    if table.decided is None or table.design.geometry.reading != "level":
+    if table.decided is None:
         return ()
     have = declared_diagnostics(table)
     found: list[FailureEffect] = []
@@ -85,10 +96,12 @@ def _effects(table: Table) -> tuple[FailureEffect, ...]:
 
 
 def _rows(table: Table) -> Sequence[FailureLike]:
-    """The geometry's own rows first; what every sensor has follows, a cause that is told already is not told twice."""
+    """The geometry's own rows first; what every level or leak sensor has follows, no cause told twice."""
     own: list[FailureLike] = list(table.design.geometry.failures(table.setting))
+    if not has_function(table):
+        return own
     told = {row.cause for row in own}
-    wetted: tuple[FailureLike, ...] = WETTED_FAILURES if table.design.geometry.wetted else ()
+    wetted: tuple[FailureLike, ...] = () if table.design.geometry.spot_face else WETTED_FAILURES
     return (*own, *(row for row in (*COMMON_FAILURES, *wetted) if row.cause not in told))
 
 

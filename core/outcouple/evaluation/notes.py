@@ -18,7 +18,7 @@ from outcouple.decision.cautions import (
 from outcouple.decision.service_media import cracking_notes, envelope_notes, service_of
 from outcouple.design import Design
 from outcouple.evaluation.decision_measures import DECISION_MEASURES
-from outcouple.evaluation.failures import dangerous_uncovered
+from outcouple.evaluation.failures import dangerous_uncovered, has_function
 from outcouple.evaluation.faults import DEAD, faults_of, told_as_fault
 from outcouple.evaluation.table import Table
 from outcouple.geometry import MetricValue
@@ -97,7 +97,8 @@ def _purpose(design: Design, table: Table) -> Iterator[Note]:
         yield touch_note()
     if any(name.startswith(SKIN) for name in media_of(table)):
         yield skin_note()
-    if table.decided is None or design.geometry.reading != "level":
+    yield from _ageing(table)
+    if not has_function(table):
         return
     dead = list(_dead_emitter(design, table))
     yield from demand_notes(
@@ -107,9 +108,14 @@ def _purpose(design: Design, table: Table) -> Iterator[Note]:
         watched=not dead,
     )
     yield from dead
+
+
+def _ageing(table: Table) -> Iterator[Note]:
+    """Said where states that are told rightly when new are not at the end of the emitter's life."""
     aged = DECISION_MEASURES["margin_at_end_of_life"](table)
-    if isinstance(aged, MetricValue) and float(aged.values[0]) < 0 <= float(table.decided.sigma[aged.at][0]):
-        yield from ageing_note(margin_at_end=aged.values)
+    if isinstance(aged, MetricValue) and table.decided is not None:
+        new = np.min(np.stack(list(table.decided.sigma.values())), axis=0)
+        yield from ageing_note(margin_at_end=np.where(new >= 0, aged.values, np.inf))
 
 
 def _dead_emitter(design: Design, table: Table) -> Iterator[Note]:

@@ -45,13 +45,13 @@ def read_camera(lit: Lit, share: Floats) -> Reading:
     mean = _read(load, np.asarray(ambient + dark), capacity, difference=difference)
     unlit = _read(0 * signal + ambient + dark, np.asarray(ambient + dark), capacity, difference=difference)
     budget = camera.budget(
-        signal=signal / efficiency,
-        ambient=ambient / efficiency,
+        signal=np.minimum(signal, capacity) / efficiency,
+        ambient=np.minimum(ambient, capacity) / efficiency,
         dark_electrons=dark,
         difference=difference,
         pixels=float(readout.pixels),
     )
-    budget = budget.plus("emitter intensity", (signal * readout.intensity_noise[:, None]) ** 2)
+    budget = budget.plus("emitter intensity", (np.minimum(signal, capacity) * readout.intensity_noise[:, None]) ** 2)
     return Reading(
         mean=mean,
         unlit=unlit,

@@ -36,6 +36,11 @@ def _shines(p: Any) -> bool:
     return environment.ambient != "none" and bool(np.any(environment.illuminance > 0))
 
 
+def _measurable(p: Any) -> bool:
+    """Whether this kind of read-out takes a measured photocurrent of outside light."""
+    return hasattr(p.readout, "ambient_current")
+
+
 def _per_area(p: Any, sensitivity: Floats, at_peak: Floats) -> Floats:
     environment, readout = p.environment, p.readout
     band = {"centre": readout.filter_centre, "width": readout.filter_width}
@@ -68,11 +73,7 @@ def outside_notes(lit: Lit) -> tuple[Note, ...]:
         return ()
     notes = list(ambient_notes(environment.ambient))
     if not np.any(lit.etendue > 0):
-        notes.append(
-            Note(
-                "ambient-unseen",
-                "This geometry states no view of the outside, so outside light counts as none; give the measured "
-                "photocurrent (readout.ambient_current) where it has one.",
-            )
-        )
+        remedy = "; give the measured photocurrent (readout.ambient_current)" if _measurable(lit.p) else ""
+        text = f"This geometry states no view of the outside, so outside light counts as none{remedy}."
+        notes.append(Note("ambient-unseen", text))
     return tuple(notes)
