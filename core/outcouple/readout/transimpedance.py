@@ -144,7 +144,7 @@ class Transimpedance:
         slow, fast = self.poles()
         decay = np.real(slow)
         ring = np.abs(slow.imag) > 1e-9 * decay
-        with np.errstate(divide="ignore"):
+        with np.errstate(divide="ignore", over="ignore"):
             sine = np.where(ring, np.abs(slow.imag) / np.abs(slow), 1.0)
             spread = np.where(ring, 1 / sine, np.real(fast) / np.maximum(np.real(fast) - decay, 1e-300))
         goal = np.asarray(error, dtype=float)

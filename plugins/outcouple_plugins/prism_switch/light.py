@@ -80,7 +80,9 @@ def _start(directions: Directions, n_guide: Floats, bonded: bool, polarization: 
         face = interface(1.0, n_guide[:, None], np.arccos(directions.base))
         Ts, Tp = 1 - face.Rs, 1 - face.Rp
     mean = (Ts + Tp) / 2
-    q = {"none": (Ts - Tp) / (Ts + Tp), "s": np.ones_like(mean), "p": -np.ones_like(mean)}[polarization]
+    # at grazing incidence nothing enters, and its polarisation is of no account
+    sorted_by_base = np.divide(Ts - Tp, Ts + Tp, out=np.zeros_like(mean), where=mean > 0)
+    q = {"none": sorted_by_base, "s": np.ones_like(mean), "p": -np.ones_like(mean)}[polarization]
     return _Start(direction, s_vector, q, directions.weight * mean, directions.weight * (1 - mean))
 
 

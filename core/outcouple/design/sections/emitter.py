@@ -42,7 +42,7 @@ class Emitter(Section):
     half_angle: float = quantity(
         "15 deg",
         "angle",
-        gt="0 deg",
+        ge="0.01 deg",
         le="90 deg",
         describe="angle from the axis at which the lobe is cut, in the medium it emits into",
         deciding=True,
