@@ -104,6 +104,15 @@ def test_lamps_ripple_and_steady_daylight_does_not():
     assert not np.any(steady.variances["ripple"])
 
 
+@pytest.mark.parametrize(("kind", "period"), [("difference", 2e-3), ("synchronous", 1e-4)])
+def test_light_that_changes_within_a_reading_stays_in_it(kind, period):
+    """20 %/s of 2 uA; on minus off of a ramp is its slope times half a period (2 ms, or 0.1 ms at 10 kHz)."""
+    found = reading(
+        readout={"modulation": kind, "ambient_current": "2 uA"}, environment={"ambient_change": "20 %/s", **COOL}
+    )
+    assert np.sqrt(found.variances["ambient change"][0, 0]) == pytest.approx(0.2 * 2e-6 * period / 2)
+
+
 def test_the_stage_ends_at_its_full_scale():
     """3 V over 100 kohm: 30 uA."""
     found = reading(share=0.01)

@@ -139,6 +139,10 @@ def _budget(
     )
     # a phototransistor multiplies what its junction's shot noise already holds
     parts = {cause: part * _gain(p) if cause in SHOT else part for cause, part in budget.variances.items()}
+    if not modulation.ambient_share():
+        # worst slope of either sign counts like a standard deviation
+        left = ambient * p.environment.ambient_change[:, None] * modulation.ramp_leak()
+        parts["ambient change"] = left**2
     return NoiseBudget(parts).plus("emitter intensity", (signal * readout.intensity_noise[:, None]) ** 2)
 
 

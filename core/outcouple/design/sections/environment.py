@@ -34,6 +34,14 @@ class Environment(Section):
         optional=True,
         describe="of that light within the band the read-out sees, filter included; wins over the illuminance",
     )
+    ambient_change: float = quantity(
+        "0 %/s",
+        "ratio/s",
+        ge="0 %/s",
+        le="10000 %/s",
+        unit="%/s",
+        describe="change of that light in a second; a modulated reading keeps what changes within it",
+    )
     explosive: str = choice(
         "no", ["no", "yes"], describe="an explosive atmosphere may be present (fuel, solvent, oxygen, dust)"
     )
