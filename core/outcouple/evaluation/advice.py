@@ -19,7 +19,7 @@ from outcouple.metrics import metrics_of
 from outcouple.outcome import Advice, Judged
 from outcouple.quantities import format_quantity
 
-__all__ = ["advise", "numeric_inputs", "worst_margin"]
+__all__ = ["advise", "changeable", "numeric_inputs", "worst_margin"]
 
 Floats = NDArray[np.float64]
 
@@ -78,16 +78,26 @@ def worst_margin(
     return stack[pick, np.arange(stack.shape[1])], [names[int(at)] for at in pick]
 
 
+def changeable(design: Design) -> list[tuple[Leaf, float]]:
+    """The numeric inputs a designer may choose: no conditions, no requirements, nothing idle."""
+    return [
+        (leaf, value)
+        for leaf, value in numeric_inputs(design)
+        if leaf.path[0] not in LEFT_ALONE
+        and leaf.group != CONDITIONS
+        and leaf.path != design.geometry.measurand
+        and not _idle(design, leaf)
+    ]
+
+
 def _steps(design: Design) -> list[tuple[Leaf, float, float]]:
     """(leaf, value, stepped value), up and down, inside the leaf's bounds; only what a designer may choose."""
-    found = []
-    for leaf, value in numeric_inputs(design):
-        if leaf.path[0] in LEFT_ALONE or leaf.group == CONDITIONS or leaf.path == design.geometry.measurand:
-            continue
-        if _idle(design, leaf):
-            continue
-        found += [(leaf, value, stepped) for stepped in _stepped(leaf, value) if stepped != value]
-    return found
+    return [
+        (leaf, value, stepped)
+        for leaf, value in changeable(design)
+        for stepped in _stepped(leaf, value)
+        if stepped != value
+    ]
 
 
 def _idle(design: Design, leaf: Leaf) -> bool:

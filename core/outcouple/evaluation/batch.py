@@ -41,17 +41,21 @@ class Batch:
     notes: tuple[Note, ...]
 
 
-def evaluate_batch(design: Design, samples: Samples, want: Sequence[str] | None = None) -> Batch:
+def evaluate_batch(
+    design: Design, samples: Samples, want: Sequence[str] | None = None, *, elements: int | None = None
+) -> Batch:
     """Evaluate a design with arrays (S,) laid over numeric inputs, in chunks of bounded memory.
 
-    want  names of metrics; None for all scalar ones
+    want      names of metrics; None for all scalar ones
+    elements  array elements of one sample (see :func:`sample_elements`), where the caller knows them
     Raises UserMistake where a sample leaves its input's bounds.
     """
     check_samples(design, samples)
     names = wanted(design, want)
     count = samples_count(samples)
-    first = tabulate(design, {path: values[:1] for path, values in samples.items()})
-    size = max(1, min(count, ELEMENTS // sample_elements(first)))
+    if elements is None and count > 1:
+        elements = sample_elements(tabulate(design, {path: values[:1] for path, values in samples.items()}))
+    size = max(1, min(count, ELEMENTS // (elements or ELEMENTS)))
     parts = []
     for start in range(0, count, size):
         part = {path: values[start : start + size] for path, values in samples.items()}

@@ -70,7 +70,7 @@ def _met(found: Sweep) -> str:
     worst = np.where(np.isnan(found.worst), -np.inf, found.worst)
     if not found.limits or not np.any(np.isfinite(worst)):
         return "\n".join(f"open: {limit.label}: {limit.why}" for limit in found.limits if limit.why)
-    at = np.unravel_index(int(np.argmax(worst)), found.shape)
+    at = tuple(int(one) for one in np.unravel_index(int(np.argmax(worst)), found.shape))
     missed = min(found.limits, key=lambda limit: float(limit.scaled[at]))
     word = "Nearest to all being met" if worst[at] < 0 else "Best point"
     return f"{word}: {_point(found.axes, at)}; {missed.label} decides there"

@@ -156,8 +156,9 @@ def _span(place: Place, rest: str) -> Axis:
         whole = np.round(values)
         if scale == "linear" and np.any(np.abs(whole - values) > 1e-9):
             raise UserMistake(f"{count} points do not fall on whole numbers; {_whole(low, high)}")
-        return Axis(place, tuple(dict.fromkeys(int(value) for value in whole)), scale)
-    return Axis(place, tuple(float(value) for value in values), scale)  # type: ignore[arg-type]
+        whole_values = tuple(dict.fromkeys(int(value) for value in whole))
+        return Axis(place, whole_values, "log" if scale == "log" else "linear")
+    return Axis(place, tuple(float(value) for value in values), "log" if scale == "log" else "linear")
 
 
 def _end(place: Place, text: str) -> float:

@@ -71,8 +71,10 @@ def spans(found: Sweep, along: int) -> list[Span]:
         good = np.concatenate([[False], margin[order] >= 0, [False]])
         starts, ends = np.flatnonzero(good[1:] & ~good[:-1]), np.flatnonzero(good[:-1] & ~good[1:]) - 1
         for start, end in zip(starts, ends, strict=True):
-            low = max((z for z in zeros[others] if start and at[start - 1] <= z <= at[start]), default=at[start])
-            high = min((z for z in zeros[others] if at[end] <= z <= at[min(end + 1, len(at) - 1)]), default=at[end])
+            first, last = float(at[start]), float(at[end])
+            before, after = float(at[max(start - 1, 0)]), float(at[min(end + 1, len(at) - 1)])
+            low = max((z for z in zeros[others] if before <= z <= first), default=first)
+            high = min((z for z in zeros[others] if last <= z <= after), default=last)
             opens = (bool(start == 0), bool(end == len(at) - 1))
             rows.append(Span(_back(axis, low), _back(axis, high), opens, others))
     return rows
@@ -89,7 +91,7 @@ def zero_places(at: Floats, margin: Floats) -> list[tuple[float, bool]]:
     return found
 
 
-def _positions(axis: Axis) -> tuple[Floats, NDArray[np.int64]]:
+def _positions(axis: Axis) -> tuple[Floats, NDArray[np.intp]]:
     """Where the points of an axis stand in ascending order (logarithms on a logarithmic one), and that order."""
     values = np.array(axis.values, dtype=float)
     at = np.log(values) if axis.scale == "log" else values

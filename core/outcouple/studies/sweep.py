@@ -20,7 +20,7 @@ from outcouple.metrics import metrics_of
 from outcouple.notes import Note, merge_notes
 from outcouple.studies.axes import Axis, read_axes
 from outcouple.studies.places import with_values
-from outcouple.studies.work import Task, chunked, run_tasks
+from outcouple.studies.work import Task, chunked, elements_of, run_tasks
 
 __all__ = ["Limit", "Sweep", "SweptMetric", "sweep", "wanted_metrics"]
 
@@ -141,7 +141,9 @@ def sweep(
     read = tuple(axis for axis in axes if isinstance(axis, Axis)) or read_axes(design, [str(text) for text in axes])
     want = wanted_metrics(design, metrics)
     grid = _Grid(design, read, want)
-    tasks = [task for made, at in _designs(design, read) for task in chunked(made, *_laid(read, at, want))]
+    size = elements_of(design) if any(axis.runs for axis in read) else None
+    designs = _designs(design, read)
+    tasks = [task for made, at in designs for task in chunked(made, *_laid(read, at, want), elements=size)]
     total, count = grid.total, 0
     try:
         for task, batch in run_tasks(tasks, executor):

@@ -15,10 +15,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.design import Design, design_from_mapping
-from outcouple.evaluation.batch import Batch, evaluate_batch
+from outcouple.evaluation.batch import Batch, evaluate_batch, sample_elements
 from outcouple.evaluation.overlay import Samples
+from outcouple.evaluation.table import tabulate
 
-__all__ = ["CHUNK", "Task", "chunked", "run_tasks"]
+__all__ = ["CHUNK", "Task", "chunked", "elements_of", "run_tasks"]
 
 CHUNK = 64
 """Samples of one chunk: big enough that arrays carry the work, small enough for progress and an early stop."""
@@ -28,31 +29,48 @@ CHUNK = 64
 class Task:
     """Metrics of one design over a chunk of samples; pickles as the design's plain data, read again by the worker.
 
-    places  where the answers belong, (S,)
+    places    where the answers belong, (S,)
+    elements  array elements of one sample, where they are known
     """
 
     design: Design
     samples: Samples
     want: tuple[str, ...]
     places: NDArray[np.int64]
+    elements: int | None = None
 
     def __call__(self) -> Batch:
-        """Do it."""
-        return evaluate_batch(self.design, self.samples, self.want)
+        """Do it. What cannot be computed at the far end of an input is nan: a value that is not there, no warning."""
+        with np.errstate(all="ignore"):
+            return evaluate_batch(self.design, self.samples, self.want, elements=self.elements)
 
     def __reduce__(self) -> tuple[Any, ...]:
-        return _task, (dict(self.design.raw), self.design.file, dict(self.samples), self.want, self.places)
+        data = (dict(self.design.raw), self.design.file)
+        return _task, (*data, dict(self.samples), self.want, self.places, self.elements)
 
 
-def _task(raw: dict[str, Any], file: str, samples: Samples, want: tuple[str, ...], places: NDArray[np.int64]) -> Task:
-    return Task(design_from_mapping(raw, file=file), samples, want, places)
+def _task(raw: dict[str, Any], file: str, samples: Samples, want: tuple[str, ...], *rest: Any) -> Task:
+    return Task(design_from_mapping(raw, file=file), samples, want, *rest)
 
 
-def chunked(design: Design, samples: Samples, want: Sequence[str], places: NDArray[np.int64]) -> Iterator[Task]:
+def chunked(
+    design: Design,
+    samples: Samples,
+    want: Sequence[str],
+    places: NDArray[np.int64],
+    *,
+    elements: int | None = None,
+) -> Iterator[Task]:
     """Tasks of at most ``CHUNK`` samples."""
     for start in range(0, len(places), CHUNK):
         part = {path: values[start : start + CHUNK] for path, values in samples.items()}
-        yield Task(design, part, tuple(want), places[start : start + CHUNK])
+        yield Task(design, part, tuple(want), places[start : start + CHUNK], elements)
+
+
+def elements_of(design: Design) -> int:
+    """Array elements of one sample of a design."""
+    with np.errstate(all="ignore"):
+        return sample_elements(tabulate(design))
 
 
 def run_tasks(tasks: Sequence[Task], executor: Executor | None = None) -> Iterator[tuple[Task, Batch]]:
