@@ -10,6 +10,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from outcouple.decision import cautions as c
+from outcouple.decision import eye_safety as eyes
 from outcouple.decision import failure_modes as f
 from outcouple.decision.three_way import Bands, band_probabilities, dark_fault_limit, fault_coverage
 
@@ -118,34 +119,34 @@ def codes(notes: object) -> list[str]:
 
 def test_eye_limit_falls_and_stays() -> None:
     time = np.array([10.0, 100.0, 1000.0, 10_000.0])
-    got = c.corneal_irradiance_limit(time)
+    got = eyes.corneal_irradiance_limit(time)
     assert got[:3] == pytest.approx([3200, 570, 100], rel=0.013)  # rounded values of the standard, from memory
     assert got[3] == got[2]
 
 
 def test_burn_weight_and_retinal_figure_refuse_outside() -> None:
-    assert np.isnan(c.burn_hazard_weight(1100e-9))
-    assert float(c.burn_hazard_weight(700e-9)) == 1.0
-    assert np.isnan(c.weak_stimulus_radiance_limit(0.5))
-    assert float(c.weak_stimulus_radiance_limit(0.1)) == pytest.approx(63_000)
+    assert np.isnan(eyes.burn_hazard_weight(1100e-9))
+    assert float(eyes.burn_hazard_weight(700e-9)) == 1.0
+    assert np.isnan(eyes.weak_stimulus_radiance_limit(0.5))
+    assert float(eyes.weak_stimulus_radiance_limit(0.1)) == pytest.approx(63_000)
 
 
 def test_bare_emitter_on_axis() -> None:
     # Lambertian: I0 = P / pi
-    assert float(c.bare_emitter_irradiance(power=0.04)) == pytest.approx(0.04 / np.pi / 0.04)
+    assert float(eyes.bare_emitter_irradiance(power=0.04)) == pytest.approx(0.04 / np.pi / 0.04)
 
 
 def test_eye_notes() -> None:
-    weak = c.eye_notes(kind="led", wavelength=850e-9, power=10e-3)
+    weak = eyes.eye_notes(kind="led", wavelength=850e-9, power=10e-3)
     assert codes(weak) == ["eye-infrared"]
-    strong = c.eye_notes(kind="led", wavelength=850e-9, power=np.array([0.01, 20.0]))
+    strong = eyes.eye_notes(kind="led", wavelength=850e-9, power=np.array([0.01, 20.0]))
     assert codes(strong) == ["eye-cornea", "eye-infrared"]
     assert strong[0].where is not None
     assert strong[0].where.tolist() == [False, True]
-    assert codes(c.eye_notes(kind="laser", wavelength=850e-9, power=1e-3)) == ["eye-laser"]
-    assert codes(c.eye_notes(kind="led", wavelength=525e-9, power=1e-3)) == []
+    assert codes(eyes.eye_notes(kind="laser", wavelength=850e-9, power=1e-3)) == ["eye-laser"]
+    assert codes(eyes.eye_notes(kind="led", wavelength=525e-9, power=1e-3)) == []
     with pytest.raises(ValueError, match="'led' or 'laser'"):
-        c.eye_notes(kind="torch", wavelength=1e-6, power=1.0)
+        eyes.eye_notes(kind="torch", wavelength=1e-6, power=1.0)
 
 
 def test_explosive_notes_never_pass_anything() -> None:
@@ -170,7 +171,7 @@ def test_demand_notes() -> None:
 
 def test_every_danger_says_what_decides() -> None:
     notes = [
-        *c.eye_notes(kind="led", wavelength=940e-9, power=50.0),
+        *eyes.eye_notes(kind="led", wavelength=940e-9, power=50.0),
         *c.explosive_notes(explosive=True, power=1.0),
         *c.demand_notes("leak", dark_is_present=True, uncovered=1),
         *c.service_notes("food", "oxygen", "pressure"),

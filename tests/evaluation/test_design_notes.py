@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import pytest
 
-from outcouple.decision import cautions
+from outcouple.decision import eye_safety
 from outcouple.decision.service_media import ENVELOPE, SERVICE, cracking_notes, envelope_notes, service_of
 from outcouple.evaluation import evaluate
 from outcouple.materials import builtin_catalogue
@@ -110,15 +110,15 @@ def test_envelope_and_cracking_by_material():
 
 def test_a_narrow_lobe_is_brighter_on_its_axis():
     """All power in a cone of 10 degrees half-angle: P / (2 pi (1 - cos 10 deg)) per steradian for an even lobe."""
-    got = cautions.axial_intensity(power=1.0, exponent=0.0, half_angle=0.17453293)
+    got = eye_safety.axial_intensity(power=1.0, exponent=0.0, half_angle=0.17453293)
     assert float(got) == pytest.approx(1 / (2 * 3.14159265 * 0.0151922), rel=1e-5)
 
 
 def test_retina_by_hand():
     """10 mW Lambertian from 3 mm: 3.18 mW/sr over 7.07 mm2 = 450 W/(m2 sr), weight 0.501 at 850 nm, against
     6300 / 0.015 = 420 000 W/(m2 sr)."""
-    share = cautions.retinal_share(power=10e-3, size=3e-3, wavelength=850e-9)
+    share = eye_safety.retinal_share(power=10e-3, size=3e-3, wavelength=850e-9)
     assert float(share) == pytest.approx(450.3 * 0.5012 / 420e3, rel=1e-3)
     assert "eye-retina" in [
-        note.code for note in cautions.eye_notes(kind="led", wavelength=850e-9, power=50.0, size=3e-3)
+        note.code for note in eye_safety.eye_notes(kind="led", wavelength=850e-9, power=50.0, size=3e-3)
     ]

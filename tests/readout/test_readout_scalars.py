@@ -10,7 +10,7 @@ from pathlib import Path
 import numpy as np
 import pytest
 
-from outcouple.decision import cautions, detection
+from outcouple.decision import detection, eye_safety
 from outcouple.readout import ambient, noise, photodiode
 from outcouple.readout.camera import Camera, photons_per_pixel
 from outcouple.readout.converter import ideal_snr_db, quantisation_rms
@@ -128,8 +128,8 @@ COMPUTE: tuple[tuple[str, Callable[[str], float]], ...] = (
     ("blackbody luminous", lambda text: ambient.blackbody_efficacy(leading(text))),
     ("blackbody W/m2", per_lux(850e-9)),
     ("... 930-950", per_lux(940e-9)),
-    ("burn-hazard", lambda text: float(cautions.burn_hazard_weight(leading(text) * 1e-9))),
-    ("18000 t^-0.75", lambda text: float(cautions.corneal_irradiance_limit(number(text, "t")))),
+    ("burn-hazard", lambda text: float(eye_safety.burn_hazard_weight(leading(text) * 1e-9))),
+    ("18000 t^-0.75", lambda text: float(eye_safety.corneal_irradiance_limit(number(text, "t")))),
 )
 
 

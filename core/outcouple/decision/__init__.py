@@ -2,7 +2,8 @@
 
 The room knows no optics and no design file. `detection` turns margins in standard deviations into false alarms, misses
 and times; `three_way` adds fault bands; `failure_modes` tells which way each failure errs for a demand; `cautions`
-holds what a result must say about eyes, explosive atmospheres, overfill and people. `decide` joins levels and states
+holds what a result must say about explosive atmospheres, overfill and people, `eye_safety` about eyes, `service_media`
+what the media and the tip's material set off. `decide` joins levels and states
 for `outcouple.evaluation`.
 """
 

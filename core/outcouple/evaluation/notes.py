@@ -10,11 +10,11 @@ from outcouple.decision.cautions import (
     ageing_note,
     demand_notes,
     explosive_notes,
-    eye_notes,
     service_notes,
     skin_note,
     touch_note,
 )
+from outcouple.decision.eye_safety import eye_notes
 from outcouple.decision.service_media import cracking_notes, envelope_notes, service_of
 from outcouple.design import Design
 from outcouple.evaluation.decision_measures import DECISION_MEASURES
