@@ -38,16 +38,16 @@ def _register_link(app: Dash) -> None:
     def on_open(search: str | None, doc: Any) -> Any:
         link = parse_qs((search or "").lstrip("?")).get("d", [""])[0]
         if doc or not link:
-            return no_update
+            return no_update, no_update
         try:
             return from_link(link)
         except UserMistake as mistake:
             say(str(mistake))
-            return no_update
+            return no_update, no_update
 
-    app.callback(Output("doc", "data"), Input("url", "search"), State("doc", "data"))(on_open)
-    app.callback(Output("link", "data"), Input("doc", "data"), prevent_initial_call=True)(
-        lambda doc: link_of(doc) if doc else no_update
+    app.callback(Output("doc", "data"), Output("pins", "data"), Input("url", "search"), State("doc", "data"))(on_open)
+    app.callback(Output("link", "data"), Input("doc", "data"), Input("pins", "data"), prevent_initial_call=True)(
+        lambda doc, pins: link_of(doc, pins or []) if doc else no_update
     )
 
 

@@ -14,10 +14,13 @@ from outcouple.report.figures import CONFIG
 from outcouple_dashboard.tags import aria
 
 __all__ = [
+    "SHAPES",
+    "WORDS",
     "card",
     "cautions",
     "failures",
     "graph",
+    "mark",
     "metrics_table",
     "mistakes",
     "requirements",

@@ -185,7 +185,11 @@ def _map(found: Sweep, metric: str, present: list[Any], look: Look) -> dict[str,
         "y": y,
         "z": [[float(value) if np.isfinite(value) else None for value in row] for row in z],
         "colorscale": ramp(look),
-        "colorbar": {"title": {"text": _titled(label, unit), "side": "right"}, "thickness": 14, "outlinewidth": 0},
+        "colorbar": {
+            "title": {"text": _titled(label, unit), "side": "right", "font": {"size": 13}},
+            "thickness": 14,
+            "outlinewidth": 0,
+        },
         "hovertemplate": "%{x:.4g}, %{y:.4g}: %{z:.4g}<extra></extra>",
     }
     data: list[dict[str, Any]] = [heat]
@@ -195,7 +199,7 @@ def _map(found: Sweep, metric: str, present: list[Any], look: Look) -> dict[str,
         _place(one, value, one_unit) for one, value, one_unit in zip(found.axes, present, (x_unit, y_unit), strict=True)
     ]
     if None not in places:
-        data.append(_present(places[0], places[1], look))
+        data.append({**_present(places[0], places[1], look), "mode": "markers"})
     return {"data": data, "layout": layout}
 
 

@@ -57,7 +57,15 @@ def vary(step: Step, *, text: str, axes: list[str], metric: str) -> Iterator[Swe
     )
 
 
-TASKS: dict[str, Callable[..., Iterator[Any]]] = {"follow": follow, "vary": vary}
+def compare(step: Step, *, texts: list[str]) -> Iterator[tuple[str, Outcome]]:
+    """Response curve and advice of several designs, one after the other."""
+    for at, text in enumerate(texts):
+        design = design_of(text)
+        step(at / len(texts), design.title)
+        yield text, evaluate(design)
+
+
+TASKS: dict[str, Callable[..., Iterator[Any]]] = {"follow": follow, "vary": vary, "compare": compare}
 """Task -> what does it; every answer it yields is a part, the last one the whole."""
 
 

@@ -62,6 +62,7 @@
 
       applyTheme: function (theme) {
         if (!theme) return [keep(), keep(), keep()];
+        document.body.dataset.agThemeMode = theme;
         return [theme, theme === "dark" ? "Light" : "Dark", theme === "dark" ? "true" : "false"];
       },
 

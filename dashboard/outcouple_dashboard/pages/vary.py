@@ -28,6 +28,7 @@ __all__ = ["layout", "register"]
 
 EVERY = 300
 """Milliseconds between looks at a running sweep."""
+UNPICKED = "Click a point, or choose a row, to try it."
 WORDS = {"pass": "all met", "fail": "missed", "open": "open", "none stated": "–", "": "not run"}
 
 
@@ -76,16 +77,7 @@ def layout() -> Any:
                 [
                     html.H2("", id="vary-heading"),
                     parts.graph("vary-picture", height=430, label="What the sweep found"),
-                    html.Div(
-                        [
-                            html.Span("Click a point to try it.", id="vary-picked-text"),
-                            html.Button(
-                                "Take it over", id="vary-take", className="quiet", type="button", disabled=True
-                            ),
-                        ],
-                        className="picked",
-                        **aria(live="polite"),
-                    ),
+                    html.P("", id="vary-told", className="faint"),
                 ],
                 className="card wide",
                 id="vary-result",
@@ -98,7 +90,7 @@ def layout() -> Any:
                         id="vary-points",
                         columnDefs=[],
                         rowData=[],
-                        columnSize="responsiveSizeToFit",
+                        defaultColDef={"flex": 1, "minWidth": 110},
                         dashGridOptions={
                             "rowSelection": {"mode": "singleRow", "enableClickSelection": True, "checkboxes": False},
                             "domLayout": "autoHeight",
@@ -114,6 +106,16 @@ def layout() -> Any:
                 id="vary-table",
                 hidden=True,
             ),
+            html.Div(
+                [
+                    html.Span(UNPICKED, id="vary-picked-text", **aria(live="polite")),
+                    html.Button("Take it over", id="vary-take", className="quiet", type="button", disabled=True),
+                ],
+                className="picked card wide",
+                id="vary-bottom",
+                hidden=True,
+            ),
+            dcc.Store(id="vary-opened"),
             dcc.Store(id="vary-job"),
             dcc.Store(id="vary-seen"),
             dcc.Store(id="vary-picked"),
@@ -199,11 +201,9 @@ def points_of(found: Sweep, metric: str) -> tuple[list[dict[str, Any]], list[dic
     label, kind, unit, values = swept_values(found, metric)
     verdicts, worst = found.verdicts, found.worst
     columns = [{"field": f"axis{at}", "headerName": one.name} for at, one in enumerate(found.axes)]
-    columns += [
-        {"field": "value", "headerName": label},
-        {"field": "margin", "headerName": "least margin"},
-        {"field": "verdict", "headerName": "requirements"},
-    ]
+    if metric != WORST:
+        columns.append({"field": "value", "headerName": label})
+    columns += [{"field": "margin", "headerName": "least margin"}, {"field": "verdict", "headerName": "requirements"}]
     texts = [one.texts() for one in found.axes]
     rows = []
     for at in np.ndindex(found.shape):
@@ -214,6 +214,18 @@ def points_of(found: Sweep, metric: str) -> tuple[list[dict[str, Any]], list[dic
         row["at"] = [int(place) for place in at]
         rows.append(row)
     return columns, rows
+
+
+def told_of(found: Sweep) -> str:
+    """What the marks mean, and where the requirements are met."""
+    now = "The diamond is the design as it stands."
+    if not found.limits:
+        return f"{now} No requirements are stated."
+    good, count = int(np.sum(found.verdicts == "pass")), found.done.size
+    border = "Green marks" if len(found.axes) == 1 else "The orange line borders"
+    why = "; ".join(f"{limit.label} is open: {limit.why}" for limit in found.limits if limit.why)
+    told = f"{now} {border} where all requirements are met: {good} of {count} points."
+    return f"{told} {why}" if why else told
 
 
 def picked_at(found: Sweep, at: list[int], metric: str) -> dict[str, Any]:
@@ -248,13 +260,18 @@ def register(app: Dash, desk: Desk) -> None:
 
 
 def _register_pickers(app: Dash, desk: Desk) -> None:
-    def on_doc(doc: Any, pathname: str, x: Any, y: Any, metric: Any) -> Any:
+    def on_doc(doc: Any, pathname: str, x: Any, y: Any, metric: Any, opened: Any) -> Any:
         if not doc or pathname != "/vary":
-            return (no_update,) * 6
+            return (no_update,) * 7
         try:
-            return setup(desk, doc["text"], x, y, metric)
+            inputs, again, new_x, new_y, metrics, new_metric = setup(desk, doc["text"], x, y, metric)
         except UserMistake:
-            return (no_update,) * 6
+            return (no_update,) * 7
+        if opened == doc["opened"]:  # what stays chosen keeps its ends, too
+            new_x, new_y, new_metric = (
+                no_update if new == old else new for new, old in ((new_x, x), (new_y, y), (new_metric, metric))
+            )
+        return inputs, again, new_x, new_y, metrics, new_metric, doc["opened"]
 
     app.callback(
         Output("vary-x", "data"),
@@ -263,11 +280,13 @@ def _register_pickers(app: Dash, desk: Desk) -> None:
         Output("vary-y", "value"),
         Output("vary-metric", "data"),
         Output("vary-metric", "value"),
+        Output("vary-opened", "data"),
         Input("doc", "data"),
         Input("url", "pathname"),
         State("vary-x", "value"),
         State("vary-y", "value"),
         State("vary-metric", "value"),
+        State("vary-opened", "data"),
     )(on_doc)
 
     def on_pick(name: str | None, doc: Any) -> Any:
@@ -351,22 +370,24 @@ def _register_result(app: Dash, desk: Desk) -> None:
     def on_seen(number: str | None, theme: str | None, doc: Any, tab: str) -> Any:
         job = desk.jobs.find(number, tab)
         if job is None or not job.parts or not doc:
-            return (no_update,) * 6
+            return (no_update,) * 8
         found: Sweep = job.parts[-1]
         metric = job.arguments["metric"]
         figure = sweep_picture(found, metric, present_of(desk.design(doc["text"]), found), look_of(theme))
         columns, rows = points_of(found, metric)
         names = " and ".join(one.name for one in found.axes)
         heading = f"{swept_values(found, metric)[0].capitalize()} against {names}"
-        return figure, heading, columns, rows, False, False
+        return figure, heading, told_of(found), columns, rows, False, False, False
 
     app.callback(
         Output("vary-picture", "figure"),
         Output("vary-heading", "children"),
+        Output("vary-told", "children"),
         Output("vary-points", "columnDefs"),
         Output("vary-points", "rowData"),
         Output("vary-result", "hidden"),
         Output("vary-table", "hidden"),
+        Output("vary-bottom", "hidden"),
         Input("vary-seen", "data"),
         Input("theme", "data"),
         State("doc", "data"),
@@ -376,6 +397,8 @@ def _register_result(app: Dash, desk: Desk) -> None:
 
     def on_point(click: Any, rows: Any, number: str | None, tab: str) -> Any:
         job = desk.jobs.find(number, tab)
+        if ctx.triggered_id == "vary-seen":
+            return None, UNPICKED, True
         if job is None or not job.parts:
             return no_update, no_update, no_update
         found: Sweep = job.parts[-1]
@@ -391,7 +414,7 @@ def _register_result(app: Dash, desk: Desk) -> None:
         Output("vary-take", "disabled"),
         Input("vary-picture", "clickData"),
         Input("vary-points", "selectedRows"),
-        State("vary-seen", "data"),
+        Input("vary-seen", "data"),
         State("tab", "data"),
         prevent_initial_call=True,
     )(on_point)
