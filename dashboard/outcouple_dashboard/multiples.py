@@ -86,10 +86,7 @@ def margins_picture(variants: Sequence[Variant], look: Look) -> dict[str, Any]:
     for at, one in enumerate(variants):
         rows = one.outcome.requirements
         shown = [max(-WIDEST, min(WIDEST, -row.shortfall)) if row.shortfall is not None else 0.0 for row in rows]
-        colours = [
-            look.bad if row.verdict == "fail" else look.good if row.verdict == "pass" else look.faint for row in rows
-        ]
-        words = ["open" if row.shortfall is None else f"{-row.shortfall:+.0%}" for row in rows]
+        tones = {"fail": look.bad, "pass": look.good, "open": look.faint}
         axes = _axes(
             layout,
             at,
@@ -129,7 +126,7 @@ def _margin(one: Judged) -> str:
 
 
 def shares_picture(variants: Sequence[Variant], look: Look) -> dict[str, Any]:
-    """Share of the emitter's light at the read-out, every state: circle absent, diamond present; a panel per variant."""
+    """Share of the emitter's light at the read-out, every state (circle absent, diamond present), per variant."""
     most = max(len(one.outcome.states) for one in variants)
     layout, places = _frame(variants, look, 90 + 26 * most)
     shares = [math.log10(state.share) for one in variants for state in one.outcome.states if state.share > 0] or [0.0]
