@@ -16,6 +16,7 @@ from outcouple.evaluation.table import StateRow, Table
 from outcouple.geometry import MetricValue, Missing
 from outcouple.outcome import Judged, Verdict
 from outcouple.quantities import format_quantity
+from outcouple.readout.noise import CAUSES
 
 __all__ = ["headline_of", "limiting_of", "worst_state_of"]
 
@@ -70,7 +71,7 @@ def limiting_of(table: Table, state: str) -> str:
     if not shares:
         return ""
     cause = max(shares, key=lambda name: shares[name])
-    return f"limited by {cause}, {shares[cause]:.0%} of the noise power"
+    return f"limited by {CAUSES.get(cause, cause)}, {shares[cause]:.0%} of the noise power"
 
 
 def _floor(table: Table, row: StateRow) -> str:

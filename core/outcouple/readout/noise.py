@@ -38,6 +38,7 @@ CAUSES: Mapping[str, str] = {
     "converter": "converter noise and quantisation",
     "emitter intensity": "intensity noise of the emitter",
     "ripple": "ripple of ambient light left by the demodulation",
+    "reference channel": "noise of the reference photodiode",
     "ambient change": "change of ambient light within a reading",
     "drop statistics": "statistics of the drops",
     "dark": "dark noise of the camera",

@@ -8,6 +8,7 @@ from collections.abc import Iterator, Sequence
 
 from outcouple.outcome import FailureDirection, Judged, MetricResult, Outcome, StateOutcome
 from outcouple.quantities import format_quantity
+from outcouple.readout.noise import CAUSES
 
 __all__ = ["format_outcome", "table"]
 
@@ -163,8 +164,8 @@ def _ledger_states(outcome: Outcome) -> list[StateOutcome]:
 def _noise(outcome: Outcome) -> str:
     if not outcome.noise:
         return ""
-    parts = ", ".join(f"{cause} {share:.0%}" for cause, share in outcome.noise.items() if share >= 0.005)
-    return f"Noise power in {outcome.noise_state!r}: {parts}"
+    rows = [(f"{share:.1%}", CAUSES.get(cause, cause)) for cause, share in outcome.noise.items() if share >= 0.005]
+    return f"Noise power in {outcome.noise_state!r}\n" + table(rows, right=(0,))
 
 
 def _failures(outcome: Outcome, width: int) -> str:
