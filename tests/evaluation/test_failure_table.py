@@ -174,3 +174,25 @@ def test_confirm_beyond_its_window_is_refused():
         tank(decision={"confirm": 3, "window": 2})
     with pytest.raises(UserMistake, match="fault_low"):
         tank(decision={"fault_low": "50 %", "fault_high": "20 %"})
+
+
+def test_without_calibration_spread_of_the_light_moves_readings_past_a_standing_level():
+    """60 to 160 % of the light: calibrated, the margins in span stay; else the faint sensor's dry margin shrinks."""
+    power = {("emitter", "power"): 8e-3 * np.array([0.6, 1.0, 1.25])}
+    given = {"level": "given", "share": "50 %"}
+    own, none = (
+        evaluate_batch(tank(decision={**given, "calibration": word}), power, ["margin_span"]).metrics["margin_span"]
+        for word in ("each sensor", "none")
+    )
+    assert own.states["dry"] == pytest.approx(np.full(3, own.states["dry"][1]), rel=1e-3)
+    assert none.states["dry"][1] == pytest.approx(own.states["dry"][1], rel=1e-12)
+    # dry stands at 0.6 of the nominal, the level at 0.5 of it, the span is 0.98 of what is left
+    assert none.states["dry"][0] == pytest.approx(0.1 / 0.6 / 0.98, rel=0.02)
+    assert none.states["dry"][2] > none.states["dry"][1]
+
+
+def test_a_standing_level_still_follows_its_own_share():
+    design = tank(decision={"level": "given", "calibration": "none"})
+    samples = {("decision", "share"): np.array([0.3, 0.6]), ("emitter", "power"): np.array([8e-3, 8e-3])}
+    both = evaluate_batch(design, samples, ["margin_span"]).metrics["margin_span"]
+    assert both.states["dry"][0] > both.states["dry"][1]

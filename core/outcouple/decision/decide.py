@@ -50,11 +50,14 @@ class Decided:
         return min(self.sigma, key=lambda name: float(self.sigma[name][0]))
 
 
-def decide(scores: Sequence[Score], settings: Any, given: Floats | None = None) -> Decided | None:
+def decide(
+    scores: Sequence[Score], settings: Any, given: Floats | None = None, *, standing: Floats | None = None
+) -> Decided | None:
     """Decide between states; None where absent or present states are missing.
 
     settings  the [decision] section over samples
     given     level on the decision's axis for ``level = "given"``, (S, C)
+    standing  level that stands whatever these states read, (S | 1, C | 1); wins over all
     """
     absent = [score for score in scores if score.expect == "absent"]
     present = [score for score in scores if score.expect == "present"]
@@ -65,7 +68,7 @@ def decide(scores: Sequence[Score], settings: Any, given: Floats | None = None) 
     foot = _stack([kth(score.seeing, need) for score in present]).min(axis=0)
     seeing = np.isfinite(foot) & np.isfinite(top)
     span = np.where(seeing, np.abs(np.where(seeing, foot, 0.0) - np.where(seeing, top, 0.0)), 0.0)
-    level = _level(absent, present, settings, need, given)
+    level = _level(absent, present, settings, need, given) if standing is None else standing
     on, off = hysteresis_levels(level, band=(settings.hysteresis * span)[:, None])
     sigma, of_span = {}, {}
     for score in scores:

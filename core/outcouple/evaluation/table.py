@@ -90,7 +90,8 @@ def tabulate(design: Design, samples: Samples | None = None, *, states: Sequence
     untouched = None if untouched_laid is None else _row(untouched_laid, None, design)
     rows = tuple(_row(one, untouched, design) for one in laid)
     scores = [row.score for row in rows if row.score is not None and row.laid.state.role == "normal"]
-    decided = decide(scores, base.decision, _given_level(design, base, rows))
+    standing = _standing_level(design, samples, chosen) if base.decision.calibration == "none" else None
+    decided = decide(scores, base.decision, _given_level(design, base, rows), standing=standing)
     notes = merge_notes(
         [
             *saturation_notes(rows, count),
@@ -105,6 +106,15 @@ def tabulate(design: Design, samples: Samples | None = None, *, states: Sequence
         ]
     )
     return Table(design, base, count, rows, untouched, decided, notes, lights, breaks, samples, setting)
+
+
+def _standing_level(design: Design, samples: Samples, states: Sequence[State]) -> Floats | None:
+    """Where the design as written has its level; None where no sample lies over anything but the decision."""
+    own = {path: values for path, values in samples.items() if path[0] == "decision"}
+    if len(own) == len(samples):
+        return None
+    decided = tabulate(design, own, states=states).decided
+    return None if decided is None else decided.level
 
 
 def _media_of(design: Design, states: Sequence[State], view: View) -> tuple[str, ...]:

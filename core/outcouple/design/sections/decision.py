@@ -46,6 +46,12 @@ class Decision(Section):
         le="1000 %",
         describe="for a given level: share of the first absent state's reading (a change: the relative change itself)",
     )
+    calibration: str = choice(
+        "each sensor",
+        ["each sensor", "none"],
+        describe="each sensor: its level is set by its own readings when new; none: the level stands where the design "
+        "as written has it, so that spread and tolerances of the light move the readings past it",
+    )
     false_alarms: float = quantity(
         1, "number", gt=0, le=1e9, describe="false alarms per year allowed, for a level set by noise"
     )
