@@ -17,6 +17,7 @@ COMMANDS: dict[str, str] = {
     "validate": "Check a design file and name every mistake.",
     "budget": "Where the light goes, signal, noise, decision, verdict.",
     "vary": "Sweep inputs: curves, maps, where the requirements are met.",
+    "compare": "Variants side by side: who misses by most, and why.",
     "levers": "What moves the worst margin, and how far each input may go.",
     "draw": "Pictures: cross-section with rays, ledger, readings, response.",
     "dashboard": "A page on a folder of designs: explore, vary, compare.",

@@ -65,8 +65,8 @@ def spans(found: Sweep, along: int) -> list[Span]:
     rows = []
     zeros: dict[tuple[int | None, ...], list[float]] = {}
     for limit in found.limits:
-        for others, margin in _lines(limit.margin, along):
-            zeros.setdefault(others, []).extend(value for value, _ in zero_places(at, margin[order]))
+        for others, line in _lines(limit.margin, along):
+            zeros.setdefault(others, []).extend(value for value, _ in zero_places(at, line[order]))
     for others, margin in _lines(found.worst, along):
         good = np.concatenate([[False], margin[order] >= 0, [False]])
         starts, ends = np.flatnonzero(good[1:] & ~good[:-1]), np.flatnonzero(good[:-1] & ~good[1:]) - 1
@@ -109,5 +109,5 @@ def _lines(values: Floats, along: int) -> list[tuple[tuple[int | None, ...], Flo
     lines: list[tuple[tuple[int | None, ...], Floats]] = []
     for place in np.ndindex(moved.shape[:-1]):
         others: Sequence[int | None] = (*place[:along], None, *place[along:])
-        lines.append((tuple(others), moved[place]))
+        lines.append((tuple(others), np.asarray(moved[place])))
     return lines

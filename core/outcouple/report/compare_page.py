@@ -1,0 +1,58 @@
+"""A comparison as a page of its own."""
+
+from __future__ import annotations
+
+from outcouple.report import figures
+from outcouple.report.compare_text import (
+    compare_lead,
+    corner_line,
+    corner_table,
+    requirement_table,
+    shared_notes,
+    variant_lines,
+    wide_difference_table,
+)
+from outcouple.report.figures.compare import margins_figure, readings_figure, values_figure
+from outcouple.report.page import Picture, page_of
+from outcouple.studies.compare import Comparison
+
+__all__ = ["comparison_page", "comparison_pictures"]
+
+
+def comparison_pictures(found: Comparison, *, look: figures.Look = figures.LIGHT) -> list[Picture]:
+    """Margins per variant, values per requirement, readings per state."""
+    text = "Bars to the left of zero are missed. What lies beyond one and a half limits ends at the edge."
+    pictures = []
+    if found.rows:
+        pictures.append(Picture("margins", "How far from each limit", margins_figure(found, look=look), text))
+        text = "Dashed: the limit. Open circles: the worst at the corners, where tolerances are declared."
+        pictures.append(Picture("values", "Requirement by requirement", values_figure(found, look=look), text))
+    text = "Each variant's readings as a share of its own largest, in the order of the file."
+    pictures.append(Picture("readings", "Readings per state", readings_figure(found, look=look), text))
+    return pictures
+
+
+def comparison_page(found: Comparison, *, look: figures.Look = figures.LIGHT) -> str:
+    """One self-contained HTML page."""
+    variants = [["variant", "", "why"]]
+    for at, one in enumerate(found.variants):
+        why = ". ".join(_sentence(line) for line in variant_lines(found, at))
+        variants.append([one.label, one.verdict.upper(), why])
+    tables = [("Variants", variants), ("Requirements, nominal", requirement_table(found))]
+    corners = corner_table(found)
+    if corners:
+        tables.append((f"Requirements, worst at the corners ({corner_line(found)})", corners))
+    conditions = wide_difference_table(found, condition=True)
+    if conditions:
+        tables.append(("Conditions and states differ", conditions))
+    inputs = wide_difference_table(found, condition=False)
+    if inputs:
+        tables.append(("Inputs differ", inputs))
+    title = "Comparison: " + ", ".join(one.label for one in found.variants)
+    cautions = [f"{note.severity}: {note.text} [{', '.join(labels)}]" for note, labels in shared_notes(found)]
+    pictures = comparison_pictures(found, look=look)
+    return page_of(title, pictures, lead=compare_lead(found), tables=tables, cautions=cautions, look=look)
+
+
+def _sentence(line: str) -> str:
+    return line[:1].upper() + line[1:]
