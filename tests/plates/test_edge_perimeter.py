@@ -217,7 +217,7 @@ def test_cooktop_fails_on_oil_and_says_what_else_could_tell_it():
     assert "oil drop" in found.headline
     assert found.metrics["immunity_ratio"].states["oil drop"] < 1
     told = {note.text.split("'")[1]: note.text for note in found.notes if note.code == "amplitude-cannot-tell"}
-    assert "area hardly" in told["oil drop"]
+    assert "area hardly, it darkens 2 chords, a touch 2." in told["oil drop"]
     assert "Time can" in told["oil drop"]
     assert "area can" in told["boiled-over water"]
 

@@ -26,6 +26,8 @@ Floats = NDArray[np.float64]
 STEP = 0.2
 """Relative step of every input; inputs at zero step by a fifth of their range's lower decade."""
 KEPT = 3
+TOO_DEAR = 100_000_000
+"""Array elements of the deciding steps from which there is no advice: several seconds."""
 DEAR = 10_000_000
 """Array elements of all steps together from which only the deciding inputs step."""
 EMITTERS = tuple(nm * 1e-9 for nm in (470, 525, 590, 625, 660, 740, 810, 850, 880, 940, 1050))
@@ -134,7 +136,7 @@ def advise(
 ) -> tuple[Advice, ...]:
     """The few inputs whose step of a fifth moves the worst margin most, best first.
 
-    Metrics that cost a map take no part; of a dear design only the deciding inputs step.
+    Metrics that cost a map take no part; of a dear design only the deciding inputs step, of one too dear none.
     """
     from outcouple.evaluation.batch import evaluate_batch, sample_elements
 
@@ -145,6 +147,8 @@ def advise(
     steps = _steps(design)
     if len(steps) * sample_elements(table) > DEAR:
         steps = [step for step in steps if step[0].deciding]
+    if len(steps) * sample_elements(table) > TOO_DEAR:
+        return ()
     if not steps or not np.isfinite(before[0]) or not owners[0]:
         return ()
     samples = _samples(steps)

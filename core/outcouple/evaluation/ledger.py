@@ -37,6 +37,8 @@ class Ledger:
 
 def ledger_of(laid: LaidState, channel: int = 0, sample: int = 0) -> Ledger:
     """Account for all light of a state, every share computed from what its own step took away."""
+    if laid.light.divisible:
+        laid, channel = laid.alone(_clip(channel, laid.light.channels)), 0
     light = laid.light
     losses: dict[str, float] = {}
     returned: dict[str, float] = {}

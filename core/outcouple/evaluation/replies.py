@@ -6,7 +6,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.contact.response import answer
-from outcouple.evaluation.signals import LaidState
+from outcouple.evaluation.signals import LaidState, guide_absorption
 from outcouple.evaluation.transport import along
 
 __all__ = ["arrivals_of", "reply_of"]
@@ -31,10 +31,15 @@ def reply_of(laid: LaidState, face: str, angle: Floats) -> tuple[tuple[Floats, F
 def arrivals_of(laid: LaidState) -> Floats:
     """Share of the emitter's power on every ray at every channel, (S, C, K): mean over the line, no diffuse returns."""
     light = laid.light
-    absorption = 4 * np.pi * laid.media.index(light.guide).imag / laid.media.wavelengths
+    absorption = guide_absorption(light, laid.media)
     weights = laid.weights[:, None, None]
-    left: Floats = np.zeros((1, 1, 1))
+    total = np.zeros((max(laid.setting.samples, light.reach.shape[0]), light.channels, light.rays))
     for way in laid.ways:
-        arriving = np.sum(weights * way.survival.after * along(light.length, absorption), axis=1)
-        left = left + way.share[:, None, None] * arriving
-    return np.asarray(light.launch[:, None, :] * light.reach * left)
+        start = 0
+        for part in way.parts(len(laid.weights)):
+            arriving = np.sum(weights * part.survival.after * along(part.light.length, absorption), axis=1)
+            stop = start + part.light.channels
+            sent = part.light.launch[:, None, :] * part.light.reach
+            total[:, start:stop] += way.share[:, None, None] * sent * arriving
+            start = stop
+    return total

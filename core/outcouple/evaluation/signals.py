@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping, Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -20,20 +21,53 @@ from outcouple.notes import Note, merge_notes
 from outcouple.optics import spectrum_nodes
 from outcouple.readout.emitted import peak
 
-__all__ = ["LaidState", "Way", "lay_state", "setting_of", "trial_share"]
+__all__ = ["LaidState", "Way", "guide_absorption", "lay_state", "setting_of", "trial_share"]
 
 Floats = NDArray[np.float64]
+
+PART = 500_000
+"""Array elements of one part of a light of many channels."""
 
 
 @dataclass(frozen=True)
 class Way:
-    """One build-up of all faces, with the share of area it stands for (coarse patches make several)."""
+    """One build-up of all faces, with the share of area it stands for (coarse patches make several).
+
+    answers   of every hit column
+    received  share of the emitter's power per wavelength node, (S, L, C)
+    """
 
     share: Floats
     covers: Mapping[str, Cover]
-    survival: Survival
+    light: Light
+    answers: tuple[Answer | None, ...]
+    strips: Strips | None
     diffuser: Mapping[int, Floats]
     received: Floats
+
+    @cached_property
+    def survival(self) -> Survival:
+        """Every ray on its way; of a light of many chords ask parts of it only."""
+        return survive(self.light, self.answers, self.strips)
+
+    def part(self, channels: slice) -> Way:
+        """The same for some of the channels."""
+        strips = None if self.strips is None else self.strips.part(channels)
+        received = self.received[:, :, channels]
+        return replace(self, light=self.light.part(channels), strips=strips, received=received)
+
+    def parts(self, nodes: int) -> Iterator[Way]:
+        """The way in parts that the caches hold, where the light can be divided; else as a whole.
+
+        nodes  of the emitter's line
+        """
+        light = self.light
+        size = max(1, PART // max(1, nodes * light.rays * light.reach.shape[0]))
+        if not light.divisible or light.channels <= size:
+            yield self
+            return
+        for start in range(0, light.channels, size):
+            yield self.part(slice(start, start + size))
 
 
 @dataclass(frozen=True)
@@ -51,6 +85,12 @@ class LaidState:
     share: Floats
     ways: tuple[Way, ...]
     notes: tuple[Note, ...] = field(default=())
+
+    def alone(self, channel: int) -> LaidState:
+        """The state with one channel only; for lights that can be divided."""
+        one = slice(channel, channel + 1)
+        ways = tuple(way.part(one) for way in self.ways)
+        return replace(self, light=self.light.part(one), share=self.share[:, :, one], ways=ways)
 
     @property
     def p(self) -> View:
@@ -190,8 +230,28 @@ def _way(
         scatterers = [patch.scatterer for patch in cover.patches if np.any(np.asarray(patch.albedo) > 0)]
         if scatterers:
             diffuser[column] = media.centre(scatterers[0])
-    survival = survive(light, answers, strips)
-    n_guide = media.index(light.guide)
-    absorption = 4 * np.pi * n_guide.imag / media.wavelengths
-    got = received(light, survival, absorption=absorption, diffuser=diffuser, guide=media.centre(light.guide))
-    return Way(np.asarray(share), covers, survival, diffuser, got)
+    nodes = media.wavelengths.shape[1]
+    empty = np.zeros((1, 1, light.channels))
+    way = Way(np.asarray(share), covers, light, tuple(answers), strips, diffuser, empty)
+    got = [
+        received(
+            part.light,
+            part.survival,
+            absorption=guide_absorption(light, media),
+            diffuser=diffuser,
+            guide=media.centre(light.guide),
+        )
+        for part in way.parts(nodes)
+    ]
+    if len(got) == 1:
+        return replace(way, received=got[0])
+    samples = max(part.shape[0] for part in got)
+    whole = [np.broadcast_to(part, (samples, nodes, part.shape[2])) for part in got]
+    return replace(way, received=np.concatenate(whole, axis=2))
+
+
+def guide_absorption(light: Light, media: Media) -> Floats:
+    """Of the guide's material [1/m], (S, L); (S, 1) where it does not change along the line."""
+    absorption = 4 * np.pi * media.index(light.guide).imag / media.wavelengths
+    flat = np.allclose(absorption, absorption[:, :1], rtol=1e-12, atol=0.0)
+    return np.asarray(absorption[:, :1] if flat else absorption)

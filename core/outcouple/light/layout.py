@@ -6,7 +6,7 @@ Axes, always in this order, size 1 where constant: S samples, C channels, K rays
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import Literal
 
 import numpy as np
@@ -53,6 +53,13 @@ class Strips:
 
     lengths: Floats
     weight: Floats | None = None
+
+    def part(self, channels: slice) -> Strips:
+        """The contact on the ways of some of the channels."""
+        weight = self.weight
+        if weight is not None and weight.shape[1] > 1:
+            weight = weight[:, channels]
+        return Strips(self.lengths[:, channels], weight)
 
 
 @dataclass(frozen=True)
@@ -139,6 +146,26 @@ class Light:
     def capture(self) -> Floats:
         """Share of the emitter's power that lands in channel c while every face reflects all, (S, C)."""
         return np.asarray(np.sum(self.launch[:, None, :] * self.reach, axis=-1))
+
+    @property
+    def divisible(self) -> bool:
+        """True where channels can be followed one by one: their ways part and nothing is sent back to all of them."""
+        return self.parted and not self.relight
+
+    def part(self, channels: slice) -> Light:
+        """The same light for some of the channels."""
+
+        def cut(array: Floats) -> Floats:
+            return array[:, channels] if array.shape[1] > 1 else array
+
+        return replace(
+            self,
+            reach=self.reach[:, channels],
+            hits=cut(self.hits),
+            length=cut(self.length),
+            stray=cut(self.stray),
+            ambient=cut(self.ambient),
+        )
 
     def check(self) -> None:
         """Raise LightError where a rule of the contract is broken."""

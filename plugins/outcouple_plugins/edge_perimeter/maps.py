@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import itertools
 from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import dataclass
 from functools import cached_property
@@ -25,8 +24,8 @@ Ints = NDArray[np.integer[Any]]
 PROFILE = 49
 """Lines across an object on which its loss is computed."""
 GHOST_PAIRS = 24
-SMALLEST, LARGEST, HALVINGS = 0.5e-3, 200e-3, 10
-"""Search for the smallest object: between these diameters, halved so often on a logarithmic scale."""
+SMALLEST, LARGEST, HALVINGS = 0.1e-3, 100e-3, 5
+"""Search for the smallest object: it ends at these diameters; a factor of two is halved so often, to 2 %."""
 
 
 @dataclass(frozen=True)
@@ -63,7 +62,11 @@ class FieldMap:
     @cached_property
     def counts(self) -> Ints:
         """Chords that see the object, per cell."""
-        return np.bincount(self.seen[0], minlength=self.grid.cells)
+        total = np.zeros(self.grid.cells, dtype=int)
+        for block in self._blocks(slopes=False):
+            pick = block.loss > self.limit[block.chord]
+            total += np.bincount(block.cell[pick], minlength=self.grid.cells)
+        return total
 
     def position_error(self) -> Floats:
         """Cramer-Rao bound on the position in its worst direction, per cell [m]; infinite where nothing tells.
@@ -235,9 +238,17 @@ def _smallest(field: FieldMap, results: Results, state: StateResult, sample: int
         assert trial is not None
         return _kept_by(trial.counts.astype(float), area, highest=False) >= needed(results)
 
-    low, high = SMALLEST, LARGEST
-    if not seen_everywhere(high):
-        return np.inf
+    low = high = field.diameter
+    if seen_everywhere(field.diameter):
+        while seen_everywhere(low := low / 2):
+            high = low
+            if low < SMALLEST:
+                return low
+    else:
+        while not seen_everywhere(high := high * 2):
+            low = high
+            if high > LARGEST:
+                return np.inf
     for _ in range(HALVINGS):
         middle = float(np.sqrt(low * high))
         low, high = (low, middle) if seen_everywhere(middle) else (middle, high)
@@ -246,19 +257,10 @@ def _smallest(field: FieldMap, results: Results, state: StateResult, sample: int
 
 def _dead_emitter(field: FieldMap, results: Results, state: StateResult, sample: int, area: float) -> float:
     cell, chord = field.seen
-    cells = field.grid.cells
-    pairs = chords_shared(results).pairs
-    whole = np.bincount(cell, minlength=cells)
-    good = whole >= needed(results)
-    if not np.any(good):
-        return 0.0
-    worst = 0
-    order = np.argsort(pairs.emitter[chord], kind="stable")
-    edges = np.searchsorted(pairs.emitter[chord][order], np.arange(pairs.emitters + 1))
-    for first, last in itertools.pairwise(edges):
-        lost = np.bincount(cell[order[first:last]], minlength=cells)
-        worst = max(worst, int(np.sum(good & (whole - lost < needed(results)))))
-    return worst / cells
+    cells, pairs = field.grid.cells, chords_shared(results).pairs
+    own = np.bincount(pairs.emitter[chord] * cells + cell, minlength=pairs.emitters * cells).reshape(-1, cells)
+    whole, need = np.sum(own, axis=0), needed(results)
+    return float(np.max(np.mean((whole >= need) & (whole - own < need), axis=1)))
 
 
 def _ghosts(field: FieldMap, results: Results, state: StateResult, sample: int, area: float) -> float:

@@ -12,14 +12,14 @@ class Emitters(Row):
     """Rows of equal emitters along edges of the plate."""
 
     edges: str = choice("left and bottom", list(ROWS), describe="edges that carry emitters", deciding=True)
-    per_edge: int = count(24, ge=1, le=1000, describe="on each of these edges, evenly spaced", deciding=True)
+    per_edge: int = count(24, ge=1, le=256, describe="on each of these edges, evenly spaced", deciding=True)
 
 
 class Detectors(Section):
     """A row of equal detectors along edges of the plate."""
 
     edges: str = choice("right and top", list(ROWS), describe="edges that carry detectors", deciding=True)
-    per_edge: int = count(24, ge=1, le=1000, describe="on each of these edges, evenly spaced", deciding=True)
+    per_edge: int = count(24, ge=1, le=256, describe="on each of these edges, evenly spaced", deciding=True)
     width: float = quantity(
         "2 mm", "length", ge="0.05 mm", le="200 mm", describe="of one, along the edge", deciding=True
     )

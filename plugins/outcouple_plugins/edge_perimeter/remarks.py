@@ -19,19 +19,22 @@ GUIDING = np.sqrt(2)
 def remarks_on(results: Results) -> tuple[Note, ...]:
     """Contacts that take as much light as a touch: what else could tell them apart."""
     immunity, extent = MEASURES["immunity_ratio"](results), MEASURES["extent_ratio"](results)
-    if not isinstance(immunity, MetricValue):
+    counts = MEASURES["chords_darkened"](results)
+    if not isinstance(immunity, MetricValue) or not isinstance(extent, MetricValue):
         return ()
+    assert isinstance(counts, MetricValue)
     found = []
     for name, values in immunity.states.items():
         ratio = float(values[0])
         if ratio > 1:
             continue
-        apart = float(extent.states[name][0]) if isinstance(extent, MetricValue) else 1.0
+        apart = float(extent.states[name][0])
+        told = f"it darkens {counts.states[name][0]:.0f} chords, a touch {counts.values[0]:.0f}"
         found.append(
             Note(
                 "amplitude-cannot-tell",
                 f"{name!r} takes {1 / max(ratio, 1e-9):.3g} times the light of the weakest touch: no level keeps it "
-                f"out. What else could tell them apart: {_area(apart)} {TIME}",
+                f"out. What else could tell them apart: area {'can' if apart >= ALIKE else 'hardly'}, {told}. {TIME}",
                 trigger="immunity ratio below 1",
             )
         )
@@ -42,12 +45,6 @@ TIME = (
     "Time can, if the application allows: a touch comes and goes within seconds, what is spilt stays, spreads or "
     "dries, and a slow baseline takes it in."
 )
-
-
-def _area(apart: float) -> str:
-    if apart >= ALIKE:
-        return f"area can: it darkens {apart:.3g} times more or fewer chords than a touch."
-    return f"area hardly: it darkens about as many chords as a touch (ratio {apart:.3g})."
 
 
 def setting_notes(setting: Setting) -> tuple[Note, ...]:
@@ -94,13 +91,12 @@ def setting_notes(setting: Setting) -> tuple[Note, ...]:
 def failure_rows(setting: Setting) -> tuple[FailureRow, ...]:
     """Rows of the failure-direction table."""
     return (
-        FailureRow("one emitter dead", "its chords carry no light and see nothing", None, ("dark chords",)),
-        FailureRow("one detector dead", "its chords carry no light and see nothing", None, ("dark chords",)),
-        FailureRow("gasket or adhesive on a face", "takes light from chords for good", True, ("baseline",), slow=True),
-        FailureRow("grease or oil film with drops", "turns light out of many chords", True, ("extent", "baseline")),
-        FailureRow("cleaning foam", "darkens nearly all chords at once", True, ("extent",)),
-        FailureRow("scratch or chip", "scatters light out of the chords over it", True, ("baseline",), slow=True),
-        FailureRow("warming up", "emitters fade together", True, ("baseline", "guard chord"), slow=True),
-        FailureRow("object on the frame", "presses the gasket onto the plate", True, ("extent",)),
+        FailureRow("one emitter or detector dead", "its chords carry no light and see nothing", None, ("dark test",)),
+        FailureRow("gasket or adhesive on a face", "takes light from chords for good", True, ("trend",), slow=True),
+        FailureRow("grease with drops in it", "turns light out of the chords over it", True, ("trend",)),
+        FailureRow("cleaning foam", "darkens nearly all chords at once", True, ()),
+        FailureRow("scratch or chip", "scatters light out of the chords over it", True, ("trend",), slow=True),
+        FailureRow("warming up", "emitters fade together", True, ("reference",), slow=True),
+        FailureRow("something leans on the frame", "presses the gasket onto the plate", True, ()),
         FailureRow("strong light outside", "saturates or makes noise: objects are missed", None, ("dark test",)),
     )
