@@ -6,7 +6,7 @@ from typing import Any
 from urllib.parse import parse_qs
 
 import tomlkit
-from dash import ALL, Dash, Input, Output, State, ctx, no_update, set_props
+from dash import ALL, Dash, Input, Output, State, no_update, set_props
 
 from outcouple.errors import UserMistake
 from outcouple_dashboard import changes
@@ -15,7 +15,7 @@ from outcouple_dashboard.desk import Desk
 from outcouple_dashboard.documents import from_link, link_of, with_text
 from outcouple_dashboard.edits import get_value
 from outcouple_dashboard.entries import Entry, contact_of, entry_at, slider_position, slider_text, split
-from outcouple_dashboard.tags import local
+from outcouple_dashboard.tags import changed_inputs, local, pressed
 
 __all__ = ["register", "shown_text"]
 
@@ -107,13 +107,13 @@ def shown_text(desk: Desk, text: str, path_text: str) -> str | None:
 
 def _register_values(app: Dash, desk: Desk) -> None:
     def on_value(_values: Any, _sliders: Any, _backs: Any, doc: Any) -> Any:
-        trigger = ctx.triggered_id
-        if not doc or not isinstance(trigger, dict) or len(ctx.triggered) != 1:
+        if not doc:
             return no_update
-        given = ctx.triggered[0]["value"]
-        if given is None:
-            return no_update
-        return change(desk, doc, trigger["kind"], trigger["path"], given)
+        new = doc
+        for name, given in changed_inputs():  # more than one where a form was drawn anew; those hold what they held
+            if given is not None and isinstance(name, dict):
+                new = change(desk, new, name["kind"], name["path"], given)
+        return new if new is not doc else no_update
 
     app.callback(
         Output("doc", "data", allow_duplicate=True),
@@ -126,30 +126,33 @@ def _register_values(app: Dash, desk: Desk) -> None:
 
 
 def change(desk: Desk, doc: Any, kind: str, path_text: str, given: Any) -> Any:
-    """The document after one control was moved; what is wrong is said beside that control and changes nothing."""
+    """The document after one control was moved: the same where nothing changed, or where what was given cannot be.
+
+    What is wrong is said beside the control.
+    """
     text = doc["text"]
     shown: str | None = ""
     try:
         shown = shown_text(desk, text, path_text)
         if shown is None:
-            return no_update
+            return doc
         if kind == "back":
             new = changes.back_to_file(text, doc["saved"], path_text)
         else:
             if kind == "slider":
                 entry = entry_at(desk.design(text), split(path_text))
                 if entry is None or round(float(given)) == slider_position(entry):
-                    return no_update
+                    return doc
                 given = slider_text(entry.leaf, float(given))
             if str(given).strip() == shown.strip():
                 set_props(ref("value", path_text), {"error": None})
-                return no_update
+                return doc
             new = changes.put(desk.design(text), text, path_text, str(given))
         desk.design(new)
     except UserMistake as mistake:
         told = " ".join(changes.plain_mistake(mistake))
         set_props(ref("value", path_text), {"error": f"{told}. Everything shown keeps {shown or 'what it was'}."})
-        return no_update
+        return doc
     _follow_controls(desk, doc, path_text, new)
     structural = new.count("[[states]]") != text.count("[[states]]") or path_text.endswith(
         ("/touching", "/name", "/expect")
@@ -176,8 +179,8 @@ def _register_rows(app: Dash, desk: Desk) -> None:
     """States and requirements added and removed, and another sensor."""
 
     def on_rows(_removes: Any, _state: Any, _requirement: Any, sensor: Any, metric: Any, limit: Any, doc: Any) -> Any:
-        trigger = ctx.triggered_id
-        if not doc or len(ctx.triggered) != 1 or not ctx.triggered[0]["value"]:
+        trigger, _ = pressed()
+        if not doc or trigger is None:
             return no_update
         text = doc["text"]
         try:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 import dash_mantine_components as dmc
-from dash import ALL, Dash, Input, Output, State, ctx, dcc, html, no_update, set_props
+from dash import ALL, Dash, Input, Output, State, dcc, html, no_update, set_props
 
 from outcouple.design.starter import starter_text
 from outcouple.errors import UserMistake
@@ -14,7 +14,7 @@ from outcouple_dashboard.desk import Desk
 from outcouple_dashboard.documents import LONGEST_TEXT, document, with_text
 from outcouple_dashboard.editing import say
 from outcouple_dashboard.files import Changed
-from outcouple_dashboard.tags import aria, local
+from outcouple_dashboard.tags import aria, local, pressed
 
 __all__ = ["drawer", "register", "welcome"]
 
@@ -186,8 +186,8 @@ def _register_opening(app: Dash, desk: Desk) -> None:
     )
 
     def on_open(_open: Any, _go: Any, _go2: Any, uploaded: Any, first: str | None, second: str | None) -> Any:
-        trigger = ctx.triggered_id
-        if len(ctx.triggered) != 1 or not ctx.triggered[0]["value"]:
+        trigger, _ = pressed()
+        if trigger is None:
             return no_update, no_update
         try:
             doc = _opened(desk, trigger, first if trigger == "welcome-go" else second, uploaded)
@@ -228,8 +228,8 @@ def _register_opening(app: Dash, desk: Desk) -> None:
 
 def _register_saving(app: Dash, desk: Desk) -> None:
     def on_save(_save: Any, _save_as: Any, name: str | None, doc: Any) -> Any:
-        trigger = ctx.triggered_id
-        if not doc or not ctx.triggered[0]["value"]:
+        trigger, _ = pressed()
+        if not doc or trigger is None:
             return no_update
         try:
             if trigger == "save-as" or not doc["file"]:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 import dash_mantine_components as dmc
-from dash import ALL, Dash, Input, Output, State, ctx, dcc, html, no_update
+from dash import ALL, Dash, Input, Output, State, dcc, html, no_update
 
 from outcouple.errors import UserMistake
 from outcouple.outcome import Judged
@@ -15,7 +15,7 @@ from outcouple_dashboard.desk import Desk
 from outcouple_dashboard.documents import MOST_PINS, document, pin_of
 from outcouple_dashboard.editing import say
 from outcouple_dashboard.pages.design import look_of
-from outcouple_dashboard.tags import aria
+from outcouple_dashboard.tags import aria, pressed
 from outcouple_dashboard.variants import Variant, as_csv, differences, judged_rows, told, told_worst
 
 __all__ = ["layout", "register", "variants_of"]
@@ -203,12 +203,13 @@ def register(app: Dash, desk: Desk) -> None:
     _register_body(app, desk)
 
     def on_export(_csv: Any, _page: Any, doc: Any, pins: Any) -> Any:
-        if not doc or not ctx.triggered[0]["value"]:
+        trigger, _ = pressed()
+        if not doc or trigger is None:
             return no_update
         variants = variants_of(desk, doc, pins or [])
         if not variants:
             return no_update
-        if ctx.triggered_id == "compare-csv":
+        if trigger == "compare-csv":
             return {"content": as_csv(variants), "filename": "variants.csv", "type": "text/csv"}
         return {"content": page_text(variants), "filename": "variants.html", "type": "text/html"}
 
@@ -235,8 +236,8 @@ def pinned(desk: Desk, pins: list[Any], doc: Any, name: str) -> list[Any]:
 
 def _register_pins(app: Dash, desk: Desk) -> None:
     def on_pin(_add: Any, _drop: Any, pins: Any, doc: Any, name: str | None) -> Any:
-        trigger = ctx.triggered_id
-        if not doc or len(ctx.triggered) != 1 or not ctx.triggered[0]["value"]:
+        trigger, _ = pressed()
+        if not doc or trigger is None:
             return no_update, no_update
         if isinstance(trigger, dict):
             return [pin for pin in pins if pin["id"] != trigger["name"]], no_update
@@ -258,8 +259,8 @@ def _register_pins(app: Dash, desk: Desk) -> None:
     )(on_pin)
 
     def on_open(_clicks: Any, pins: Any, doc: Any) -> Any:
-        trigger = ctx.triggered_id
-        if len(ctx.triggered) != 1 or not ctx.triggered[0]["value"] or not isinstance(trigger, dict):
+        trigger, _ = pressed()
+        if trigger is None:
             return no_update
         pin = next((one for one in pins if one["id"] == trigger["name"]), None)
         if pin is None:
