@@ -135,3 +135,14 @@ def test_blind_channels_take_no_part():
 
 def test_no_decision_without_both_sides():
     assert decide([score("dry", "absent", [0], [1])], Settings()) is None
+
+
+def test_correlation_may_differ_from_sample_to_sample():
+    one = score("state", "absent", [0.0], [1.0])
+    together = present_chance(one, np.array([[1.5]]), Settings(confirm=2, window=3, correlation=np.array([0.0, 0.5])))
+    alone = [
+        present_chance(one, np.array([[1.5]]), Settings(confirm=2, window=3, correlation=np.array([rho])))[0]
+        for rho in (0.0, 0.5)
+    ]
+    assert together == pytest.approx(alone)
+    assert alone[1] > alone[0]

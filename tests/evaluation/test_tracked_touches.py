@@ -30,7 +30,7 @@ TOUCH = {"name": "touch", "expect": "present", "touching": "hydraulic oil", "obj
 class Plugin:
     @hookimpl
     def outcouple_geometries(self):
-        return [stubs.ChordStub]
+        return [stubs.ChordStub, stubs.CameraStub]
 
 
 @pytest.fixture(scope="module")
@@ -116,3 +116,22 @@ def test_a_touch_surface_has_no_demand_to_miss(host):
     found = evaluate(plate(host), advice=False, views=False)
     assert found.failures == ()
     assert "demand-open" not in [note.code for note in found.notes]
+
+
+@pytest.mark.parametrize(("demand", "unnoticed"), [("leak", 1.0), ("low level", 0.0)])
+def test_where_present_reads_high_a_dead_emitter_errs_the_other_way(host, demand, unnoticed):
+    """Light drawn out and sent back means present; without light nothing is found, which misses a leak."""
+    pale = {"patches": [{"backing": "hydraulic oil", "albedo": "60 %"}]}
+    design = design_from_mapping(
+        {
+            "geometry": "camera-stub",
+            "states": [CLEAR, dict(TOUCH, touching=pale)],
+            "readout": {"feedback_resistance": "10 Mohm", "dark_current": "0 A"},
+            "decision": {"demand": demand},
+        },
+        host=host,
+    )
+    found = evaluate(design, advice=False, views=False)
+    assert found.metrics["dead_emitter_unnoticed"].value == pytest.approx(unnoticed, abs=1e-6)
+    dead = next(row for row in found.failures if row.cause.startswith("emitter dead"))
+    assert dead.direction == ("dangerous" if unnoticed else "spurious")

@@ -82,7 +82,14 @@ def _confirmed(z: Floats, need: int, settings: Any) -> Floats:
     """Chance that ``need`` readings of the window lie z standard deviations out."""
     if settings.window == 1:
         return tail_probability(z)
-    correlation = float(np.asarray(settings.correlation).flat[0])
-    if correlation > 0:
-        return correlated_probability(z, need, settings.window, correlation=correlation)
-    return confirmed_probability(tail_probability(z), need, settings.window)
+    correlation = np.asarray(settings.correlation, dtype=float)
+    rows = np.broadcast_to(z, (max(len(z), len(correlation)), z.shape[1]))
+    found = np.empty(rows.shape)
+    for value in np.unique(correlation):
+        own = np.broadcast_to(correlation == value, len(rows))
+        found[own] = (
+            correlated_probability(rows[own], need, settings.window, correlation=float(value))
+            if value > 0
+            else confirmed_probability(tail_probability(rows[own]), need, settings.window)
+        )
+    return found
