@@ -26,7 +26,7 @@ Floats = NDArray[np.float64]
 STEP = 0.2
 """Relative step of every input; inputs at zero step by a fifth of their range's lower decade."""
 KEPT = 3
-TOO_DEAR = 100_000_000
+TOO_DEAR = 40_000_000
 """Array elements of the deciding steps from which there is no advice: several seconds."""
 DEAR = 10_000_000
 """Array elements of all steps together from which only the deciding inputs step."""
