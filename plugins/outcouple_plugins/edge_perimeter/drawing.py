@@ -37,16 +37,16 @@ def plan(setting: Setting) -> View:
 
 
 def _objects(setting: Setting) -> dict[str, tuple[float, float, float]]:
-    """Diameter, x and y of the objects of all states; of several at one place the largest."""
-    found: dict[tuple[float, float], tuple[str, float]] = {}
+    """Diameter, x and y of the objects of all states; of several at one place the first."""
+    found: dict[str, tuple[float, float, float]] = {}
     for name, state in setting.p.states.items():
         if state.object is None:
             continue
         values = (state.object.diameter, state.object.x, state.object.y)
         size, x, y = (0.0 if value is None else float(np.atleast_1d(value)[0]) for value in values)
-        if (x, y) not in found or size > found[x, y][1]:
-            found[x, y] = (name, size)
-    return {name: (size, x, y) for (x, y), (name, size) in found.items()}
+        if all(other[1:] != (x, y) for other in found.values()):
+            found[name] = (size, x, y)
+    return found
 
 
 def _chord_lines(chords: Chords, discs: list[tuple[float, float, float]]) -> tuple[RayPath, ...]:
@@ -115,7 +115,7 @@ def _box(x: float, y: float, width: float, height: float) -> Floats:
 
 
 def section(setting: Setting) -> View:
-    """A stretch of plate behind an emitter, to scale, with rays that climb at three elevations."""
+    """A stretch of plate behind an emitter and under an object, to scale, with rays that climb at three elevations."""
     p = setting.p
     chords = chords_of(setting)
     thickness = float(setting.spread(p.plate.thickness)[0])
@@ -123,18 +123,24 @@ def section(setting: Setting) -> View:
     height = float(setting.spread(p.emitters.height)[0])
     offset = float(setting.spread(p.emitters.offset)[0])
     gap = float(setting.spread(p.emitters.gap)[0]) if p.emitters.coupling == "air" else 0.0
-    outlines = (
+    outlines = [
         Outline("guide", "plate", _box(span / 2, 0, span, thickness)),
         Outline("emitter", "emitter", _box(-gap - 0.2 * thickness, offset, 0.4 * thickness, height)),
-    )
+    ]
+    spot = (0.0, 0.0)
+    for name, (size, _, _) in list(_objects(setting).items())[:1]:
+        spot = (span / 2 - size / 2, span / 2 + size / 2)
+        outlines.append(Outline("object", name, _box(span / 2, 0.8 * thickness, size, 0.6 * thickness)))
     top = float(chords.emitter.highest[0])
     index = 1.0 if chords.emitter.bonded else float(chords.emitter.index[0])
-    rays = [_climb(offset, sign * share * top, index, thickness, span, gap) for share in RAYS for sign in (1, -1)]
-    return View("cross-section", outlines, tuple(rays))
+    rays = [_climb(offset, sign * share * top, index, thickness, span, gap, spot) for share in RAYS for sign in (1, -1)]
+    return View("cross-section", tuple(outlines), tuple(rays))
 
 
-def _climb(start: float, rise: float, index: float, thickness: float, span: float, gap: float) -> RayPath:
-    """Follow one ray from the emitter through the edge along the plate."""
+def _climb(
+    start: float, rise: float, index: float, thickness: float, span: float, gap: float, spot: tuple[float, float]
+) -> RayPath:
+    """Follow one ray from the emitter through the edge along the plate; the object lies on the front over ``spot``."""
     outside = np.arcsin(np.clip(index * np.sin(rise), -1, 1))
     y = start + gap * np.tan(outside)
     points, columns, angles = [np.array([-gap, start])], [-1], [0.0]
@@ -150,7 +156,8 @@ def _climb(start: float, rise: float, index: float, thickness: float, span: floa
         x, y = x + step, y + step * slope
         points.append(np.array([x, y]))
         reflected = x < span - 1e-12
-        columns.append(FACES.index("front" if slope > 0 else "back") if reflected else -1)
+        above = SPOT if spot[0] < x < spot[1] else FACES.index("front")
+        columns.append((above if slope > 0 else FACES.index("back")) if reflected else -1)
         angles.append(np.pi / 2 - abs(rise) if reflected else 0.0)
         slope = -slope
     return RayPath(np.array(points), tuple(columns), tuple(float(angle) for angle in angles))
