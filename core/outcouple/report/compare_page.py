@@ -27,7 +27,7 @@ def comparison_pictures(found: Comparison, *, look: figures.Look = figures.LIGHT
         pictures.append(Picture("margins", "How far from each limit", margins_figure(found, look=look), text))
         text = "Dashed: the limit. Open circles: the worst at the corners, where tolerances are declared."
         pictures.append(Picture("values", "Requirement by requirement", values_figure(found, look=look), text))
-    text = "Each variant's readings as a share of its own largest, in the order of the file."
+    text = "Each variant's readings as a share of its own largest: the farther apart absent and present, the better."
     pictures.append(Picture("readings", "Readings per state", readings_figure(found, look=look), text))
     return pictures
 
@@ -42,16 +42,14 @@ def comparison_page(found: Comparison, *, look: figures.Look = figures.LIGHT) ->
     corners = corner_table(found)
     if corners:
         tables.append((f"Requirements, worst at the corners ({corner_line(found)})", corners))
-    conditions = wide_difference_table(found, condition=True)
-    if conditions:
-        tables.append(("Conditions and states differ", conditions))
-    inputs = wide_difference_table(found, condition=False)
-    if inputs:
-        tables.append(("Inputs differ", inputs))
+    both = (("Conditions and states differ", True), ("Inputs differ", False))
+    unlike = [(heading, wide_difference_table(found, condition=condition)) for heading, condition in both]
+    details = [(heading, rows) for heading, rows in unlike if rows]
     title = "Comparison: " + ", ".join(one.label for one in found.variants)
     cautions = [f"{note.severity}: {note.text} [{', '.join(labels)}]" for note, labels in shared_notes(found)]
     pictures = comparison_pictures(found, look=look)
-    return page_of(title, pictures, lead=compare_lead(found), tables=tables, cautions=cautions, look=look)
+    lead = compare_lead(found)
+    return page_of(title, pictures, lead=lead, tables=tables, cautions=cautions, details=details, look=look)
 
 
 def _sentence(line: str) -> str:

@@ -15,5 +15,5 @@ def levers_page(found: Levers, *, look: figures.Look = figures.LIGHT) -> str:
     """One self-contained HTML page."""
     text = "What one percent more of an input does to the margin that decides, as a share of its limit."
     picture = Picture("levers", "Strongest inputs", levers_figure(found, look=look), text)
-    tables = [("Inputs", levers_table(found))]
-    return page_of(found.title, [picture], lead=levers_lead(found), tables=tables, look=look)
+    details = [("Inputs", levers_table(found))]
+    return page_of(found.title, [picture], lead=levers_lead(found), details=details, look=look)

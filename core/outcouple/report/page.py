@@ -69,9 +69,10 @@ def page_of(
     lead: str = "",
     tables: Sequence[tuple[str, Sequence[Sequence[str]]]] = (),
     cautions: Sequence[str] = (),
+    details: Sequence[tuple[str, Sequence[Sequence[str]]]] = (),
     look: figures.Look = figures.LIGHT,
 ) -> str:
-    """One HTML page: title, lead, tables, pictures, cautions. Everything a user wrote is escaped."""
+    """One HTML page: title, lead, tables, pictures, cautions, more tables. Everything a user wrote is escaped."""
     from jinja2 import Environment, PackageLoader, select_autoescape
 
     environment = Environment(loader=PackageLoader("outcouple.report", "templates"), autoescape=select_autoescape())
@@ -81,6 +82,7 @@ def page_of(
         pictures=pictures,
         tables=tables,
         cautions=cautions,
+        details=details,
         plotly=_plotly_js(),
         data=json.dumps({picture.name: picture.figure for picture in pictures}).replace("<", "\\u003c"),
         config=json.dumps(dict(figures.CONFIG)),

@@ -9,6 +9,7 @@ from typing import Any
 
 from outcouple.design import Design, design_from_mapping, design_model
 from outcouple.fields import leaves
+from outcouple.fields.problems import dotted
 from outcouple.metrics import metrics_of
 from outcouple.quantities import format_quantity
 
@@ -74,7 +75,17 @@ def _row(design: Design, family: str) -> Mapping[str, Any]:
 
 
 def _written(value: Any) -> str:
-    return value if isinstance(value, str) else json.dumps(value, ensure_ascii=False)
+    """A value as a design file holds it; a name alone without its quotes."""
+    return value if isinstance(value, str) else _inline(value)
+
+
+def _inline(value: Any) -> str:
+    """Inline TOML."""
+    if isinstance(value, Mapping):
+        return "{ " + ", ".join(f"{dotted([key])} = {_inline(one)}" for key, one in value.items()) + " }"
+    if isinstance(value, list):
+        return "[" + ", ".join(_inline(one) for one in value) + "]"
+    return json.dumps(value, ensure_ascii=False)
 
 
 def under_conditions_of(first: Design, other: Design) -> Design:

@@ -70,7 +70,7 @@ def spans(found: Sweep, along: int) -> list[Span]:
     for others, margin in _lines(found.worst, along):
         good = np.concatenate([[False], margin[order] >= 0, [False]])
         starts, ends = np.flatnonzero(good[1:] & ~good[:-1]), np.flatnonzero(good[:-1] & ~good[1:]) - 1
-        for start, end in zip(starts, ends, strict=True):
+        for start, end in zip(starts.tolist(), ends.tolist(), strict=True):
             first, last = float(at[start]), float(at[end])
             before, after = float(at[max(start - 1, 0)]), float(at[min(end + 1, len(at) - 1)])
             low = max((z for z in zeros[others] if before <= z <= first), default=first)

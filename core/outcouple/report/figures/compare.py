@@ -17,14 +17,17 @@ __all__ = ["margins_figure", "readings_figure", "values_figure"]
 BOUND = 1.5
 """Margins are drawn to one and a half limits to either side; what lies beyond stands at the edge."""
 GAP = 0.035
+"""Between panels, as a share of the width."""
+PANEL = 62
+"""Height of a panel's axis and title, in pixels."""
 
 
 def margins_figure(found: Comparison, *, look: Look = LIGHT) -> dict[str, Any]:
     """A panel per variant, a bar per requirement, one axis: left of zero is missed."""
     names = [wrapped(row.label, 26) for row in found.rows][::-1]
-    layout = base_layout(look, height=110 + 34 * len(names))
+    layout = base_layout(look, height=150 + 34 * len(names))
     layout["annotations"] = []
-    layout["margin"] = {**layout["margin"], "t": 40}
+    layout["margin"] = {**layout["margin"], "t": 84}
     layout["bargap"] = 0.45
     data: list[dict[str, Any]] = []
     for at, one in enumerate(found.variants):
@@ -87,16 +90,17 @@ def values_figure(found: Comparison, *, look: Look = LIGHT) -> dict[str, Any]:
     """A panel per requirement, a dot per variant, the limit as a line; the worst at the corners as an open dot."""
     columns = min(3, len(found.rows))
     lines = -(-len(found.rows) // columns)
-    labels = [wrapped(one.label, 22) for one in found.variants][::-1]
-    each = 70 + 30 * len(labels)
-    layout = base_layout(look, height=lines * each + 40)
+    labels = [_narrow(one.label, 24) for one in found.variants][::-1]
+    each = PANEL + (46 if any("<br>" in label for label in labels) else 30) * len(labels)
+    layout = base_layout(look, height=lines * each + 32)
+    layout["margin"] = {**layout["margin"], "t": 16, "b": 16}
     layout["annotations"], layout["shapes"] = [], []
     data: list[dict[str, Any]] = []
     for at, row in enumerate(found.rows):
         line, column = divmod(at, columns)
         x_name, y_name = _axes(at)
         top = 1.0 - line / lines
-        band = [top - (1.0 / lines) * (1 - 62 / each), top - 14 / (lines * each)]
+        band = [top - (1 - PANEL / each) / lines, top]
         unit = metric_unit(row.metric)
         dots = _dots(row, labels, unit, look, x_name, y_name)
         limit = shown_number(row.cells[0].limit, row.metric.kind, unit)
@@ -104,6 +108,7 @@ def values_figure(found: Comparison, *, look: Look = LIGHT) -> dict[str, Any]:
         title = f"{row.label} ({symbol(unit)})" if unit else row.label
         layout[f"xaxis{x_name}"] = axis(
             look, title, domain=_domain(column, columns), anchor=f"y{y_name}", type="log" if log else "-", nticks=5,
+            exponentformat="power",
             zeroline=False,
         )  # fmt: skip
         layout[f"yaxis{y_name}"] = axis(
@@ -192,6 +197,11 @@ def readings_figure(found: Comparison, *, look: Look = LIGHT) -> dict[str, Any]:
     return {"data": data, "layout": layout}
 
 
+def _narrow(label: str, width: int) -> str:
+    """A label in lines that break at underscores and hyphens too."""
+    return wrapped(label.replace("_", "_\u200b ").replace("-", "-\u200b "), width).replace("\u200b ", "")
+
+
 def _wide(values: Sequence[float | None]) -> bool:
     """True where positive values span more than two decades."""
     good = [value for value in values if value is not None and np.isfinite(value)]
@@ -216,7 +226,7 @@ def _heading(at: int, count: int, label: str, verdict: str, look: Look) -> dict[
         "x": sum(_domain(at, count)) / 2,
         "y": 1.0,
         "yanchor": "bottom",
-        "text": f"<b>{verdict.upper()}</b> {label}",
+        "text": f"<b>{verdict.upper()}</b><br>{_narrow(label, max(12, 72 // count))}",
         "showarrow": False,
         "font": {"size": 13, "color": colour},
     }

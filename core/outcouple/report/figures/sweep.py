@@ -3,22 +3,25 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from itertools import product
 from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.geometry import Metric
-from outcouple.quantities import symbol
+from outcouple.quantities import format_number, format_quantity, symbol
 from outcouple.report.cells import metric_unit, shown_number
 from outcouple.report.figures.look import LIGHT, Look, axis, base_layout, ramp, wrapped
 from outcouple.studies import Axis, Limit, Sweep, spans
 
-__all__ = ["margin_figure", "metric_figure", "picture_axes", "verdict_figure"]
+__all__ = ["SERIES", "margin_figure", "metric_figure", "picture_axes", "slices", "verdict_figure"]
 
 Floats = NDArray[np.float64]
+Place = tuple[int | None, ...]
 SERIES = 7
 """Curves of one picture."""
+PLAIN = {"exponentformat": "power"}
 BOUND = 3.0
 """Margins are drawn up to this many limits above and below; beyond, a picture would hide where they are just met."""
 
@@ -30,17 +33,31 @@ def picture_axes(found: Sweep) -> tuple[int, int | None]:
     return across, next((at for at in numeric if at != across), None)
 
 
-def metric_figure(found: Sweep, name: str, *, look: Look = LIGHT) -> dict[str, Any]:
-    """One metric over the axes with the limit a requirement sets."""
+def slices(found: Sweep) -> list[Place]:
+    """Where maps are drawn on the other axes: at every word of those that hold words, in the middle of the others."""
+    across, upward = picture_axes(found)
+    if upward is None:
+        return [tuple(None for _ in found.axes)]
+    choices: list[list[int | None]] = []
+    for at, one in enumerate(found.axes):
+        count = len(one.values)
+        drawn = at in (across, upward)
+        choices.append([None] if drawn else [count // 2] if one.numeric else list(range(count)))
+    return list(product(*choices))
+
+
+def metric_figure(found: Sweep, name: str, *, at: Place | None = None, look: Look = LIGHT) -> dict[str, Any]:
+    """One metric over the axes with the limit a requirement sets; a map ``at`` one of :func:`slices`."""
     metric = found.metrics[name].metric
     across, upward = picture_axes(found)
     limits = [limit for limit in found.limits if limit.requirement.metric == name]
     if upward is None:
         return _curves(found, metric, across, limits, look)
     unit = metric_unit(metric)
-    values = _scaled(_slice(found, found.metrics[name].values, across, upward), metric)
+    place = at or slices(found)[0]
+    values = _scaled(_slice(found.metrics[name].values, place, across, upward), metric)
     bounds = [shown_number(limit.requirement.limit, metric.kind, unit) for limit in limits]
-    return _map(found, values, unit, across, upward, bounds, look)
+    return _map(found, values, unit, place, bounds, look)
 
 
 def margin_figure(found: Sweep, *, look: Look = LIGHT) -> dict[str, Any]:
@@ -49,39 +66,38 @@ def margin_figure(found: Sweep, *, look: Look = LIGHT) -> dict[str, Any]:
     layout = base_layout(look, height=360)
     layout.update(
         xaxis=_across_axis(found.axes[across], look),
-        yaxis=axis(look, "margin (share of the limit)", tickformat="+.0%", zeroline=False),
+        yaxis=axis(look, "margin (share of the limit)", tickformat="+.0%", zeroline=False, range=_around_zero(found)),
         showlegend=True,
         legend={"orientation": "h", "y": 1.02, "yanchor": "bottom", "x": 0},
         shapes=[_level(0.0, look)],
     )
     data = []
     for at, limit in enumerate(found.limits):
-        line = _slice(found, limit.scaled, across, None)
-        data.append(_line(found.axes[across], np.clip(line, -BOUND, BOUND), limit.label, look.states[at % 7], at))
+        line = np.clip(limit.scaled.ravel(), -BOUND, BOUND)
+        data.append(_line(found.axes[across], line, limit.label, look.states[at % 7], at))
     layout["shapes"] += _bands(found, across, look)
     return {"data": data, "layout": layout}
 
 
-def verdict_figure(found: Sweep, *, look: Look = LIGHT) -> dict[str, Any]:
-    """The worst margin over two axes; the line is where all requirements are just met."""
+def verdict_figure(found: Sweep, *, at: Place | None = None, look: Look = LIGHT) -> dict[str, Any]:
+    """The worst margin over two axes ``at`` one of :func:`slices`; the line is where all requirements are just met."""
     across, upward = picture_axes(found)
     if upward is None:
         return margin_figure(found, look=look)
-    values = np.clip(_slice(found, found.worst, across, upward), -BOUND, BOUND)
-    return _map(found, values * 100.0, "% of the limit", across, upward, [0.0], look)
+    place = at or slices(found)[0]
+    values = np.clip(_slice(found.worst, place, across, upward), -BOUND, BOUND)
+    return _map(found, values * 100.0, "% of the limit", place, [0.0], look)
 
 
 def _curves(found: Sweep, metric: Metric, across: int, limits: Sequence[Limit], look: Look) -> dict[str, Any]:
     unit = metric_unit(metric)
     lines = _named_lines(found, found.metrics[metric.name].values, across)
     if len(lines) == 1 and len(found.metrics[metric.name].states) > 1:
-        lines = [
-            (state, _slice(found, values, across, None)) for state, values in found.metrics[metric.name].states.items()
-        ]
+        lines = [(state, values.ravel()) for state, values in found.metrics[metric.name].states.items()]
     layout = base_layout(look, height=340)
     layout.update(
         xaxis=_across_axis(found.axes[across], look),
-        yaxis=axis(look, f"{metric.label} ({symbol(unit)})" if unit else metric.label),
+        yaxis=axis(look, f"{metric.label} ({symbol(unit)})" if unit else metric.label, **PLAIN),
         showlegend=len(lines) > 1,
         legend={"orientation": "h", "y": 1.02, "yanchor": "bottom", "x": 0},
     )
@@ -91,12 +107,11 @@ def _curves(found: Sweep, metric: Metric, across: int, limits: Sequence[Limit], 
     ]
     bounds = [shown_number(limit.requirement.limit, metric.kind, unit) for limit in limits]
     layout["shapes"] = [_level(bound, look) for bound in bounds]
-    layout["annotations"] = [_note(bound, limit, look) for bound, limit in zip(bounds, limits, strict=True)]
-    if _wide([value for _, values in lines for value in values]):
+    layout["annotations"] = [_note(bound, limit, metric, look) for bound, limit in zip(bounds, limits, strict=True)]
+    drawn = np.concatenate([_scaled(values, metric) for _, values in lines[:SERIES]])
+    if _wide(np.append(drawn, bounds)):
         layout["yaxis"]["type"] = "log"
-        layout["annotations"] = [
-            {**one, "y": float(np.log10(one["y"]))} for one in layout["annotations"] if one["y"] > 0
-        ]
+        layout["annotations"] = [{**one, "y": float(np.log10(one["y"]))} for one in layout["annotations"]]
     layout["shapes"] += _bands(found, across, look)
     return {"data": data, "layout": layout}
 
@@ -112,12 +127,10 @@ def _named_lines(found: Sweep, values: Floats, across: int) -> list[tuple[str, F
     return lines
 
 
-def _slice(found: Sweep, values: Floats, across: int, upward: int | None) -> Floats:
-    """The drawn part of an array: over the axes across and upward, the others at their middle point."""
-    kept = [at for at in (upward, across) if at is not None]
-    index = tuple(slice(None) if at in kept else len(one.values) // 2 for at, one in enumerate(found.axes))
-    part = values[index]
-    return part.T if upward is not None and upward > across else part
+def _slice(values: Floats, place: Place, across: int, upward: int) -> Floats:
+    """The drawn part of an array: rows upwards, columns across, at one place of the other axes."""
+    part = values[tuple(slice(None) if one is None else one for one in place)]
+    return part.T if upward > across else part
 
 
 def _scaled(values: Floats, metric: Metric) -> Floats:
@@ -126,9 +139,9 @@ def _scaled(values: Floats, metric: Metric) -> Floats:
     return np.where(np.isfinite(shown), shown, np.nan).reshape(values.shape)
 
 
-def _wide(values: Sequence[float]) -> bool:
+def _wide(values: Floats) -> bool:
     """True where positive values span more than two decades."""
-    good = np.array([value for value in values if np.isfinite(value)])
+    good = values[np.isfinite(values)]
     return bool(good.size and np.min(good) > 0 and np.max(good) > 100 * np.min(good))
 
 
@@ -140,7 +153,18 @@ def _places(one: Axis) -> list[Any]:
 
 def _across_axis(one: Axis, look: Look) -> dict[str, Any]:
     title = f"{one.name} ({symbol(one.unit)})" if one.unit else one.name
-    return axis(look, title, type="log" if one.scale == "log" else ("-" if one.numeric else "category"))
+    kind = "log" if one.scale == "log" else ("-" if one.numeric else "category")
+    ticks = _log_ticks(_places(one)) if kind == "log" else {}
+    return axis(look, title, type=kind, **PLAIN, **ticks)
+
+
+def _log_ticks(values: Sequence[float]) -> dict[str, Any]:
+    """Ticks at 1, 2 and 5 of every decade, at its beginning alone over more than two."""
+    low, high = np.log10(min(values)), np.log10(max(values))
+    steps = (1.0,) if high - low > 2.01 else (1.0, 2.0, 5.0)
+    decades = range(int(np.floor(low)), int(np.ceil(high)) + 1)
+    places = [step * 10.0**decade for decade in decades for step in steps]
+    return {"tickvals": places, "ticktext": [format_number(place) for place in places]}
 
 
 def _line(across: Axis, values: Floats, name: str, colour: str, at: int) -> dict[str, Any]:
@@ -157,6 +181,14 @@ def _line(across: Axis, values: Floats, name: str, colour: str, at: int) -> dict
     }
 
 
+def _around_zero(found: Sweep) -> list[float]:
+    """A range that shows both sides of the limit."""
+    values = np.concatenate([limit.scaled.ravel() for limit in found.limits])
+    shown = np.clip(values[np.isfinite(values)], -BOUND, BOUND)
+    low, high = min([-0.2, *shown]), max([0.2, *shown])
+    return [1.08 * low, 1.08 * high]
+
+
 def _level(value: float, look: Look) -> dict[str, Any]:
     return {
         "type": "line",
@@ -169,15 +201,17 @@ def _level(value: float, look: Look) -> dict[str, Any]:
     }
 
 
-def _note(value: float, limit: Limit, look: Look) -> dict[str, Any]:
-    sense = "at least" if limit.requirement.at_least is not None else "at most"
+def _note(value: float, limit: Limit, metric: Metric, look: Look) -> dict[str, Any]:
+    one = limit.requirement
+    sense = "at least" if one.at_least is not None else "at most"
+    shown = format_quantity(one.limit, metric.kind, metric.unit or None)
     return {
         "xref": "paper",
         "x": 1,
         "xanchor": "right",
         "y": value,
         "yanchor": "bottom",
-        "text": f"{sense} {limit.requirement.text}",
+        "text": f"{sense} {shown}",
         "showarrow": False,
         "font": {"size": 12, "color": look.bad},
     }
@@ -205,10 +239,10 @@ def _bands(found: Sweep, across: int, look: Look) -> list[dict[str, Any]]:
     ]
 
 
-def _map(
-    found: Sweep, values: Floats, unit: str, across: int, upward: int, bounds: Sequence[float], look: Look
-) -> dict[str, Any]:
-    """A map in one hue; a line at each bound, hatching where not all requirements are met."""
+def _map(found: Sweep, values: Floats, unit: str, place: Place, bounds: Sequence[float], look: Look) -> dict[str, Any]:
+    """A map in one hue; a line at each bound, crosses where not all requirements are met."""
+    across, upward = picture_axes(found)
+    assert upward is not None
     x, y = _places(found.axes[across]), _places(found.axes[upward])
     z = [[None if np.isnan(value) else float(value) for value in row] for row in values]
     layout = base_layout(look, height=440)
@@ -240,7 +274,7 @@ def _map(
                 "hoverinfo": "skip",
             }
         )
-    missed = np.argwhere(_slice(found, (found.verdicts != "pass").astype(float), across, upward) > 0)
+    missed = np.argwhere(_slice((found.verdicts != "pass").astype(float), place, across, upward) > 0)
     if found.limits and 0 < len(missed) <= 4000:
         data.append(
             {
