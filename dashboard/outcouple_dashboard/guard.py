@@ -12,7 +12,7 @@ from flask import Flask, Response, abort, make_response, redirect, request
 
 __all__ = ["LARGEST", "LOOPBACK", "protect"]
 
-LOOPBACK = ("localhost", "127.0.0.1", "[::1]")
+LOOPBACK = ("localhost", "127.0.0.1")
 LARGEST = 4_000_000
 """Bytes a request may hold."""
 COOKIE = "outcouple-token"

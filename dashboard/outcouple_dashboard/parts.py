@@ -14,6 +14,7 @@ from outcouple.report.figures import CONFIG
 from outcouple_dashboard.tags import aria
 
 __all__ = [
+    "SEVERITY",
     "SHAPES",
     "WORDS",
     "card",

@@ -5,6 +5,7 @@ from __future__ import annotations
 import logging
 import signal
 from collections.abc import Callable, Iterator
+from dataclasses import replace
 from functools import cache
 from multiprocessing.connection import Connection
 from typing import Any
@@ -12,10 +13,13 @@ from typing import Any
 from outcouple.design import Design, parse_design
 from outcouple.errors import UserMistake
 from outcouple.evaluation import evaluate
+from outcouple.geometry import Curve
 from outcouple.hooks import Host, build_host
 from outcouple.metrics import metrics_of
 from outcouple.outcome import Outcome
-from outcouple.studies.sweep import Sweep, sweep
+from outcouple.studies import Sweep, sweep
+from outcouple.studies.compare import Comparison
+from outcouple.studies.compare import compare as compare_variants
 
 __all__ = ["TASKS", "follow", "has_maps", "serve"]
 
@@ -57,12 +61,28 @@ def vary(step: Step, *, text: str, axes: list[str], metric: str) -> Iterator[Swe
     )
 
 
-def compare(step: Step, *, texts: list[str]) -> Iterator[tuple[str, Outcome]]:
-    """Response curve and advice of several designs, one after the other."""
-    for at, text in enumerate(texts):
-        design = design_of(text)
-        step(at / len(texts), design.title)
-        yield text, evaluate(design)
+def compare(step: Step, *, names: list[str], texts: list[str], same: bool) -> Iterator[Comparison | tuple[str, Curve]]:
+    """Variants side by side: the comparison, every response curve, then the comparison with what rescues whom."""
+    designs = [replace(design_of(text), file=f"{at}.toml") for at, text in enumerate(texts)]
+    shown = {str(at): name for at, name in enumerate(names)}
+    step(0.1, "requirements and corners")
+    yield _named(compare_variants(designs, same_conditions=same, rescues=False), shown)
+    for at, (name, design) in enumerate(zip(names, designs, strict=True)):
+        step(0.3 + 0.2 * at / len(names), f"response of {name}")
+        curve = evaluate(design, want=(), advice=False, views=False, curve=True).curve
+        if curve is not None:
+            yield name, curve
+    step(0.5, "what would rescue those that fail")
+    yield _named(compare_variants(designs, same_conditions=same), shown)
+
+
+def _named(found: Comparison, names: dict[str, str]) -> Comparison:
+    """The comparison under the names people gave."""
+    variants = tuple(
+        replace(one, label=names[one.label], dominated_by=tuple(names[other] for other in one.dominated_by))
+        for one in found.variants
+    )
+    return replace(found, variants=variants)
 
 
 TASKS: dict[str, Callable[..., Iterator[Any]]] = {"follow": follow, "vary": vary, "compare": compare}

@@ -5,18 +5,30 @@ from __future__ import annotations
 from typing import Any
 
 import dash_mantine_components as dmc
-from dash import ALL, Dash, Input, Output, State, dcc, html, no_update
+from dash import ALL, Dash, Input, Output, State, ctx, dcc, html, no_update
 
 from outcouple.errors import UserMistake
-from outcouple.outcome import Judged
-from outcouple.report.page import Picture, page_of
-from outcouple_dashboard import multiples, parts
+from outcouple.geometry import Curve
+from outcouple.report.cells import csv_text
+from outcouple.report.compare_files import comparison_rows
+from outcouple.report.compare_page import comparison_page, comparison_pictures
+from outcouple.report.compare_text import (
+    compare_lead,
+    corner_line,
+    corner_table,
+    requirement_table,
+    shared_notes,
+    variant_lines,
+    wide_difference_table,
+)
+from outcouple.studies.compare import Comparison
+from outcouple_dashboard import changes, parts
 from outcouple_dashboard.desk import Desk
 from outcouple_dashboard.documents import MOST_PINS, document, pin_of
 from outcouple_dashboard.editing import say
+from outcouple_dashboard.multiples import responses_picture
 from outcouple_dashboard.pages.design import look_of
 from outcouple_dashboard.tags import aria, pressed
-from outcouple_dashboard.variants import Variant, as_csv, differences, judged_rows, told, told_worst
 
 __all__ = ["layout", "register", "variants_of"]
 
@@ -44,9 +56,21 @@ def layout() -> Any:
                             html.Button("Pin this design", id="pin-add", className="quiet", type="button"),
                             html.Button("Download CSV", id="compare-csv", className="quiet", type="button"),
                             html.Button("Download page", id="compare-html", className="quiet", type="button"),
-                            html.Span("", id="compare-step", className="faint", role="status"),
                         ],
                         className="pair",
+                    ),
+                    html.Div(
+                        [
+                            dmc.Switch(
+                                id="compare-same",
+                                label="Judge all under the surroundings, decision and requirements of the first",
+                                size="xs",
+                                checked=False,
+                            ),
+                            html.Span("", id="compare-step", className="faint", role="status"),
+                            html.Button("Stop", id="compare-stop", className="quiet", type="button", hidden=True),
+                        ],
+                        className="pair options",
                     ),
                     dcc.Download(id="compare-file"),
                 ],
@@ -62,15 +86,16 @@ def layout() -> Any:
     )
 
 
-def variants_of(desk: Desk, doc: Any, pins: list[Any]) -> list[Variant]:
-    """The design as it stands, then every pinned one that can be evaluated."""
-    rows = [(NOW, doc["text"]), *((str(pin["name"]), str(pin["text"])) for pin in pins)]
+def variants_of(desk: Desk, doc: Any, pins: list[Any]) -> list[tuple[str, str]]:
+    """(name, text) of the design as it stands, then of every pinned one; what cannot be evaluated is left out."""
+    rows = [(NOW, str(doc["text"])), *((str(pin["name"]), str(pin["text"])) for pin in pins)]
     found = []
     for name, text in rows:
         try:
-            found.append(Variant(name, desk.design(text), desk.quick(text)))
+            desk.design(text)
         except UserMistake:
             continue
+        found.append((name, text))
     return found
 
 
@@ -111,90 +136,90 @@ def pin_rows(desk: Desk, pins: list[Any]) -> Any:
     return html.Ul(rows, className="pins")
 
 
-def body(desk: Desk, doc: Any, pins: list[Any], theme: str | None) -> list[Any]:
+def body(found: Comparison | None, curves: list[tuple[str, Curve]], theme: str | None, waiting: bool) -> list[Any]:
     """Everything below the list of variants."""
-    variants = variants_of(desk, doc, pins)
-    if len(variants) < 2:
-        told_none = "Pin at least one variant, then change the design: both appear here with what differs."
-        return [html.P(told_none, className="card wide faint")]
+    if found is None:
+        told = "Being compared…" if waiting else "Pin a variant, then change the design: both appear here side by side."
+        return [html.P(told, className="card wide faint")]
     look = look_of(theme)
-    found = [
+    cards = [
+        parts.card("Which one, and why", _lead(found, waiting), name="compare-worst", wide=True),
         parts.card(
-            "Which one, and why", html.P(told_worst(variants), id="compare-told"), name="compare-worst", wide=True
-        ),
-        parts.card("Against the requirements", _judged_table(variants), name="compare-judged", wide=True),
-        parts.card("What differs", _difference_table(variants), name="compare-differences", wide=True),
-        parts.card(
-            "Margins",
-            parts.graph("compare-margins", multiples.margins_picture(variants, look), label="Margins of every variant"),
-            name="compare-margins-card",
+            "Requirements, nominal",
+            _marked(requirement_table(found), "Requirements"),
+            name="compare-nominal",
             wide=True,
         ),
-        parts.card(
-            "Light at the read-out",
-            parts.graph("compare-shares", multiples.shares_picture(variants, look), label="Light by state and variant"),
-            name="compare-shares-card",
-            wide=True,
-            note="Circle: should read the first word of the sensor (dry, no touch …); diamond: the second.",
-        ),
+        parts.card("Requirements, worst at the corners", _corners(found), name="compare-corners", wide=True),
+        parts.card("What differs", _differences(found), name="compare-differences", wide=True),
     ]
-    responses = multiples.responses_picture(variants, look)
-    if responses is not None:
-        picture = parts.graph("compare-responses", responses, label="Response curves of every variant")
-        found.append(parts.card("Response", picture, name="compare-responses-card", wide=True))
-    return found
-
-
-def _cell(one: Judged | None) -> Any:
-    if one is None:
-        return html.Span("not asked", className="faint")
-    return html.Span([parts.mark(parts.SHAPES[one.verdict], told(one, limit=False), one.verdict)], title=one.at)
-
-
-def _judged_table(variants: list[Variant]) -> Any:
-    verdicts = [
-        parts.mark(
-            parts.SHAPES[one.outcome.verdict], parts.WORDS[one.outcome.verdict], one.outcome.verdict.replace(" ", "-")
+    for picture in comparison_pictures(found, look=look):
+        graph = parts.graph(f"compare-{picture.name}", picture.figure, label=picture.heading)
+        cards.append(
+            parts.card(picture.heading, graph, name=f"compare-card-{picture.name}", wide=True, note=picture.text)
         )
-        for one in variants
+    responses = responses_picture(curves, look)
+    if responses is not None:
+        graph = parts.graph("compare-responses", responses, label="Response curves of every variant")
+        cards.append(parts.card("Response", graph, name="compare-card-responses", wide=True))
+    notes = [
+        html.Li([parts.mark(*parts.SEVERITY[note.severity], note.severity), f"{note.text} [{', '.join(names)}]"])
+        for note, names in sorted(shared_notes(found), key=lambda row: row[0].severity != "danger")
     ]
-    rows: list[tuple[Any, ...]] = [("Verdict", "", *verdicts)]
-    for label, row in judged_rows(variants):
-        limits = list(dict.fromkeys(f"{one.sense} {one.limit_text}" for one in row if one is not None))
-        rows.append((label, " / ".join(limits), *(_cell(one) for one in row)))
-    head = ("requirement", "limit", *(one.name for one in variants))
-    return parts.table(head, rows, caption="Requirements by variant")
+    cards.append(parts.card("Cautions", html.Ul(notes, className="cautions"), name="compare-cautions", wide=True))
+    return cards
 
 
-def _difference_table(variants: list[Variant]) -> Any:
-    rows = differences(variants)
+def _lead(found: Comparison, waiting: bool) -> Any:
+    rows = [
+        html.Li(
+            [
+                html.Div(
+                    [
+                        parts.mark(parts.SHAPES[one.verdict], parts.WORDS[one.verdict], one.verdict.replace(" ", "-")),
+                        html.B(one.label),
+                    ]
+                ),
+                html.Ul([html.Li(f"{line[:1].upper()}{line[1:]}.") for line in variant_lines(found, at)]),
+            ]
+        )
+        for at, one in enumerate(found.variants)
+    ]
+    still = [html.P("Looking for what would rescue those that fail…", className="faint")] if waiting else []
+    return [html.P(compare_lead(found), id="compare-told"), *still, html.Ul(rows, className="reasons")]
+
+
+MARKED = {"ok": "pass", "MISSED": "fail", "open": "open"}
+
+
+def _marked(rows: list[list[str]], caption: str) -> Any:
+    """A table of the report with its words drawn as marks."""
+    return parts.table(rows[0], [[_mark(cell) for cell in row] for row in rows[1:]], caption=caption)
+
+
+def _mark(cell: str) -> Any:
+    word, _, rest = cell.partition(" ")
+    verdict = MARKED.get(word.rstrip(":"))
+    if verdict is None:
+        return cell
+    shown = {"pass": "met", "fail": "missed", "open": "open"}[verdict]
+    return [parts.mark(parts.SHAPES[verdict], shown, verdict), rest]
+
+
+def _corners(found: Comparison) -> Any:
+    rows = corner_table(found)
     if not rows:
-        return html.P("Nothing: these designs are the same.", className="faint")
-    return parts.table(("input", *(one.name for one in variants)), rows, caption="Differing inputs")
+        return html.P("No variant declares tolerances, so nothing is known of its corners.", className="faint")
+    return [html.P(corner_line(found), className="faint"), _marked(rows, "Worst at the corners")]
 
 
-def page_text(variants: list[Variant]) -> str:
-    """The comparison as one HTML page."""
-    look = look_of("light")
-    judged = [("requirement", *(one.name for one in variants))]
-    judged += [(label, *(told(one) for one in row)) for label, row in judged_rows(variants)]
-    differing = [("input", *(one.name for one in variants)), *differences(variants)]
-    pictures = [
-        Picture("margins", "Margins", multiples.margins_picture(variants, look)),
-        Picture("light", "Light at the read-out", multiples.shares_picture(variants, look)),
-    ]
-    cautions = dict.fromkeys(
-        note.text + (f" Decides: {note.decides}." if note.decides else "")
-        for one in variants
-        for note in one.outcome.notes
-    )
-    return page_of(
-        "Variants side by side",
-        pictures,
-        lead=told_worst(variants),
-        tables=[("Against the requirements", judged), ("What differs", differing)],
-        cautions=list(cautions),
-    )
+def _differences(found: Comparison) -> Any:
+    shown: list[Any] = []
+    for condition, heading in ((False, "Inputs"), (True, "Conditions, states, requirements")):
+        rows = wide_difference_table(found, condition=condition)
+        if rows:
+            shown += [html.H3(heading), parts.table(rows[0], rows[1:], caption=heading)]
+    return shown or html.P("Nothing: these designs are the same.", className="faint")
 
 
 def register(app: Dash, desk: Desk) -> None:
@@ -202,25 +227,35 @@ def register(app: Dash, desk: Desk) -> None:
     _register_pins(app, desk)
     _register_body(app, desk)
 
-    def on_export(_csv: Any, _page: Any, doc: Any, pins: Any) -> Any:
+    def on_export(_csv: Any, _page: Any, number: str | None, tab: str) -> Any:
         trigger, _ = pressed()
-        if not doc or trigger is None:
+        found, _ = found_by(desk, number, tab)
+        if trigger is None:
             return no_update
-        variants = variants_of(desk, doc, pins or [])
-        if not variants:
+        if found is None:
+            say("There is nothing to download yet: pin a variant first.")
             return no_update
         if trigger == "compare-csv":
-            return {"content": as_csv(variants), "filename": "variants.csv", "type": "text/csv"}
-        return {"content": page_text(variants), "filename": "variants.html", "type": "text/html"}
+            return {"content": csv_text(comparison_rows(found)), "filename": "variants.csv", "type": "text/csv"}
+        return {"content": comparison_page(found), "filename": "variants.html", "type": "text/html"}
 
     app.callback(
         Output("compare-file", "data"),
         Input("compare-csv", "n_clicks"),
         Input("compare-html", "n_clicks"),
-        State("doc", "data"),
-        State("pins", "data"),
+        State("compare-job", "data"),
+        State("tab", "data"),
         prevent_initial_call=True,
     )(on_export)
+
+
+def found_by(desk: Desk, number: str | None, tab: str) -> tuple[Comparison | None, list[tuple[str, Curve]]]:
+    """The comparison a job has come to so far, and the response curves."""
+    job = desk.jobs.find(number, tab)
+    parts_so_far = job.parts if job is not None else []
+    found = [part for part in parts_so_far if isinstance(part, Comparison)]
+    curves = [part for part in parts_so_far if isinstance(part, tuple)]
+    return (found[-1] if found else None), curves
 
 
 def pinned(desk: Desk, pins: list[Any], doc: Any, name: str) -> list[Any]:
@@ -279,29 +314,22 @@ def _register_pins(app: Dash, desk: Desk) -> None:
 
 
 def _register_body(app: Dash, desk: Desk) -> None:
-    def on_variants(doc: Any, pins: Any, pathname: str, theme: str | None, _compared: Any) -> Any:
+    def on_pins(pins: Any, pathname: str, _doc: Any) -> Any:
+        return pin_rows(desk, pins or []) if pathname == "/compare" else no_update
+
+    app.callback(Output("pin-list", "children"), Input("pins", "data"), Input("url", "pathname"), Input("doc", "data"))(
+        on_pins
+    )
+
+    def on_change(doc: Any, pins: Any, pathname: str, same: Any, tab: str) -> Any:
         if not doc or pathname != "/compare":
             return no_update, no_update
-        return pin_rows(desk, pins or []), body(desk, doc, pins or [], theme)
-
-    app.callback(
-        Output("pin-list", "children"),
-        Output("compare-body", "children"),
-        Input("doc", "data"),
-        Input("pins", "data"),
-        Input("url", "pathname"),
-        Input("theme", "data"),
-        Input("compared", "data"),
-    )(on_variants)
-
-    def on_change(doc: Any, pins: Any, pathname: str, tab: str) -> Any:
-        if not doc or pathname != "/compare" or not pins:
-            return no_update, no_update
-        texts = [doc["text"], *(str(pin["text"]) for pin in pins)]
-        texts = [text for text in dict.fromkeys(texts) if not desk.complete.peek(text)]
-        if not texts:
-            return no_update, True
-        return desk.jobs.start(tab, "compare", texts=texts).number, False
+        rows = variants_of(desk, doc, pins or [])
+        if len(rows) < 2:
+            return None, False
+        names, texts = zip(*rows, strict=True)
+        job = desk.jobs.start(tab, "compare", names=list(names), texts=list(texts), same=bool(same))
+        return job.number, False
 
     app.callback(
         Output("compare-job", "data"),
@@ -309,28 +337,40 @@ def _register_body(app: Dash, desk: Desk) -> None:
         Input("doc", "data"),
         Input("pins", "data"),
         Input("url", "pathname"),
+        Input("compare-same", "checked"),
         State("tab", "data"),
         prevent_initial_call=True,
     )(on_change)
 
-    def on_tick(_ticks: Any, number: str | None, compared: Any, tab: str) -> Any:
+    def on_tick(_ticks: Any, _stop: Any, number: str | None, seen: Any, tab: str) -> Any:
+        if ctx.triggered_id == "compare-stop":
+            desk.jobs.cancel(number, tab)
         job = desk.jobs.find(number, tab)
         if job is None:
-            return no_update, True, ""
-        for text, outcome in job.parts:
-            if not desk.complete.peek(text):
-                desk.whole.put(text, outcome)
-        seen = [number, len(job.parts), job.over]
-        told_now = "" if job.over else f"Computing: {job.step or 'waiting for a free worker'}…"
-        return no_update if seen == compared else seen, job.over, " ".join(job.why) or told_now
+            return ["", 0, True], True, "", True
+        over = job.over or job.cancelled.is_set()
+        new = [number, len(job.parts), over]
+        told = " ".join(changes.plain_mistake(UserMistake(*job.why))) if over else f"Computing: {job.step or '…'}"
+        return no_update if new == seen else new, over, told, over
 
     app.callback(
         Output("compared", "data"),
         Output("compare-clock", "disabled", allow_duplicate=True),
         Output("compare-step", "children"),
+        Output("compare-stop", "hidden"),
         Input("compare-clock", "n_intervals"),
+        Input("compare-stop", "n_clicks"),
         State("compare-job", "data"),
         State("compared", "data"),
         State("tab", "data"),
         prevent_initial_call=True,
     )(on_tick)
+
+    def on_compared(compared: Any, theme: str | None, tab: str) -> Any:
+        number, _, over = compared or ["", 0, True]
+        found, curves = found_by(desk, number, tab)
+        return body(found, curves, theme, not over)
+
+    app.callback(
+        Output("compare-body", "children"), Input("compared", "data"), Input("theme", "data"), State("tab", "data")
+    )(on_compared)

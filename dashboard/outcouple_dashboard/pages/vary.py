@@ -12,15 +12,15 @@ from dash import Dash, Input, Output, State, ctx, dcc, html, no_update
 from outcouple.design import Design
 from outcouple.errors import UserMistake
 from outcouple.metrics import metrics_of
-from outcouple.quantities import format_quantity
-from outcouple.studies.sweep import Sweep
+from outcouple.report.figures.sweep import picture_axes
+from outcouple.studies import Sweep
 from outcouple_dashboard import changes, parts
 from outcouple_dashboard.desk import Desk
 from outcouple_dashboard.documents import with_text
 from outcouple_dashboard.editing import say
 from outcouple_dashboard.entries import join
 from outcouple_dashboard.pages.design import look_of
-from outcouple_dashboard.pictures import WORST, sweep_picture, swept_values
+from outcouple_dashboard.pictures import WORST, clicked_at, sweep_picture, swept_text
 from outcouple_dashboard.ranges import MAP_POINTS, POINTS, Varying, find_varying, sentence, span_of, varying
 from outcouple_dashboard.tags import aria, local
 
@@ -76,7 +76,7 @@ def layout() -> Any:
             html.Section(
                 [
                     html.H2("", id="vary-heading"),
-                    parts.graph("vary-picture", height=430, label="What the sweep found"),
+                    parts.graph("vary-picture", height=440, label="What the sweep found"),
                     html.P("", id="vary-told", className="faint"),
                 ],
                 className="card wide",
@@ -198,18 +198,18 @@ def present_of(design: Design, found: Sweep) -> list[Any]:
 
 def points_of(found: Sweep, metric: str) -> tuple[list[dict[str, Any]], list[dict[str, Any]]]:
     """(columns, rows) of the table of points."""
-    label, kind, unit, values = swept_values(found, metric)
-    verdicts, worst = found.verdicts, found.worst
+    verdicts, texts = found.verdicts, [one.texts() for one in found.axes]
     columns = [{"field": f"axis{at}", "headerName": one.name} for at, one in enumerate(found.axes)]
-    if metric != WORST:
-        columns.append({"field": "value", "headerName": label})
-    columns += [{"field": "margin", "headerName": "least margin"}, {"field": "verdict", "headerName": "requirements"}]
-    texts = [one.texts() for one in found.axes]
+    shown = list(dict.fromkeys([metric, WORST]))
+    columns += [
+        {"field": f"value{n}", "headerName": swept_text(found, name, (0,) * len(found.axes))[0]}
+        for n, name in enumerate(shown)
+    ]
+    columns.append({"field": "verdict", "headerName": "requirements"})
     rows = []
     for at in np.ndindex(found.shape):
         row: dict[str, Any] = {f"axis{n}": texts[n][place] for n, place in enumerate(at)}
-        row["value"] = format_quantity(float(values[at]), kind, unit=unit or None)
-        row["margin"] = "–" if np.isnan(worst[at]) else f"{worst[at]:+.0%}"
+        row |= {f"value{n}": swept_text(found, name, at)[1] for n, name in enumerate(shown)}
         row["verdict"] = WORDS[str(verdicts[at])]
         row["at"] = [int(place) for place in at]
         rows.append(row)
@@ -218,24 +218,23 @@ def points_of(found: Sweep, metric: str) -> tuple[list[dict[str, Any]], list[dic
 
 def told_of(found: Sweep) -> str:
     """What the marks mean, and where the requirements are met."""
-    now = "The diamond is the design as it stands."
+    now = "The diamond, or the line called now, is the design as it stands."
     if not found.limits:
         return f"{now} No requirements are stated."
     good, count = int(np.sum(found.verdicts == "pass")), found.done.size
-    border = "Green marks" if len(found.axes) == 1 else "The orange line borders"
+    marks = "Shaded" if picture_axes(found)[1] is None else "Without crosses"
     why = "; ".join(f"{limit.label} is open: {limit.why}" for limit in found.limits if limit.why)
-    told = f"{now} {border} where all requirements are met: {good} of {count} points."
+    told = f"{now} {marks}: all requirements are met, which {good} of {count} points do."
     return f"{told} {why}" if why else told
 
 
 def picked_at(found: Sweep, at: list[int], metric: str) -> dict[str, Any]:
     """A point as it is told and taken over."""
     texts = [one.texts()[place] for one, place in zip(found.axes, at, strict=True)]
-    label, kind, unit, values = swept_values(found, metric)
-    value = format_quantity(float(values[tuple(at)]), kind, unit=unit or None)
+    label, value = swept_text(found, metric, tuple(at))
     where = ", ".join(f"{one.name} = {text}" for one, text in zip(found.axes, texts, strict=True))
     return {
-        "told": f"{where}: {label} {value}, requirements {WORDS[str(found.verdicts[tuple(at)])]}",
+        "told": f"{where}: {label} {value}; requirements: {WORDS[str(found.verdicts[tuple(at)])]}",
         "values": {one.name: text for one, text in zip(found.axes, texts, strict=True)},
     }
 
@@ -376,7 +375,8 @@ def _register_result(app: Dash, desk: Desk) -> None:
         figure = sweep_picture(found, metric, present_of(desk.design(doc["text"]), found), look_of(theme))
         columns, rows = points_of(found, metric)
         names = " and ".join(one.name for one in found.axes)
-        heading = f"{swept_values(found, metric)[0].capitalize()} against {names}"
+        what = metrics_of(desk.design(doc["text"]).geometry)[metric].label if metric != WORST else "margins"
+        heading = f"{what.capitalize()} against {names}"
         return figure, heading, told_of(found), columns, rows, False, False, False
 
     app.callback(
@@ -436,13 +436,3 @@ def _register_result(app: Dash, desk: Desk) -> None:
         prevent_initial_call=True,
     )(on_take)
     local(app, "redraw", Output("vary-result", "title"), Input("vary-result", "hidden"), prevent_initial_call=True)
-
-
-def clicked_at(found: Sweep, click: Any) -> list[int] | None:
-    """Indices of the point that was clicked in the picture."""
-    point = (click or {}).get("points", [{}])[0]
-    if len(found.axes) == 1:
-        index = point.get("pointNumber") if point.get("curveNumber") == 0 else None
-        return None if index is None else [int(index)]
-    index = point.get("pointNumber")
-    return [int(index[1]), int(index[0])] if isinstance(index, list) and len(index) == 2 else None
