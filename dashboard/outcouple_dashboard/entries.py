@@ -9,7 +9,8 @@ from typing import Any
 
 from outcouple.design import Design, design_model
 from outcouple.design.states import ObjectPlace
-from outcouple.fields import Leaf, leaves
+from outcouple.errors import UserMistake
+from outcouple.fields import Leaf, leaves, parse_leaf
 from outcouple.metrics import metrics_of
 from outcouple.quantities import format_quantity, from_unit, in_unit
 from outcouple.touching import Touching
@@ -23,10 +24,12 @@ __all__ = [
     "join",
     "requirement_entries",
     "section_groups",
+    "short_text",
     "slider_position",
     "slider_text",
     "split",
     "state_entries",
+    "within",
 ]
 
 Path = tuple[str, ...]
@@ -57,9 +60,6 @@ class Entry:
     @property
     def value(self) -> float | None:
         """SI value of a number, None where it is no number or unset."""
-        from outcouple.errors import UserMistake
-        from outcouple.fields import parse_leaf
-
         try:
             found = parse_leaf(self.leaf, self.text) if self.text else None
         except UserMistake:
@@ -184,11 +184,22 @@ def entry_at(design: Design, path: Path) -> Entry | None:
     return None
 
 
+def within(leaf: Leaf, value: float) -> float:
+    """A value moved into the limits; a thousandth of the range inside one that is itself left out."""
+    low, high = leaf.low, leaf.high
+    step = (high - low) / STEPS if low is not None and high is not None else abs(low or high or 1.0) / STEPS
+    if low is not None and leaf.lowest is not None and leaf.below(value):
+        value = low + (step if leaf.lowest.open else 0.0)
+    if high is not None and leaf.highest is not None and leaf.above(value):
+        value = high - (step if leaf.highest.open else 0.0)
+    return value
+
+
 def _scale(leaf: Leaf) -> tuple[float, float, bool] | None:
     """(lower end, upper end, logarithmic) of a slider in the leaf's own unit; None where it can have none."""
     if leaf.what not in ("quantity", "count") or leaf.low is None or leaf.high is None or math.isinf(leaf.high):
         return None
-    low, high = (float(in_unit(end, leaf.kind, leaf.unit)) for end in (leaf.low, leaf.high))
+    low, high = (float(in_unit(within(leaf, end), leaf.kind, leaf.unit)) for end in (leaf.low, leaf.high))
     if leaf.slider == "log" and high > 0:
         return max(low, high / 10**DECADES), high, True
     return low, high, False
@@ -219,5 +230,15 @@ def slider_text(leaf: Leaf, position: float) -> str:
     if leaf.what == "count":
         return str(round(shown))
     shown = float(f"{shown:.3g}")
-    value = leaf.clip(float(from_unit(shown, leaf.kind, leaf.unit)))
-    return format_quantity(value, leaf.kind, unit=leaf.unit or None, digits=4)
+    value = within(leaf, float(from_unit(shown, leaf.kind, leaf.unit)))
+    return short_text(leaf, value, 4)
+
+
+def short_text(leaf: Leaf, value: float, digits: int) -> str:
+    """A value in a few digits; in more, where rounding would carry it over a limit."""
+    text = format_quantity(value, leaf.kind, unit=leaf.unit or None, digits=digits)
+    try:
+        parse_leaf(leaf, text)
+    except UserMistake:
+        return leaf.text(value)
+    return text

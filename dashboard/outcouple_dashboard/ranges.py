@@ -5,8 +5,9 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from outcouple.design import Design
-from outcouple.quantities import format_quantity
-from outcouple_dashboard.entries import Entry, section_groups, state_entries, words
+from outcouple.errors import UserMistake
+from outcouple.fields import Leaf, parse_leaf
+from outcouple_dashboard.entries import Entry, section_groups, short_text, state_entries, within, words
 
 __all__ = ["Varying", "find_varying", "sentence", "span_of", "varying"]
 
@@ -79,15 +80,11 @@ def span_of(one: Varying) -> tuple[str, str]:
         low, high = 0.0, 10 * leaf.small_step()
     else:
         low, high = sorted((value / 2, value * 2))
-    low, high = leaf.clip(low), leaf.clip(high)
+    low, high = within(leaf, low), within(leaf, high)
     if leaf.what == "count":
         low, high = max(int(low), 1), max(int(high), int(low) + 1)
         return str(low), str(high)
-    return _written(low, leaf.kind, leaf.unit), _written(high, leaf.kind, leaf.unit)
-
-
-def _written(value: float, kind: str, unit: str) -> str:
-    return format_quantity(value, kind, unit=unit or None, digits=3)
+    return short_text(leaf, low, 3), short_text(leaf, high, 3)
 
 
 def sentence(one: Varying, start: str, stop: str, points: int) -> str:
@@ -96,8 +93,16 @@ def sentence(one: Varying, start: str, stop: str, points: int) -> str:
         return f"{one.name} in {start}"
     if one.entry.leaf.what == "count":
         return f"{one.name} in {', '.join(_counts(start, stop, points))}"
-    spaced = " log" if one.entry.leaf.slider == "log" else ""
+    spaced = " log" if one.entry.leaf.slider == "log" and _positive(one.entry.leaf, start, stop) else ""
     return f"{one.name} from {start} to {stop} in {points}{spaced}"
+
+
+def _positive(leaf: Leaf, *texts: str) -> bool:
+    """True where all texts are values above zero; what does not read is left for the study to refuse."""
+    try:
+        return all(float(parse_leaf(leaf, text)) > 0 for text in texts)
+    except UserMistake:
+        return False
 
 
 def _counts(start: str, stop: str, points: int) -> list[str]:
