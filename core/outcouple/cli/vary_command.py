@@ -15,6 +15,7 @@ __all__ = ["command"]
 @design_argument
 @click.argument("axes", nargs=-1)
 @click.option("--metric", "metrics", multiple=True, help="A metric beside those that requirements name.")
+@click.option("--maps", is_flag=True, help="Also requirements that cost a map over the surface, at every point.")
 @click.option("--csv", type=click.Path(), default=None, help="Write all points as a table, with NAME.json beside it.")
 @click.option("--out", type=click.Path(), default=None, help="Write a page.html with curves or maps.")
 @click.option("--dark", is_flag=True, help="Dark colours for --out.")
@@ -24,6 +25,7 @@ def command(
     file: str,
     axes: tuple[str, ...],
     metrics: tuple[str, ...],
+    maps: bool,
     csv: str | None,
     out: str | None,
     dark: bool,
@@ -49,7 +51,7 @@ def command(
     check_ending("--csv", csv, ".csv")
     design = load_design(file)
     with progress_line("sweep") as progress, pool(workers) as executor:
-        found = sweep(design, axes, metrics=metrics, executor=executor, progress=progress)
+        found = sweep(design, axes, metrics=metrics, maps=maps, executor=executor, progress=progress)
     if as_json:
         from outcouple.report.sweep_files import sweep_manifest
 

@@ -22,6 +22,7 @@ from outcouple.studies.corners import CORNERS, Cornered, Worst, evaluate_corners
 from outcouple.studies.differences import Difference, differences, under_conditions_of
 from outcouple.studies.margins import label_of, scale_of
 from outcouple.studies.rescue import Rescue, rescue
+from outcouple.studies.sweep import NEEDS_MAP
 
 __all__ = ["Cell", "Comparison", "Row", "Variant", "compare"]
 
@@ -257,7 +258,7 @@ class _Column:
         if one.metric not in self.known:
             return Missing(f"a {self.design.geometry.name} has no such metric")
         if one not in self.evaluated:
-            return Missing("needs a map, which was not asked for (--maps)", "open")
+            return NEEDS_MAP
         if one.state and one.state not in {name for pair in self.states for name in pair}:
             return Missing(f"has no state {one.state!r}")
         return value_for(one, self.batch.metrics[one.metric], self.states)

@@ -47,7 +47,7 @@ class Place:
             return _plain(text)
         if self.leaf.what == "flag":
             return parse_leaf(self.leaf, {"true": True, "false": False}.get(text, text))
-        return parse_leaf(self.leaf, _plain(text) if self.leaf.what == "count" else _number_or_text(text))
+        return parse_leaf(self.leaf, _plain(text) if self.leaf.what == "count" else text)
 
     def text(self, value: Any) -> str:
         """A value as a person writes it."""
@@ -62,13 +62,6 @@ def _plain(text: str) -> Any:
         except ValueError:
             continue
     return text
-
-
-def _number_or_text(text: str) -> Any:
-    try:
-        return float(text)
-    except ValueError:
-        return text
 
 
 def find_place(design: Design, name: str) -> Place:

@@ -19,16 +19,18 @@ from outcouple.geometry import Metric, MetricValue, Missing
 from outcouple.metrics import metrics_of
 from outcouple.notes import Note, merge_notes
 from outcouple.studies.axes import Axis, read_axes
+from outcouple.studies.margins import label_of, scale_of
 from outcouple.studies.places import with_values
 from outcouple.studies.work import Task, chunked, elements_of, run_tasks
 
-__all__ = ["Limit", "Sweep", "SweptMetric", "sweep", "wanted_metrics"]
+__all__ = ["NEEDS_MAP", "Limit", "Sweep", "SweptMetric", "sweep", "wanted_metrics"]
 
 Floats = NDArray[np.float64]
 Bools = NDArray[np.bool_]
 
 ALWAYS = ("margin_sigma",)
 """Metrics of every sweep, beside those that requirements name."""
+NEEDS_MAP = Missing("needs a map, which was not asked for (--maps)", "open")
 
 
 @dataclass(frozen=True)
@@ -63,7 +65,7 @@ class Limit:
     @property
     def scaled(self) -> Floats:
         """Margins in units of the limit."""
-        return self.margin / (abs(self.requirement.limit) or 1.0)
+        return self.margin / scale_of(self.requirement)
 
     @property
     def met(self) -> Bools:
@@ -125,6 +127,7 @@ def sweep(
     axes: Sequence[str] | Sequence[Axis],
     *,
     metrics: Sequence[str] = (),
+    maps: bool = False,
     executor: Executor | None = None,
     progress: Callable[[int, int], None] | None = None,
 ) -> Sweep:
@@ -132,6 +135,7 @@ def sweep(
 
     axes      sentences ("plate.thickness from 2 mm to 10 mm in 17"), or axes made of them
     metrics   names of metrics beside those that requirements name
+    maps      also what requirements ask of metrics that cost a map; without it they stay open
     executor  any of ``concurrent.futures``; the numbers are the same with and without
     progress  called with the points done and the points of all
 
@@ -139,7 +143,7 @@ def sweep(
     Raises UserMistake for axes, metrics and values that cannot be taken.
     """
     read = tuple(axis for axis in axes if isinstance(axis, Axis)) or read_axes(design, [str(text) for text in axes])
-    want = wanted_metrics(design, metrics)
+    want = wanted_metrics(design, metrics, maps=maps)
     grid = _Grid(design, read, want)
     size = elements_of(design) if any(axis.runs for axis in read) else None
     designs = _designs(design, read)
@@ -157,13 +161,13 @@ def sweep(
     return grid.sweep()
 
 
-def wanted_metrics(design: Design, metrics: Sequence[str]) -> tuple[str, ...]:
-    """Names of metrics to evaluate: those asked for, those of requirements, the margin. Maps only where asked for."""
+def wanted_metrics(design: Design, metrics: Sequence[str], *, maps: bool = False) -> tuple[str, ...]:
+    """Names of metrics to evaluate: those of requirements, those asked for, the margin. Maps only where asked for."""
     known = metrics_of(design.geometry)
     for name in metrics:
         if name not in known:
             raise UserMistake(f"--metric {name}: no such metric{nearest(name, known)}; there are: {', '.join(known)}")
-    required = [one.metric for one in design.requirements]
+    required = [one.metric for one in design.requirements if maps or known[one.metric].cost == "scalar"]
     return tuple(dict.fromkeys([*required, *metrics, *ALWAYS]))
 
 
@@ -228,7 +232,7 @@ class _Grid:
         for state, values in batch.signals.items():
             self.signals.setdefault(state, self._empty())[at] = values
         for one, margin in zip(task.design.requirements, self.margins, strict=True):
-            picked = value_for(one, batch.metrics[one.metric], families)
+            picked = value_for(one, batch.metrics.get(one.metric, NEEDS_MAP), families)
             if one.over == "nominal" and isinstance(picked, MetricValue):
                 margin[at] = one.margin(picked.values)
         for note in batch.notes:
@@ -256,7 +260,7 @@ class _Grid:
             },
             signals={state: values.reshape(self.shape) for state, values in self.signals.items()},
             limits=tuple(
-                Limit(one, _label(one, known[one.metric]), margin.reshape(self.shape), self._open(one))
+                Limit(one, label_of(one, known[one.metric]), margin.reshape(self.shape), self._open(one))
                 for one, margin in zip(self.design.requirements, self.margins, strict=True)
             ),
             done=self.done.reshape(self.shape),
@@ -268,8 +272,6 @@ class _Grid:
     def _open(self, one: Requirement) -> str:
         if one.over != "nominal":
             return f"asked for over {one.over}, which a sweep does not run"
+        if one.metric not in self.want:
+            return NEEDS_MAP.why
         return "; ".join(self.why[one.metric]) if np.all(np.isnan(self.values[one.metric])) else ""
-
-
-def _label(one: Requirement, metric: Metric) -> str:
-    return f"{metric.label} [{one.state}]" if one.state else metric.label
