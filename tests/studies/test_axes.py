@@ -49,7 +49,7 @@ def test_materials_choices_and_counts_are_other_designs() -> None:
     counts = read_axis(TANK, "readout.bits from 8 to 16 in 5")
     assert counts.values == (8, 10, 12, 14, 16)
     words = read_axis(TANK, "readout.modulation in steady, difference")
-    assert not (materials.runs or counts.runs or words.runs)
+    assert [axis.runs for axis in (materials, counts, words)] == [False] * 3
     assert with_values(TANK, {counts.place: 16}).sections.readout.bits == 16  # type: ignore[attr-defined]
 
 

@@ -21,7 +21,7 @@ def sweep_pictures(found: Sweep, *, look: figures.Look = figures.LIGHT) -> list[
     _, upward = picture_axes(found)
     pictures = []
     if found.limits and upward is None and len(found.axes) == 1:
-        text = "Above zero a requirement is met; where the ground is shaded, all are. Drawn to three limits either side."
+        text = "Above zero a requirement is met; on shaded ground all are. Drawn to three limits either side."
         pictures.append(Picture("margins", "How far from the limits", margin_figure(found, look=look), text))
     for number, place in enumerate(slices(found)):
         where = _where(found, place)
