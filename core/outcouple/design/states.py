@@ -16,6 +16,8 @@ from outcouple.touching import Touching
 __all__ = ["ObjectPlace", "Requirement", "State"]
 
 Floats = NDArray[np.float64]
+ROUNDING = 1e-9
+"""Share of a limit by which a value may miss it through rounding alone."""
 
 
 class ObjectPlace(Section):
@@ -109,9 +111,13 @@ class Requirement:
 
     def met(self, value: Any) -> Any:
         """True where a value keeps the limit; nan never does."""
-        return np.asarray(value) >= self.limit if self.at_least is not None else np.asarray(value) <= self.limit
+        return self.margin(value) >= 0.0
 
     def margin(self, value: Any) -> Any:
-        """Distance to the limit in the metric's own unit, positive where it is met."""
+        """Distance to the limit in the metric's own unit, positive where it is met; zero within rounding of the limit.
+
+        A level set for one false alarm a year gives 1 + 1e-14 of them: that is the limit, not a miss.
+        """
         sign = 1.0 if self.at_least is not None else -1.0
-        return sign * (np.asarray(value) - self.limit)
+        distance = np.asarray(sign * (np.asarray(value) - self.limit))
+        return np.where(np.abs(distance) <= ROUNDING * abs(self.limit), 0.0, distance)
