@@ -1,4 +1,4 @@
-"""Calls a page's callbacks over its own HTTP door, without a browser: what a browser would send, and what comes back."""
+"""Calls a page's callbacks over its own HTTP door, without a browser: what one would send, and what comes back."""
 
 from __future__ import annotations
 
@@ -39,7 +39,7 @@ class Calls:
     def fire(self, output: str, trigger: Any, prop: str, values: dict[str, Any]) -> dict[str, Any]:
         """Fire a callback: ``trigger`` is the id that changed, ``values`` maps "id.prop" to what the page holds.
 
-        Of wildcard inputs only the one that changed is on the page. Gives {"id.prop": value} of everything that changes.
+        Of wildcard inputs only the one that changed is on the page. Gives {"id.prop": value} of all that changes.
         """
         part = trigger if isinstance(trigger, str) else f'"{trigger["kind"]}"'
         one = self.spec(output, part)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import os
 import shutil
+import sys
 import tempfile
 import threading
 from pathlib import Path
@@ -19,9 +20,15 @@ from .visitor import Visitor
 DEMOS = Path(__file__).parents[2] / "demo_configs"
 TANK = "oil_tank_overfill.toml"
 FLAGS = (
-    "--headless --no-sandbox --disable-gpu --disable-quic --no-first-run --disable-background-networking "
-    "--disable-component-update --disable-sync"
-).split()
+    "--headless",
+    "--no-sandbox",
+    "--disable-gpu",
+    "--disable-quic",
+    "--no-first-run",
+    "--disable-background-networking",
+    "--disable-component-update",
+    "--disable-sync",
+)
 
 
 @pytest.fixture
@@ -101,3 +108,17 @@ def visitor(chromium, served):
     chromium.get("about:blank")
     assert complaints == []
     assert outside == []
+
+
+@pytest.fixture
+def stranger(tmp_path_factory, monkeypatch):
+    """A plugin as a stranger installs it: a module and its entry point, on the path of this process and its workers."""
+    site = tmp_path_factory.mktemp("site")
+    shutil.copy(Path(__file__).parent / "stranger" / "stranger_sensor.py", site)
+    info = site / "stranger_sensor-1.0.dist-info"
+    info.mkdir()
+    (info / "METADATA").write_text("Metadata-Version: 2.1\nName: stranger-sensor\nVersion: 1.0\n")
+    (info / "entry_points.txt").write_text("[outcouple]\nstranger = stranger_sensor\n")
+    monkeypatch.syspath_prepend(str(site))
+    yield site
+    sys.modules.pop("stranger_sensor", None)

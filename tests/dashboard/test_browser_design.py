@@ -109,8 +109,8 @@ def test_a_save_over_somebody_elses_change_is_refused(visitor, folder):
 def test_every_control_has_a_name_and_the_page_its_landmarks(visitor):
     visitor.open(TANK)
     script = """
-        const named = (e) => e.getAttribute('aria-label') || e.getAttribute('aria-labelledby') || (e.labels && e.labels.length)
-          || e.textContent.trim() || e.getAttribute('title');
+        const named = (e) => e.getAttribute('aria-label') || e.getAttribute('aria-labelledby')
+          || (e.labels && e.labels.length) || e.textContent.trim() || e.getAttribute('title');
         const shown = (e) => e.offsetParent !== null;
         return Array.from(document.querySelectorAll("input:not([type=hidden]), button, a, textarea, [role=slider]"))
           .filter((e) => shown(e) && !e.ariaHidden).filter((e) => !named(e)).map((e) => e.outerHTML.slice(0, 160));

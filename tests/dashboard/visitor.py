@@ -78,7 +78,10 @@ class Visitor:
 
     def trace(self, graph, at=0):
         """x of one trace of a picture, as the browser holds it."""
-        script = "const g = document.querySelector('#' + arguments[0] + ' .js-plotly-plot'); return g ? Array.from(g.data[arguments[1]].x) : null"
+        script = """
+            const graph = document.querySelector('#' + arguments[0] + ' .js-plotly-plot');
+            return graph ? Array.from(graph.data[arguments[1]].x) : null;
+        """
         return self.browser.execute_script(script, graph, at)
 
     def outside(self):
