@@ -40,8 +40,9 @@ def edited(design, **sections):
     return design_from_mapping(raw)
 
 
-def traced_design(plate, contacts):
-    """The trace's plate as a design file: one emitter, one detector, open to all angles."""
+def traced_design(plate, contacts, edges="mirrored"):
+    """The trace's plate as a design file: one emitter, one detector, open to all angles; ``edges`` where it has
+    mirrors."""
     materials = {
         "trial plate": {"index": plate.index, "source": "test"},
         "behind": {"index": plate.back, "source": "test"},
@@ -75,7 +76,7 @@ def traced_design(plate, contacts):
                 "height": f"{plate.height} m",
                 "thickness": f"{plate.thickness} m",
                 "back": "air" if plate.back == 1.0 else "behind",
-                "edges": "mirrored" if plate.mirror else "absorbing",
+                "edges": edges if plate.mirror else "absorbing",
                 "mirror": plate.mirror,
             },
             "states": states,
@@ -116,6 +117,18 @@ def test_light_and_losses_agree_with_a_brute_force_trace(case):
     for at in range(1, len(loss)):
         mine = 1 - float(table.rows[at].result.share[0, 0]) / got
         assert abs(mine - loss[at]) < 4 * loss_error[at] + 0.03 * loss[at]
+
+
+def test_polished_sides_reflect_all_that_runs_along():
+    """Light in a plate lit through an edge in air meets the edges beside it beyond their critical angle: as good as a
+    mirror of 100 % in the trace."""
+    plate = dataclasses.replace(GLASS, mirror=1.0)
+    flux, error, loss, loss_error = received(plate, MIDDLE[:1], rays=600_000, seed=8)
+    table = tabulate(traced_design(plate, MIDDLE[:1], edges="polished"))
+    got = float(table.untouched.result.share[0, 0])
+    assert abs(got - flux[0]) < 4 * error[0] + 0.01 * flux[0]
+    mine = 1 - float(table.rows[1].result.share[0, 0]) / got
+    assert abs(mine - loss[1]) < 4 * loss_error[1] + 0.03 * loss[1]
 
 
 def test_images_add_up_to_one_percent():
@@ -367,6 +380,20 @@ def test_edges_that_do_not_face_each_other_are_refused_by_name():
         "no emitter faces a detector: emitters.edges = 'left', detectors.edges = 'top'; in air, light passes only "
         "between edges that face each other"
     )
+
+
+@pytest.mark.parametrize(
+    "sections",
+    [{"emitters": {"offset": "20 mm"}}, {"detectors": {"offset": "20 mm"}}, {"emitter": {"half_angle": "0.001 deg"}}],
+    ids=["emitters beside the edge", "detectors beside it", "pencils of light between the detectors"],
+)
+def test_a_plate_without_a_single_chord_sees_nothing_and_says_so(sections):
+    found = judged(edited(demo("theatre_console"), **sections), maps=True)
+    assert found.verdict == "fail"
+    assert found.metrics["chords"].value == 0
+    assert found.metrics["coverage"].value == 0
+    assert found.metrics["touch_loss"].value == 0
+    assert found.metrics["position_error"].value == np.inf
 
 
 def test_a_margin_that_leaves_no_field_says_so():

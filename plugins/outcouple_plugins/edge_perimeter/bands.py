@@ -84,17 +84,19 @@ def segments_of(chords: Chords, lit: NDArray[np.bool_], sample: int) -> Segments
     beams = [float(one[sample]) for one in chords.beams]
     pieces = 1 if np.isclose(beams[0], beams[1]) else PIECES
     chord, bundle = np.nonzero(lit)
-    found = []
-    for c_tile, n_tile in _tiles(ways.m[lit], ways.n[lit]):
-        found.append(_in_tile(chords, at, chord, bundle, (c_tile, n_tile), (width, height), beams, pieces))
+    found = [
+        _in_tile(chords, at, chord, bundle, tile, (width, height), beams, pieces)
+        for tile in _tiles(ways.m[lit], ways.n[lit])
+    ]
     columns = [np.concatenate(part) for part in zip(*found, strict=True)]
     way, number = columns[0].astype(int), columns[1].astype(int)
     return Segments(way, number, *columns[2:])
 
 
 def _tiles(m: Ints, n: Ints) -> Iterator[tuple[int, int]]:
-    for i in range(min(int(m.min()), 0), max(int(m.max()), 0) + 1):
-        for j in range(min(int(n.min()), 0), max(int(n.max()), 0) + 1):
+    across, along = ((int(np.min(part, initial=0)), int(np.max(part, initial=0))) for part in (m, n))
+    for i in range(across[0], across[1] + 1):
+        for j in range(along[0], along[1] + 1):
             yield i, j
 
 
@@ -171,7 +173,7 @@ def tables_of(segments: Segments, profile: Floats, diameter: float) -> Tables:
     """
     radius = diameter / 2
     soft = EDGE * diameter
-    widest = radius + soft / 2 + float(np.max(segments.beam)) / 2
+    widest = radius + soft / 2 + float(np.max(segments.beam, initial=0.0)) / 2
     step = widest / (OFFSETS - 2)
     offsets = np.asarray(np.arange(OFFSETS) * step, dtype=float)
     softened = _boxed(profile, radius / (profile.shape[1] - 1), offsets, np.full((1, 1), soft))[0]

@@ -157,8 +157,8 @@ def _dynamic_range(results: Results) -> Found:
     share = results.untouched.share
     strong = np.max(share, axis=1)
     weak = np.min(np.where(share > 0, share, np.inf), axis=1)
-    with np.errstate(divide="ignore", invalid="ignore"):
-        return MetricValue(10 * np.log10(strong / weak))
+    seen = strong > 0
+    return MetricValue(np.where(seen, 10 * np.log10(np.where(seen, strong, 1.0) / np.where(seen, weak, 1.0)), np.nan))
 
 
 def _scan_rate(results: Results) -> Found:
