@@ -175,7 +175,7 @@ def correlated_probability(z: ArrayLike, confirm: int, window: int, *, correlati
         weight = step * math.exp(-(node**2) / 2) / math.sqrt(2 * math.pi)
         given = tail_probability((threshold - common * node) / own)
         total = total + weight * confirmed_probability(given, confirm, window)
-    return np.asarray(total)
+    return np.asarray(np.minimum(total, 1.0))
 
 
 def at_least_channels(probability: ArrayLike, need: int) -> Floats:

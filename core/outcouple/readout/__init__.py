@@ -1,11 +1,11 @@
 """Light to electrons: detectors, amplifiers, converters, cameras, ambient light and drift.
 
 The room knows no optics, and but for its readers no design file: plain functions and small frozen records on arrays
-over samples and channels. `photodiode`, `transimpedance`, `modulation` and `converter` meet in `receiver`, whose `NoiseBudget` says
-what limits a reading; `camera` is the other road. `ambient` gives outside light as photocurrent, `drift` what changes
-slowly. `chain` joins them to optical shares for `outcouple.evaluation`: `photodiode_reader` and `camera_reader` read a
-design's sections with the help of `emitted` (power after drift and filter), `outside` (ambient light), `stage`,
-`timing` and `reference_channel`.
+over samples and channels. `photodiode`, `transimpedance`, `modulation` and `converter` meet in `receiver`, whose
+`NoiseBudget` says what limits a reading; `camera` is the other road. `ambient` gives outside light as photocurrent,
+`drift` what changes slowly. `chain` joins them to optical shares for `outcouple.evaluation`: `photodiode_reader` and
+`camera_reader` read a design's sections with the help of `emitted` (power after drift and filter), `outside` (ambient
+light), `stage`, `timing` and `reference_channel`.
 """
 
 from outcouple.readout.ambient import band_irradiance, current_density
