@@ -218,3 +218,8 @@ def test_hysteresis_bounds_the_chatter() -> None:
     counted = np.sum((kept[1:] == 1) & (kept[:-1] == -1))
     bound = float(d.crossing_rate(1.0, bandwidth=0.05)) * noise.size  # the kernel cuts at 1/20 per sample
     assert 0 < counted < bound
+
+
+def test_correlation_far_out_is_sure_and_quick() -> None:
+    far = np.array([-1e7, 1e7])
+    assert d.correlated_probability(far, 2, 3, correlation=0.4) == pytest.approx([1.0, 0.0])

@@ -40,6 +40,8 @@ Floats = NDArray[np.float64]
 
 SECONDS_PER_YEAR: Final = 365.25 * 86400.0
 
+FARTHEST: Final = 40.0
+"""Standard deviations beyond which Gaussian chances are zero or one in double precision."""
 _erfc = np.frompyfunc(math.erfc, 1, 1)
 
 
@@ -160,7 +162,7 @@ def correlated_probability(z: ArrayLike, confirm: int, window: int, *, correlati
     rounding for a smooth integrand. Slow noise and common drift do not average away: at rho = 1 confirming
     is useless and Q(z) comes back.
     """
-    threshold = np.asarray(z, dtype=float)
+    threshold = np.clip(np.asarray(z, dtype=float), -FARTHEST, FARTHEST)
     if not 0 <= correlation <= 1:
         raise ValueError(f"correlation must lie between 0 and 1; got {correlation}")
     if correlation == 0:
