@@ -14,6 +14,7 @@ from outcouple.design import design_from_mapping
 from outcouple.errors import UserMistake
 from outcouple.evaluation import evaluate_batch
 from outcouple.evaluation.batch import results_of
+from outcouple.evaluation.ledger import ledger_of
 from outcouple.evaluation.table import tabulate
 from outcouple.testing import check_geometry
 from outcouple_plugins.edge_perimeter import EdgePerimeter
@@ -362,6 +363,48 @@ def test_a_batch_of_maps_agrees_with_single_designs():
         alone = evaluate_batch(design, {("emitter", "power"): np.array([power])}, names).metrics
         for name in names:
             assert together[name].values[at] == pytest.approx(alone[name].values[0], rel=1e-9)
+
+
+def test_light_followed_in_parts_is_the_light_followed_whole(monkeypatch):
+    """Parts of channels only bound the memory: shares, arrivals and ledgers are those of all channels at once."""
+    whole = tabulate(demo("theatre_console")).rows
+    monkeypatch.setattr("outcouple.evaluation.signals.PART", 5_000)
+    parts = tabulate(demo("theatre_console")).rows
+    for one, other in zip(whole, parts, strict=True):
+        assert other.result.share == pytest.approx(one.result.share, rel=1e-12)
+        arrivals = other.result.arrivals()
+        assert np.sum(arrivals, axis=2) == pytest.approx(one.result.share, rel=1e-9)
+        assert abs(ledger_of(other.laid, 40).gap) < 1e-12
+        assert ledger_of(other.laid, 40).losses == pytest.approx(ledger_of(one.laid, 40).losses, rel=1e-9, abs=1e-15)
+
+
+def test_the_curve_runs_through_the_states_and_saturates():
+    """Loss of the straightest chord against the diameter: zero at zero, through the state's own mark, at first in
+    proportion (rare hits), later less (rays lose no more than all)."""
+    found = evaluate(demo("theatre_console"), advice=False)
+    curve, loss = found.curve, found.metrics["crossing_loss"].value
+    (name, diameter, marked) = curve.marks[0]
+    assert (name, diameter, marked) == ("gloved finger", 9e-3, pytest.approx(loss))
+    assert np.interp(diameter, curve.axes[0][2], curve.values) == pytest.approx(loss, rel=1e-3)
+    assert curve.values[0] == 0
+    slopes = np.diff(curve.values)
+    assert slopes[0] > slopes[-1] > 0
+    assert {view.name for view in found.views} == {"plan", "cross-section"}
+
+
+def test_daylight_reaches_detectors_only_through_what_is_left_open():
+    """The share left open scales the outside light and nothing else."""
+    lit = {"environment": {"ambient": "daylight", "illuminance": "20 klx"}, "readout": {"ambient_current": None}}
+    raw = {**demo("theatre_console").raw}
+    raw["environment"] = {**raw["environment"], **lit["environment"]}
+    raw["readout"] = {key: value for key, value in raw["readout"].items() if key != "ambient_current"}
+    ambient = []
+    for share in ("0 %", "1 %", "2 %"):
+        raw["detectors"] = {**raw["detectors"], "outside_share": share}
+        ambient.append(float(np.max(tabulate(design_from_mapping(raw)).untouched.reading.ambient)))
+    assert ambient[0] == 0
+    assert ambient[1] > 0
+    assert ambient[2] == pytest.approx(2 * ambient[1], rel=1e-9)
 
 
 def test_an_object_off_the_chords_darkens_none_and_one_on_the_rim_stays_finite():

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import Literal
+
 import numpy as np
 from numpy.typing import NDArray
 
@@ -15,6 +17,8 @@ __all__ = ["plan", "section"]
 
 Floats = NDArray[np.float64]
 
+MOST_BOXES = 48
+"""Emitters or detectors of one edge that are drawn one by one."""
 RAYS = (0.15, 0.45, 0.75)
 """Drawn elevations as shares of the highest."""
 
@@ -91,7 +95,9 @@ def _circle(size: float, x: float, y: float) -> Floats:
     return np.stack([x + size / 2 * np.cos(turn), y + size / 2 * np.sin(turn)], axis=1)
 
 
-def _parts(role: str, edges: tuple[str, ...], chords: Chords, depth: float, *, emitters: bool) -> list[Outline]:
+def _parts(
+    role: Literal["emitter", "detector"], edges: tuple[str, ...], chords: Chords, depth: float, *, emitters: bool
+) -> list[Outline]:
     """Emitters or detectors as boxes outside their edges."""
     pairs = chords.pairs
     names, at = (pairs.emitter_edge, pairs.emitter_at) if emitters else (pairs.detector_edge, pairs.detector_at)
@@ -101,11 +107,21 @@ def _parts(role: str, edges: tuple[str, ...], chords: Chords, depth: float, *, e
     x, y = places_of(picked, at[first], chords.width[:1], chords.height[:1])
     size = float(chords.beams[0 if emitters else 1][0])
     found = []
-    for edge, cx, cy in zip(picked, x[0], y[0], strict=True):
+    for edge in edges:
+        own_x, own_y = (part[0][np.array(picked) == edge] for part in (x, y))
         nx, ny = NORMALS[edge]
-        across, along = (depth, size) if nx else (size, depth)
-        box = _box(cx - nx * depth / 2, cy - ny * depth / 2, across, along)
-        found.append(Outline(role, role, box))  # type: ignore[arg-type]
+        if len(own_x) > MOST_BOXES:
+            # A row too dense to draw one by one is one bar.
+            ends = [np.array([np.min(part), np.max(part)]) for part in (own_x, own_y)]
+            long = float(np.hypot(np.ptp(ends[0]), np.ptp(ends[1]))) + size
+            own_x, own_y = (np.array([np.mean(part)]) for part in ends)
+        else:
+            long = size
+        across, along = (depth, long) if nx else (long, depth)
+        found += [
+            Outline(role, role, _box(cx - nx * depth / 2, cy - ny * depth / 2, across, along))
+            for cx, cy in zip(own_x, own_y, strict=True)
+        ]
     return found
 
 

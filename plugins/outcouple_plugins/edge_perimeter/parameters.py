@@ -9,7 +9,7 @@ __all__ = ["Baseline", "Detectors", "Emitters", "Field", "Parameters", "Scan"]
 
 
 class Emitters(Row):
-    """Rows of equal emitters along edges of the plate."""
+    """Rows of equal emitters along edges of the plate, lit in turn, each with its share of emitter.power."""
 
     edges: str = choice("left and bottom", list(ROWS), describe="edges that carry emitters", deciding=True)
     per_edge: int = count(24, ge=1, le=256, describe="on each of these edges, evenly spaced", deciding=True)
