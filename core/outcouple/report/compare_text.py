@@ -32,7 +32,7 @@ LONGEST = 44
 
 def format_comparison(found: Comparison, *, width: int | None = None) -> str:
     """The whole answer as text."""
-    width = min(width or shutil.get_terminal_size((100, 24)).columns, 120)
+    width = width or min(shutil.get_terminal_size((100, 24)).columns, 120)
     blocks = [
         _wrap(compare_lead(found), width, "", ""),
         "\n".join(_variant(found, at, width) for at in range(len(found.variants))),

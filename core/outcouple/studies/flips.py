@@ -179,7 +179,8 @@ def _closed_in(
     holds = good(margins_at(design, points, executor=executor)).reshape(len(brackets), 3)
     found = []
     for (one, up, _, after, tried), marks, mine in zip(brackets, rounded, holds, strict=True):
-        near = [abs(value - one.value) <= 1.02 * abs(after - one.value) for value in marks]
+        slack = 0.02 * min(abs(after - one.value), abs(after) or np.inf)
+        near = [abs(value - after) <= slack for value in marks]
         fit = [value for value, held, close in zip(marks, mine, near, strict=True) if held and close]
         found.append(Flip(one, up, fit[0] if fit else after, tried))
     return found
