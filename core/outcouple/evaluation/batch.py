@@ -24,6 +24,8 @@ Floats = NDArray[np.float64]
 
 ELEMENTS = 4_000_000
 """Array elements a chunk may hold; keeps the peak of a batch near 300 MB whatever its length."""
+SAMPLES = 256
+"""Samples a chunk may hold: beyond, arrays only grow, and nothing gets faster."""
 
 
 @dataclass(frozen=True)
@@ -55,7 +57,7 @@ def evaluate_batch(
     count = samples_count(samples)
     if elements is None and count > 1:
         elements = sample_elements(tabulate(design, {path: values[:1] for path, values in samples.items()}))
-    size = max(1, min(count, ELEMENTS // (elements or ELEMENTS)))
+    size = max(1, min(count, SAMPLES, ELEMENTS // (elements or ELEMENTS)))
     parts = []
     for start in range(0, count, size):
         part = {path: values[start : start + size] for path, values in samples.items()}
