@@ -12,6 +12,7 @@ import pytest
 
 from outcouple.evaluation.transport import mean_power
 from outcouple.optics import interface
+from outcouple_plugins.plate.edge import edge_transmittance
 from outcouple_plugins.plate.fan import fan_of, leakable_share, port_of
 from outcouple_plugins.plate.ways import pairs_of, reflections, tiles_of, ways_of
 
@@ -198,6 +199,15 @@ def test_neighbouring_edges_in_air_see_nothing_of_each_other():
     glued = port(1.484, bonded=True)
     taken_s, _ = glued.acceptance(np.broadcast_to(into[None], rise.shape), rise)
     assert np.any(s * taken_s > 0)
+
+
+def test_transmittance_of_the_edge_is_that_of_the_plane_wave_room():
+    """Two ways to the same Fresnel formulas, over every angle of incidence."""
+    outside = np.linspace(0.01, 1.0, 60)
+    inside = np.sqrt(1 - (1 - outside**2) / 1.51**2)
+    face = interface(1.0, 1.51, np.arccos(outside))
+    for mine, R in zip(edge_transmittance(np.array(1.51), inside, outside), (face.Rs, face.Rp), strict=True):
+        assert mine == pytest.approx(1 - R, abs=1e-12)
 
 
 def test_reflections_are_dealt_to_the_edges_in_turn():

@@ -47,6 +47,12 @@ class Answer:
         """Sum of two replies already weighted by their shares."""
         return Answer(*(getattr(self, f.name) + getattr(other, f.name) for f in fields(self)))
 
+    def of(self, rays_s: NDArray[np.bool_]) -> Answer:
+        """Reply where every ray is wholly s (True) or wholly p: both entries hold the one that counts, (S|1, 1, K)."""
+        pairs = ((self.Rs, self.Rp), (self.Ts, self.Tp), (self.Bs, self.Bp), (self.Ws, self.Wp))
+        R, T, B, W = (np.where(rays_s, s, p) for s, p in pairs)
+        return Answer(R, R, self.X, T, T, B, B, W, W)
+
     def times(self, share: Floats | float) -> Answer:
         """Reply weighted by a share of area; an array share has shape (S,) or broadcasts against (S, L, K)."""
         weight = np.asarray(share, dtype=float)

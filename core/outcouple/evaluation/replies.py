@@ -37,7 +37,7 @@ def arrivals_of(laid: LaidState) -> Floats:
     for way in laid.ways:
         start = 0
         for part in way.parts(len(laid.weights)):
-            arriving = np.sum(weights * part.survival.after * along(part.light.length, absorption), axis=1)
+            arriving = np.sum(weights * part.kept.after * along(part.light.length, absorption), axis=1)
             stop = start + part.light.channels
             sent = part.light.launch[:, None, :] * part.light.reach
             total[:, start:stop] += way.share[:, None, None] * sent * arriving

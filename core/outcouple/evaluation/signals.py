@@ -50,6 +50,13 @@ class Way:
         """Every ray on its way; of a light of many chords ask parts of it only."""
         return survive(self.light, self.answers, self.strips)
 
+    @property
+    def kept(self) -> Survival:
+        """What is left of every ray, and of a light that cannot be divided all that became of it."""
+        if not self.light.divisible or self.light.read != "kept":
+            return self.survival
+        return survive(self.light, self.answers, self.strips, detail=False)
+
     def part(self, channels: slice) -> Way:
         """The same for some of the channels."""
         strips = None if self.strips is None else self.strips.part(channels)
@@ -236,7 +243,7 @@ def _way(
     got = [
         received(
             part.light,
-            part.survival,
+            part.kept,
             absorption=guide_absorption(light, media),
             diffuser=diffuser,
             guide=media.centre(light.guide),

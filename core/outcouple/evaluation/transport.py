@@ -61,15 +61,40 @@ def mean_power(reflectance: Floats, hits: Floats) -> Floats:
     return np.asarray(base * (1 - part + part * reflectance))
 
 
-def survive(light: Light, answers: Sequence[Answer | None], strips: Strips | None = None) -> Survival:
+def survive(
+    light: Light, answers: Sequence[Answer | None], strips: Strips | None = None, *, detail: bool = True
+) -> Survival:
     """Carry every ray through the hit columns.
 
     answers  one per hit column, arrays (S, L, K); None for a column that reflects all
     strips   contact of the object on the spot's face
+    detail   False: only what is left after all columns, where no plane of incidence turns
     """
     if light.turns:
         return _coherent(light, answers)
-    return _powers(light, answers, strips)
+    hit = [
+        None if reply is None or not _is_hit(light, column, strips) or _reflects_all(reply) else reply
+        for column, reply in enumerate(answers)
+    ]
+    if np.all(np.abs(light.polarization) == 1):
+        rays_s = light.polarization[:, None, :] > 0
+        hit = [None if reply is None else reply.of(rays_s) for reply in hit]
+    if not detail:
+        return Survival(_left(light, hit, strips), (), (), (), ())
+    return _powers(light, hit, strips)
+
+
+def _left(light: Light, answers: Sequence[Answer | None], strips: Strips | None) -> Floats:
+    """Intensity of every ray after all columns, (S, L, C|1, K)."""
+    q = light.polarization[:, None, None, :]
+    s, p = (1 + q) / 2, (1 - q) / 2
+    for column, reply in enumerate(answers):
+        if reply is None:
+            continue
+        kept = _kept(light, reply.Rs, column, strips)
+        s = s * kept
+        p = p * (kept if reply.Rp is reply.Rs else _kept(light, reply.Rp, column, strips))
+    return np.asarray(s + p)
 
 
 def _powers(light: Light, answers: Sequence[Answer | None], strips: Strips | None) -> Survival:
@@ -80,7 +105,7 @@ def _powers(light: Light, answers: Sequence[Answer | None], strips: Strips | Non
     back: list[Floats] = []
     turned: list[Floats] = []
     for column, reply in enumerate(answers):
-        if reply is None or not _is_hit(light, column, strips) or _reflects_all(reply):
+        if reply is None:
             for store in (drawn, entered, back, turned):
                 store.append(np.zeros((1, 1, 1, 1)))
             continue
