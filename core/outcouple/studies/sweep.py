@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
 from concurrent.futures import Executor
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from itertools import product
 from typing import Any
 
@@ -212,7 +212,7 @@ class _Grid:
         self.why: dict[str, dict[str, None]] = {name: {} for name in want}
         self.signals: dict[str, Floats] = {}
         self.margins = [self._empty() for _ in design.requirements]
-        self.notes: list[Note] = []
+        self.notes: dict[tuple[str, str], Note] = {}
 
     def _empty(self) -> Floats:
         return np.full(self.total, np.nan)
@@ -236,9 +236,9 @@ class _Grid:
             if one.over == "nominal" and isinstance(picked, MetricValue):
                 margin[at] = one.margin(picked.values)
         for note in batch.notes:
-            where = np.zeros(self.total, dtype=bool)
-            where[at] = True if note.where is None else note.where
-            self.notes.append(Note(note.code, note.text, note.severity, note.trigger, note.decides, where))
+            known = self.notes.setdefault((note.code, note.text), replace(note, where=np.zeros(self.total, dtype=bool)))
+            assert known.where is not None
+            known.where[at] |= True if note.where is None else note.where
         self.done[at] = True
 
     def sweep(self) -> Sweep:
@@ -265,7 +265,7 @@ class _Grid:
             ),
             done=self.done.reshape(self.shape),
             reading=known["signal"],
-            notes=merge_notes(self.notes),
+            notes=merge_notes(self.notes.values()),
             raw=self.design.raw,
         )
 

@@ -21,7 +21,7 @@ from outcouple.evaluation.table import tabulate
 
 __all__ = ["CHUNK", "Task", "chunked", "elements_of", "run_tasks"]
 
-CHUNK = 64
+CHUNK = 128
 """Samples of one chunk: big enough that arrays carry the work, small enough for progress and an early stop."""
 
 
