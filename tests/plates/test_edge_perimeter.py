@@ -289,7 +289,8 @@ def test_more_ambient_light_shrinks_the_coverage():
 @pytest.mark.parametrize("edges", ["absorbing", "mirrored"])
 def test_maps_agree_with_states_that_put_the_object_there(edges):
     """The light's own strips and exact hits at twelve places against the tables of the map: chords that see within the
-    soft edge, the sum of their losses within 2 % (mirrored edges: 3 %, ways near a fold)."""
+    soft edge, the sum of their losses within 2 % (mirrored edges: 3 %, ways near a fold) and 0.4 % of one chord's light: maps take
+    one mean width of a beam along its way, which tells where an object lies half under it."""
     small = {"emitters": {"edges": "left", "per_edge": 6}, "detectors": {"edges": "right", "per_edge": 6}}
     design = edited(demo("theatre_console"), **small, plate={"edges": edges})
     field, table = map_of(design)
@@ -304,7 +305,7 @@ def test_maps_agree_with_states_that_put_the_object_there(edges):
     for block in field._blocks(slopes=False):
         np.add.at(total, block.cell, block.loss)
     exact = np.sum(np.where(moved.blind, 0.0, moved.mean), axis=1)
-    assert total[cells] == pytest.approx(exact, rel=0.03 if edges == "mirrored" else 0.02, abs=2e-3)
+    assert total[cells] == pytest.approx(exact, rel=0.03 if edges == "mirrored" else 0.02, abs=4e-3)
     assert table.light.check() is None
 
 
