@@ -289,8 +289,8 @@ def test_more_ambient_light_shrinks_the_coverage():
 @pytest.mark.parametrize("edges", ["absorbing", "mirrored"])
 def test_maps_agree_with_states_that_put_the_object_there(edges):
     """The light's own strips and exact hits at twelve places against the tables of the map: chords that see within the
-    soft edge, the sum of their losses within 2 % (mirrored edges: 3 %, ways near a fold) and 0.4 % of one chord's light: maps take
-    one mean width of a beam along its way, which tells where an object lies half under it."""
+    soft edge, the sum of their losses within 2 % (mirrored edges: 3 %, ways near a fold) and 0.4 % of one chord's
+    light: maps take one mean width of a beam along its way, which tells where an object lies half under it."""
     small = {"emitters": {"edges": "left", "per_edge": 6}, "detectors": {"edges": "right", "per_edge": 6}}
     design = edited(demo("theatre_console"), **small, plate={"edges": edges})
     field, table = map_of(design)
@@ -457,6 +457,17 @@ def test_a_plate_without_a_single_chord_sees_nothing_and_says_so(sections):
     assert found.metrics["coverage"].value == 0
     assert found.metrics["touch_loss"].value == 0
     assert found.metrics["position_error"].value == np.inf
+
+
+def test_a_palm_all_over_has_no_place_and_says_so():
+    """A contact without an object's size darkens chords but has no map and no touch loss."""
+    states = [dict(state) for state in demo("theatre_console").raw["states"]]
+    del states[1]["object"]
+    found = judged(edited(demo("theatre_console"), states=states), maps=True)
+    for name in ("touch_loss", "chords_darkened", "coverage", "immunity_ratio"):
+        assert found.metrics[name].value is None
+        assert found.metrics[name].why
+    assert found.metrics["margin_sigma"].states["gloved finger"] > 100
 
 
 def test_a_margin_that_leaves_no_field_says_so():

@@ -14,9 +14,9 @@ from outcouple.geometry import MetricValue, Missing, Results, StateResult, Surfa
 from outcouple_plugins.edge_perimeter.bands import Grid, Hits, Segments, Tables, hits_of, segments_of, tables_of
 from outcouple_plugins.edge_perimeter.chords import Chords
 from outcouple_plugins.edge_perimeter.contact import spot_loss
-from outcouple_plugins.edge_perimeter.measures import NO_OBJECT, chords_shared, needed, objects
+from outcouple_plugins.edge_perimeter.measures import NO_OBJECT, arrivals_shared, chords_shared, needed, objects
 
-__all__ = ["FieldMap", "measured_on_maps", "surfaces_of"]
+__all__ = ["FieldMap", "field_map", "measured_on_maps", "surfaces_of"]
 
 Floats = NDArray[np.float64]
 Ints = NDArray[np.integer[Any]]
@@ -119,12 +119,7 @@ def _row(array: Floats, sample: int) -> Floats:
 
 def _profiles(results: Results, state: StateResult, chords: Chords, diameter: float, sample: int) -> Floats:
     """Loss of every way to a disc on lines across it, as a share of its chord's light, (C W, U)."""
-    untouched = results.untouched
-    assert untouched is not None
-    assert untouched.arrivals is not None
-    if "arrivals" not in results.memo:
-        results.memo["arrivals"] = untouched.arrivals()
-    arrivals = _row(results.memo["arrivals"], sample)
+    arrivals = _row(arrivals_shared(results), sample)
     channels, rays = arrivals.shape
     bundles = chords.ways.length.shape[2]
     total = np.sum(arrivals, axis=1)[:, None, None]

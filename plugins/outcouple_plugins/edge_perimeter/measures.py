@@ -16,6 +16,7 @@ from outcouple_plugins.plate.fan import leakable_share
 __all__ = [
     "MEASURES",
     "NO_OBJECT",
+    "arrivals_shared",
     "blind",
     "chords_shared",
     "crossing_loss",
@@ -59,10 +60,21 @@ def needed(results: Results) -> int:
 
 
 def chords_shared(results: Results) -> Chords:
+    """The chords of the design, laid out once for all measures."""
     if "chords" not in results.memo:
         results.memo["chords"] = chords_of(results.setting)
     chords: Chords = results.memo["chords"]
     return chords
+
+
+def arrivals_shared(results: Results) -> Floats:
+    """Share of the emitters' power on every ray of every untouched chord, (S, C, K), followed once for all measures."""
+    if "arrivals" not in results.memo:
+        assert results.untouched is not None
+        assert results.untouched.arrivals is not None
+        results.memo["arrivals"] = results.untouched.arrivals()
+    arrivals: Floats = results.memo["arrivals"]
+    return arrivals
 
 
 def _by_state(values: Mapping[str, Floats], samples: int, *, highest: bool) -> MetricValue:
@@ -86,11 +98,9 @@ def _touch_loss(results: Results) -> Found:
 def crossing_loss(results: Results, state: StateResult, diameters: Floats) -> Floats:
     """Loss of the straightest chord under the middle of objects of diameters (S, N) with a state's contact, (S, N)."""
     chords = chords_shared(results)
-    assert results.untouched is not None
-    assert results.untouched.arrivals is not None
     direct = np.where(blind(results), np.inf, chords.ways.out[:, :, 0])
     pick = np.argmin(np.broadcast_to(direct, (results.setting.samples, direct.shape[1])), axis=1)
-    arrivals = results.untouched.arrivals()
+    arrivals = arrivals_shared(results)
     rows = np.arange(results.setting.samples)
     weight = np.broadcast_to(arrivals, (results.setting.samples, *arrivals.shape[1:]))[rows, pick]
     total = np.sum(weight, axis=1, keepdims=True)
@@ -232,6 +242,8 @@ def darkened(state: StateResult, results: Results) -> Floats:
 def _chords_darkened(results: Results) -> Found:
     if results.decision is None:
         return Missing("needs states that expect both absent and present")
+    if not objects(results):
+        return NO_OBJECT
     states = [*objects(results), *_disturbing(results)]
     found = {state.name: darkened(state, results) for state in states}
     worst = _by_state({s.name: found[s.name] for s in objects(results)}, results.setting.samples, highest=False)
