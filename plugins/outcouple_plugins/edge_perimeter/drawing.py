@@ -24,7 +24,7 @@ RAYS = (0.15, 0.45, 0.75)
 
 
 def plan(setting: Setting) -> View:
-    """The plate from above: emitters, detectors, the fans of the middle emitters, the chords under the objects."""
+    """The plate from above: emitters, detectors, the field, the objects and the chords under them."""
     p = setting.p
     chords = chords_of(setting)
     width, height = float(chords.width[0]), float(chords.height[0])
@@ -54,7 +54,7 @@ def _objects(setting: Setting) -> dict[str, tuple[float, float, float]]:
 
 
 def _chord_lines(chords: Chords, discs: list[tuple[float, float, float]]) -> tuple[RayPath, ...]:
-    """Chords of the middle emitters and under objects; where one passes under an object it has a vertex there."""
+    """Chords that pass under objects, with a vertex there; those of the middle emitters where there are no objects."""
     ways, pairs = chords.ways, chords.pairs
     limit = min(chords.emitter.highest[0], chords.detector.highest[0])
     seen = ways.possible[0, :, 0] & (ways.out[0, :, 0] < limit) & (ways.into[0, :, 0] < limit)
@@ -65,7 +65,7 @@ def _chord_lines(chords: Chords, discs: list[tuple[float, float, float]]) -> tup
         start = np.array([ways.x[0, at, 0], ways.y[0, at, 0]])
         step = np.array([ways.dx[0, at, 0], ways.dy[0, at, 0]])
         stops = _under(start, step, discs)
-        if not stops and pairs.emitter[at] % per_edge != per_edge // 2:
+        if not stops and (discs or pairs.emitter[at] % per_edge != per_edge // 2):
             continue
         gone = [0.0, *stops, float(ways.length[0, at, 0])]
         points = np.array([start + length * step for length in gone])
