@@ -8,7 +8,7 @@ from pathlib import Path
 from typing import Any
 
 import dash_mantine_components as dmc
-from dash import Dash, Input, Output, dcc, html, set_props
+from dash import Dash, Input, Output, State, dcc, html, set_props
 
 from outcouple.hooks import Host, build_host
 from outcouple_dashboard import editing, guard, shelf
@@ -81,7 +81,9 @@ def layout(desk: Desk) -> Any:
         [
             dcc.Location(id="url", refresh=False),
             dcc.Store(id="doc"),
-            dcc.Store(id="history"),
+            dcc.Store(id="doc-vary"),
+            dcc.Store(id="doc-compare"),
+            dcc.Store(id="folds", data=[]),
             dcc.Store(id="form-key"),
             dcc.Store(id="link"),
             dcc.Store(id="tab"),
@@ -193,15 +195,6 @@ def _register_frame(app: Dash) -> None:
         Input("theme", "data"),
     )
     here(
-        "remember",
-        Output("history", "data"),
-        Output("undo", "disabled"),
-        Output("redo", "disabled"),
-        Input("doc", "data"),
-        Input("history", "id"),
-        prevent_initial_call=True,
-    )
-    here(
         "timeTravel",
         Output("doc", "data", allow_duplicate=True),
         Input("undo", "n_clicks"),
@@ -217,11 +210,18 @@ def _register_frame(app: Dash) -> None:
         prevent_initial_call=True,
     )
     here(
-        "standing",
+        "spread",
+        Output("form-key", "data"),
+        Output("undo", "disabled"),
+        Output("redo", "disabled"),
         Output("work", "hidden"),
         Output("welcome", "hidden"),
         Output("file-name", "children"),
         Output("file-standing", "children"),
         Output("save", "disabled"),
+        Output("doc-vary", "data"),
+        Output("doc-compare", "data"),
         Input("doc", "data"),
+        Input("url", "pathname"),
+        State("form-key", "data"),
     )

@@ -100,11 +100,11 @@ def add_state(design: Design, text: str) -> str:
     return _append(document, "states", row)
 
 
-def add_requirement(text: str, metric: str | None, limit: str) -> str:
+def add_requirement(text: str, metric: str | None, limit: str | None) -> str:
     """The text with one more requirement; ``limit`` as "at least 20" or "at most 5 mm"."""
     if not metric:
         raise UserMistake("choose a metric first")
-    sense, _, value = limit.strip().replace("at_", "at ").partition(" ")
+    sense, _, value = (limit or "").strip().replace("at_", "at ").partition(" ")
     word, _, value = value.strip().partition(" ")
     if sense != "at" or word not in ("least", "most") or not value:
         raise UserMistake('write the limit as "at least 20" or "at most 5 mm"')

@@ -26,7 +26,7 @@ from outcouple_dashboard.entries import (
 )
 from outcouple_dashboard.tags import aria
 
-__all__ = ["contact_choices", "form", "material_choices", "ref"]
+__all__ = ["contact_choices", "folded", "folds", "form", "material_choices", "ref"]
 
 TITLES = {
     "emitter": "Emitter",
@@ -34,6 +34,8 @@ TITLES = {
     "decision": "Decision",
     "environment": "Surroundings",
 }
+ORDER = ["label", "input", "description", "error"]
+"""Parts of a field from top to bottom."""
 Choices = list[dict[str, Any]]
 
 
@@ -42,13 +44,65 @@ def ref(kind: str, path: Sequence[str] | str) -> dict[str, str]:
     return {"kind": kind, "path": path if isinstance(path, str) else join(tuple(path))}
 
 
-def form(design: Design, saved: Mapping[str, Any]) -> list[Any]:
-    """All of it. ``saved`` is the file's own content; what differs from it can be put back."""
-    parts: list[Any] = [_geometry(design)]
-    parts += [_section(group, design, saved) for group in section_groups(design)]
-    parts.append(_states(design, saved))
-    parts.append(_requirements(design, saved))
-    return parts
+Saved = Mapping[str, Any]
+Parts = list[Any]
+
+
+def form(design: Design, saved: Saved, *, opened: Sequence[str] = ()) -> Parts:
+    """The form: what decides stands open, the rest is filled in when its fold is opened.
+
+    saved   the file's own content; what differs from it can be put back
+    opened  folds that are open already
+    """
+    return [
+        _geometry(design),
+        *(_section(group, design, saved, opened) for group in section_groups(design)),
+        _states(design, saved, opened),
+        _requirements(design, saved, opened),
+    ]
+
+
+def folds(design: Design) -> list[str]:
+    """Every fold of a design's form."""
+    sections = [f"section/{group.name}" for group in section_groups(design) if _rest(group)]
+    return [*sections, *(f"states/{at}" for at in range(len(design.raw.get("states", [])))), "requirements"]
+
+
+def folded(design: Design, saved: Saved, key: str) -> Parts:
+    """What is in a fold; empty where the design has none like it."""
+    what, _, name = key.partition("/")
+    if what == "requirements":
+        return _requirement_rows(design)
+    if what == "states":
+        return _state_fields(design, int(name), saved) if int(name) < len(design.raw.get("states", [])) else []
+    group = next((one for one in section_groups(design) if one.name == name), None)
+    return [control(entry, design.catalogue, saved) for entry in _rest(group)] if group is not None else []
+
+
+def _rest(group: Group) -> list[Entry]:
+    """Inputs of a section that do not stand open."""
+    return [entry for entry in group.entries if not entry.leaf.deciding]
+
+
+def _fold(summary: str, key: str, design: Design, saved: Saved, opened: Sequence[str]) -> Any:
+    is_open = key in opened
+    return html.Div(
+        [
+            html.Button(
+                summary,
+                id=ref("fold", key),
+                className="fold",
+                type="button",
+                **aria(expanded="true" if is_open else "false"),
+            ),
+            html.Div(
+                folded(design, saved, key) if is_open else [],
+                id=ref("folded", key),
+                className="folded",
+                hidden=not is_open,
+            ),
+        ]
+    )
 
 
 def _geometry(design: Design) -> Any:
@@ -66,29 +120,24 @@ def _geometry(design: Design) -> Any:
                 allowDeselect=False,
                 size="xs",
                 nothingFoundMessage="no such sensor",
-                inputWrapperOrder=["label", "input", "description", "error"],
+                inputWrapperOrder=ORDER,
             ),
         ],
         className="group group-head",
     )
 
 
-def _section(group: Group, design: Design, saved: Mapping[str, Any]) -> Any:
+def _section(group: Group, design: Design, saved: Saved, opened: Sequence[str]) -> Any:
     title = TITLES.get(group.name, words(group.name).capitalize())
     heading = f"section-{group.name}"
-    controls = {entry.path: control(entry, design.catalogue, saved) for entry in group.entries}
-    shown = [controls[entry.path] for entry in group.entries if entry.leaf.deciding]
-    rest = [entry for entry in group.entries if not entry.leaf.deciding]
-    parts: list[Any] = [html.H3(title, id=heading, title=group.about), *shown]
+    shown = [control(entry, design.catalogue, saved) for entry in group.entries if entry.leaf.deciding]
+    parts: Parts = [html.H3(title, id=heading, title=group.about), *shown]
+    rest = _rest(group)
     if rest:
         own = sum(entry.given for entry in rest)
         told = f"{len(rest)} more" + (f", {own} set in the file" if own else "")
-        parts.append(_folded(told, [controls[entry.path] for entry in rest]))
+        parts.append(_fold(told, f"section/{group.name}", design, saved, opened))
     return html.Section(parts, className="group", **aria(labelledby=heading))
-
-
-def _folded(summary: str, parts: list[Any]) -> Any:
-    return html.Details([html.Summary(summary), html.Div(parts, className="folded")])
 
 
 def control(entry: Entry, catalogue: Catalogue, saved: Mapping[str, Any]) -> Any:
@@ -156,7 +205,7 @@ def _field(entry: Entry, catalogue: Catalogue) -> Any:
         "label": entry.label,
         "description": _about(entry),
         "size": "xs",
-        "inputWrapperOrder": ["label", "input", "description", "error"],
+        "inputWrapperOrder": ORDER,
         "value": entry.text,
     }
     if leaf.what == "choice":
@@ -194,127 +243,115 @@ def contact_choices(design: Design) -> Choices:
     return [{"group": "contact", "items": presets}, *material_choices(design.catalogue)]
 
 
-def _states(design: Design, saved: Mapping[str, Any]) -> Any:
-    rows = [
-        row for row in (_state(design, at, saved) for at in range(len(design.raw.get("states", [])))) if row is not None
-    ]
+def _states(design: Design, saved: Saved, opened: Sequence[str]) -> Any:
+    rows = []
+    for at, row in enumerate(design.raw.get("states", [])):
+        expect = str(row.get("expect", ""))
+        worded = dict(zip(("absent", "present"), design.geometry.words, strict=True)).get(expect, expect)
+        fault = ", a fault" if row.get("role") == "fault" else ""
+        rows.append(_fold(f"{row['name']} · {worded}{fault}", f"states/{at}", design, saved, opened))
     add = html.Button("Add a state", id="state-add", className="quiet", type="button")
     return html.Section(
         [html.H3("States", id="section-states"), *rows, add], className="group", **aria(labelledby="section-states")
     )
 
 
-def _state(design: Design, at: int, saved: Mapping[str, Any]) -> Any:
+def _state_fields(design: Design, at: int, saved: Saved) -> Parts:
     row = design.raw["states"][at]
     path = ("states", str(at))
-    shown, _ = contact_of(design, row)
-    expect = str(row.get("expect", ""))
-    worded = dict(zip(("absent", "present"), design.geometry.words, strict=True)).get(expect, expect)
-    fault = ", a fault" if row.get("role") == "fault" else ""
-    name = str(row["name"])
+    name, expect = str(row["name"]), str(row.get("expect", ""))
     numeric = expect not in ("absent", "present")
-    fields: list[Any] = [
-        dmc.TextInput(id=ref("value", (*path, "name")), label="name", value=name, debounce=True, size="xs"),
-        dmc.TextInput(id=ref("value", (*path, "expect")), label="stands for", value=expect, debounce=True, size="xs")
-        if numeric
-        else dmc.Select(
-            id=ref("value", (*path, "expect")),
-            label="should read",
-            size="xs",
-            value=expect,
-            allowDeselect=False,
-            data=[
-                {"value": "absent", "label": design.geometry.words[0]},
-                {"value": "present", "label": design.geometry.words[1]},
-            ],
-        ),
+    fields: Parts = [
+        dmc.TextInput(id=ref("value", (*path, "name")), label="name", value=name, debounce=True, size="xs")
     ]
+    fields.append(_expectation(design, path, expect, numeric))
     if "faces" in row:
         fields.append(html.P("Each face has its own contact; change it in the file's text.", className="faint"))
     elif not numeric:
-        fields.append(
-            dmc.Autocomplete(
-                id=ref("value", (*path, "touching")),
-                label="what touches",
-                description="a contact, or a material it is immersed in",
-                inputWrapperOrder=["label", "input", "description", "error"],
-                value=shown,
-                data=contact_choices(design),
-                debounce=True,
-                limit=200,
-                maxDropdownHeight=280,
-                size="xs",
-            )
-        )
+        fields.append(_contact(design, path, row))
     fields += [control(entry, design.catalogue, saved) for entry in state_entries(design, at)]
-    fields.append(
-        html.Button(
-            "Remove this state",
-            id=ref("remove", path),
-            className="quiet",
-            type="button",
-            **aria(label=f"Remove the state {name}"),
-        )
+    fields.append(_remove("Remove this state", path, f"Remove the state {name}"))
+    return fields
+
+
+def _expectation(design: Design, path: tuple[str, ...], expect: str, numeric: bool) -> Any:
+    id_ = ref("value", (*path, "expect"))
+    if numeric:
+        return dmc.TextInput(id=id_, label="stands for", value=expect, debounce=True, size="xs")
+    data = [
+        {"value": word, "label": shown}
+        for word, shown in zip(("absent", "present"), design.geometry.words, strict=True)
+    ]
+    return dmc.Select(id=id_, label="should read", size="xs", value=expect, allowDeselect=False, data=data)
+
+
+def _contact(design: Design, path: tuple[str, ...], row: Mapping[str, Any]) -> Any:
+    return dmc.Autocomplete(
+        id=ref("value", (*path, "touching")),
+        label="what touches",
+        description="a contact, or a material it is immersed in",
+        inputWrapperOrder=ORDER,
+        value=contact_of(design, row)[0],
+        data=contact_choices(design),
+        debounce=True,
+        limit=200,
+        maxDropdownHeight=280,
+        size="xs",
     )
-    return _folded(f"{name} · {worded}{fault}", fields)
 
 
-def _requirements(design: Design, saved: Mapping[str, Any]) -> Any:
+def _remove(text: str, path: tuple[str, ...], told: str) -> Any:
+    return html.Button(text, id=ref("remove", path), className="quiet", type="button", **aria(label=told))
+
+
+def _requirements(design: Design, saved: Saved, opened: Sequence[str]) -> Any:
+    count = len(design.requirements)
+    told = f"{count} stated" if count else "none stated"
+    return html.Section(
+        [
+            html.H3("Requirements", id="section-requirements"),
+            _fold(told, "requirements", design, saved, opened),
+        ],
+        className="group",
+        **aria(labelledby="section-requirements"),
+    )
+
+
+def _requirement_rows(design: Design) -> Parts:
     known = metrics_of(design.geometry)
-    rows = []
+    rows: Parts = []
     for entry, row in zip(requirement_entries(design), design.raw.get("requirements", []), strict=True):
         metric = known[row["metric"]]
-        sense = words(entry.path[-1])
         of = f" [{row['state']}]" if row.get("state") else ""
-        rows.append(
-            html.Div(
-                [
-                    dmc.TextInput(
-                        id=ref("value", entry.path),
-                        label=f"{metric.label}{of}, {sense}",
-                        description=metric.meaning,
-                        inputWrapperOrder=["label", "input", "description", "error"],
-                        value=entry.text,
-                        debounce=True,
-                        size="xs",
-                    ),
-                    html.Button(
-                        "Remove",
-                        id=ref("remove", entry.path[:2]),
-                        className="quiet",
-                        type="button",
-                        **aria(label=f"Remove the requirement on {metric.label}"),
-                    ),
-                ],
-                className="control",
-            )
+        limit = dmc.TextInput(
+            id=ref("value", entry.path),
+            label=f"{metric.label}{of}, {words(entry.path[-1])}",
+            description=metric.meaning,
+            inputWrapperOrder=ORDER,
+            value=entry.text,
+            debounce=True,
+            size="xs",
         )
-    add = html.Div(
+        remove = _remove("Remove", entry.path[:2], f"Remove the requirement on {metric.label}")
+        rows.append(html.Div([limit, remove], className="control"))
+    return [*rows, _new_requirement(design)]
+
+
+def _new_requirement(design: Design) -> Any:
+    data = [{"value": name, "label": metric.label} for name, metric in metrics_of(design.geometry).items()]
+    return html.Div(
         [
             dmc.Select(
-                id="requirement-metric",
-                label="another metric",
-                data=[{"value": name, "label": metric.label} for name, metric in known.items()],
-                searchable=True,
-                size="xs",
+                id=ref("new-requirement", "metric"), label="another metric", data=data, searchable=True, size="xs"
             ),
             dmc.TextInput(
-                id="requirement-limit",
+                id=ref("new-requirement", "limit"),
                 label="limit",
                 placeholder="at least 20",
                 size="xs",
                 description="at least or at most",
             ),
-            html.Button("Add", id="requirement-add", className="quiet", type="button"),
+            html.Button("Add", id=ref("add-requirement", ""), className="quiet", type="button"),
         ],
         className="pair",
-    )
-    told = f"Requirements ({len(rows)})" if rows else "Requirements: none stated"
-    return html.Section(
-        [
-            html.H3("Requirements", id="section-requirements"),
-            _folded(told, [*rows, add]),
-        ],
-        className="group",
-        **aria(labelledby="section-requirements"),
     )

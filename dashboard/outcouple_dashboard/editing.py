@@ -10,12 +10,12 @@ from dash import ALL, Dash, Input, Output, State, no_update, set_props
 
 from outcouple.errors import UserMistake
 from outcouple_dashboard import changes
-from outcouple_dashboard.controls import form, ref
+from outcouple_dashboard.controls import folded, form, ref
 from outcouple_dashboard.desk import Desk
-from outcouple_dashboard.documents import from_link, link_of, with_text
+from outcouple_dashboard.documents import from_link, with_text
 from outcouple_dashboard.edits import get_value
 from outcouple_dashboard.entries import Entry, contact_of, entry_at, slider_position, slider_text, split
-from outcouple_dashboard.tags import changed_inputs, local, pressed
+from outcouple_dashboard.tags import changed_inputs, pressed
 
 __all__ = ["register", "shown_text"]
 
@@ -46,41 +46,46 @@ def _register_link(app: Dash) -> None:
             return no_update, no_update
 
     app.callback(Output("doc", "data"), Output("pins", "data"), Input("url", "search"), State("doc", "data"))(on_open)
-    app.callback(Output("link", "data"), Input("doc", "data"), Input("pins", "data"), prevent_initial_call=True)(
-        lambda doc, pins: link_of(doc, pins or []) if doc else no_update
-    )
 
 
 def _register_form(app: Dash, desk: Desk) -> None:
     """The form is built anew only where a change did not come from one of its own controls."""
-    local(
-        app,
-        "formKey",
-        Output("form-key", "data"),
-        Input("doc", "data"),
-        State("form-key", "data"),
-    )
 
-    def on_form(key: Any, doc: Any) -> Any:
+    def on_form(key: Any, doc: Any, folds: Any) -> Any:
         if not doc:
             return no_update
         try:
             design = desk.design(doc["text"])
         except UserMistake:
             return []
-        return form(design, _saved(doc))
+        return form(design, _saved(doc), opened=folds or [])
 
     app.callback(
-        Output("form", "children"), Input("form-key", "data"), State("doc", "data"), prevent_initial_call=True
+        Output("form", "children"),
+        Input("form-key", "data"),
+        State("doc", "data"),
+        State("folds", "data"),
+        prevent_initial_call=True,
     )(on_form)
 
-    def on_title(doc: Any) -> Any:
-        try:
-            return desk.design(doc["text"]).title if doc else no_update
-        except UserMistake:
-            return doc["file"] or "A design with mistakes"
+    def on_fold(_clicks: Any, doc: Any, folds: Any) -> Any:
+        name, _ = pressed()
+        if not doc or name is None:
+            return no_update
+        key, opened = name["path"], list(folds or [])
+        shut = key in opened
+        inside = [] if shut else folded(desk.design(doc["text"]), _saved(doc), key)
+        set_props(ref("folded", key), {"children": inside, "hidden": shut})
+        set_props(name, {"aria-expanded": "false" if shut else "true"})
+        return [one for one in opened if one != key] if shut else [*opened, key]
 
-    app.callback(Output("headline-title", "children"), Input("doc", "data"), prevent_initial_call=True)(on_title)
+    app.callback(
+        Output("folds", "data"),
+        Input({"kind": "fold", "path": ALL}, "n_clicks"),
+        State("doc", "data"),
+        State("folds", "data"),
+        prevent_initial_call=True,
+    )(on_fold)
 
 
 def _saved(doc: Any) -> Any:
@@ -178,19 +183,19 @@ def _follow_controls(desk: Desk, doc: Any, path_text: str, new: str) -> None:
 def _register_rows(app: Dash, desk: Desk) -> None:
     """States and requirements added and removed, and another sensor."""
 
-    def on_rows(_removes: Any, _state: Any, _requirement: Any, sensor: Any, metric: Any, limit: Any, doc: Any) -> Any:
+    def on_rows(_removes: Any, _state: Any, _requirement: Any, sensor: Any, wanted: Any, doc: Any) -> Any:
         trigger, _ = pressed()
         if not doc or trigger is None:
             return no_update
         text = doc["text"]
         try:
             design = desk.design(text)
-            if isinstance(trigger, dict):
+            if isinstance(trigger, dict) and trigger["kind"] == "remove":
                 new = changes.remove_row(text, trigger["path"])
+            elif isinstance(trigger, dict):
+                new = changes.add_requirement(text, *wanted)
             elif trigger == "state-add":
                 new = changes.add_state(design, text)
-            elif trigger == "requirement-add":
-                new = changes.add_requirement(text, metric, limit or "")
             elif sensor == design.geometry.name:
                 return no_update
             else:
@@ -205,10 +210,9 @@ def _register_rows(app: Dash, desk: Desk) -> None:
         Output("doc", "data", allow_duplicate=True),
         Input({"kind": "remove", "path": ALL}, "n_clicks"),
         Input("state-add", "n_clicks"),
-        Input("requirement-add", "n_clicks"),
+        Input({"kind": "add-requirement", "path": ALL}, "n_clicks"),
         Input("geometry-pick", "value"),
-        State("requirement-metric", "value"),
-        State("requirement-limit", "value"),
+        State({"kind": "new-requirement", "path": ALL}, "value"),
         State("doc", "data"),
         prevent_initial_call=True,
     )(on_rows)

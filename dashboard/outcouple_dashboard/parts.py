@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 from collections.abc import Mapping, Sequence
 from typing import Any
 
@@ -14,11 +15,13 @@ from outcouple.report.figures import CONFIG
 from outcouple_dashboard.tags import aria
 
 __all__ = [
+    "JUDGED",
     "SEVERITY",
     "SHAPES",
     "WORDS",
     "card",
     "cautions",
+    "cell",
     "failures",
     "graph",
     "mark",
@@ -34,6 +37,7 @@ GRAPH: Any = {**CONFIG, "displayModeBar": False}
 """Options of every picture: zoom by dragging, a double click goes back; no buttons over the drawing."""
 WORDS = {"pass": "Pass", "fail": "Fail", "open": "Open", "none stated": "No verdict"}
 SHAPES = {"pass": "●", "fail": "▲", "open": "◇", "none stated": "○"}
+JUDGED = {"pass": "met", "fail": "missed", "open": "open"}
 DIRECTIONS = {
     "dangerous": ("▲", "dangerous"),
     "spurious": ("◆", "spurious"),
@@ -63,15 +67,18 @@ def graph(name: str, figure: Mapping[str, Any] | None = None, *, label: str = ""
 
 
 def table(head: Sequence[str], rows: Sequence[Sequence[Any]], *, numbers: Sequence[int] = (), caption: str = "") -> Any:
-    """A plain table that scrolls by itself where it is too wide."""
+    """A plain table that scrolls by itself where it is too wide; drawn in the browser, one component however long.
 
-    def cell(at: int, content: Any) -> Any:
-        return html.Td(content, className="number" if at in numbers else "")
+    A cell is a text, or what :func:`cell` gives.
+    """
+    given = {"head": list(head), "rows": [list(row) for row in rows], "numbers": list(numbers), "caption": caption}
+    attributes: dict[str, Any] = {**aria(label=caption or "table"), "data-table": json.dumps(given, ensure_ascii=False)}
+    return html.Div(className="scroll", tabIndex=0, role="region", **attributes)
 
-    parts: list[Any] = [html.Caption(caption, className="hidden-text")] if caption else []
-    parts.append(html.Thead(html.Tr([html.Th(one, scope="col") for one in head])))
-    parts.append(html.Tbody([html.Tr([cell(at, one) for at, one in enumerate(row)]) for row in rows]))
-    return html.Div(html.Table(parts), className="scroll", tabIndex=0, role="region", **aria(label=caption or "table"))
+
+def cell(text: str = "", *, mark: tuple[str, str, str] | None = None, title: str = "") -> dict[str, Any]:
+    """A table's cell: a mark (shape, word, tone), a text behind it, more on pointing."""
+    return {"text": text, "mark": mark, "title": title}
 
 
 def mark(shape: str, word: str, tone: str) -> Any:
@@ -140,7 +147,7 @@ def requirements(outcome: Outcome) -> Any:
         return html.P("This design states no requirements, so it can neither pass nor fail. Add one on the left.")
     rows = [
         (
-            mark(SHAPES[one.verdict], {"pass": "met", "fail": "missed", "open": "open"}[one.verdict], one.verdict),
+            cell(mark=(SHAPES[one.verdict], JUDGED[one.verdict], one.verdict)),
             one.label + (f" [{one.state}]" if one.state else ""),
             f"{one.sense} {_shown(one.limit, one.kind, one.unit)}",
             _shown(one.value, one.kind, one.unit) if one.value is not None else "open",
@@ -199,7 +206,7 @@ def failures(outcome: Outcome) -> Any:
         shape, word = DIRECTIONS[row.direction]
         rows.append(
             (
-                mark(shape, word + (", slowly" if row.slow else ""), row.direction),
+                cell(mark=(shape, word + (", slowly" if row.slow else ""), row.direction)),
                 row.cause,
                 row.effect,
                 row.reads,
@@ -241,7 +248,7 @@ def metrics_table(outcome: Outcome) -> Any:
     """Every metric with its meaning."""
     rows = [
         (
-            html.Span(metric.label, title=metric.meaning),
+            metric.label,
             _shown(metric.value, metric.kind, metric.unit) if metric.value is not None else metric.status,
             metric.at if metric.value is not None else metric.why,
             metric.meaning,

@@ -30,6 +30,26 @@
     }
   });
 
+  function formKey(doc, key) {
+    const was = key || {};
+    if (was.key && (doc.origin === "control" || doc.origin === "save") && was.opened === doc.opened) return keep();
+    return { key: (was.key || 0) + 1, opened: doc.opened };
+  }
+
+  function remember(doc) {
+    const travelled = doc.origin === "undo" || doc.origin === "redo";
+    if (!state.doc || state.doc.opened !== doc.opened) {
+      state.past = [];
+      state.future = [];
+    } else if (!travelled && state.last !== doc.text) {
+      state.past.push(state.last);
+      if (state.past.length > DEEP) state.past.shift();
+      state.future = [];
+    }
+    state.last = doc.text;
+    state.doc = doc;
+  }
+
   function relayout() {
     requestAnimationFrame(() => window.dispatchEvent(new Event("resize")));
   }
@@ -66,26 +86,26 @@
         return [theme, theme === "dark" ? "Light" : "Dark", theme === "dark" ? "true" : "false"];
       },
 
-      formKey: function (doc, key) {
-        if (!doc) return keep();
-        const was = key || {};
-        if (was.key && (doc.origin === "control" || doc.origin === "save") && was.opened === doc.opened) return keep();
-        return { key: (was.key || 0) + 1, opened: doc.opened };
-      },
-
-      remember: function (doc, _id) {
-        if (!doc) return [keep(), true, true];
-        if (doc.origin === "load") {
-          state.past = [];
-          state.future = [];
-        } else if (doc.origin !== "undo" && doc.origin !== "redo" && state.last !== null && state.last !== doc.text) {
-          state.past.push(state.last);
-          if (state.past.length > DEEP) state.past.shift();
-          state.future = [];
-        }
-        state.last = doc.text;
-        state.doc = doc;
-        return [{ past: state.past.length, future: state.future.length }, !state.past.length, !state.future.length];
+      // One change of the document and all that follows from it in the browser: form, undo, header, pages.
+      spread: function (doc, pathname, key) {
+        if (!doc) return [keep(), true, true, true, false, "no design", "", true, keep(), keep()];
+        const fresh = window.dash_clientside.callback_context.triggered.some((one) => one.prop_id === "doc.data");
+        if (fresh) remember(doc);
+        if (document.getElementById("work").hidden) relayout();
+        const changed = doc.text !== doc.saved;
+        const standing = !doc.file ? "not saved yet" : changed ? "changed" : "saved";
+        return [
+          fresh ? formKey(doc, key) : keep(),
+          !state.past.length,
+          !state.future.length,
+          false,
+          true,
+          doc.file || "new design",
+          standing,
+          Boolean(doc.file) && !changed,
+          pathname === "/vary" ? doc : keep(),
+          pathname === "/compare" ? doc : keep(),
+        ];
       },
 
       timeTravel: function (_undo, _redo) {
@@ -122,14 +142,6 @@
       redraw: function () { relayout(); return keep(); },
       closeMessage: (clicks) => (clicks ? true : keep()),
       hideStop: (off) => Boolean(off),
-
-      standing: function (doc) {
-        if (!doc) return [true, false, "no design", "", true];
-        relayout();
-        const changed = doc.text !== doc.saved;
-        const standing = !doc.file ? "not saved yet" : changed ? "changed" : "saved";
-        return [false, true, doc.file || "new design", standing, Boolean(doc.file) && !changed];
-      },
 
       readUpload: function (contents, name) {
         if (!contents) return keep();

@@ -194,16 +194,15 @@ MARKED = {"ok": "pass", "MISSED": "fail", "open": "open"}
 
 def _marked(rows: list[list[str]], caption: str) -> Any:
     """A table of the report with its words drawn as marks."""
-    return parts.table(rows[0], [[_mark(cell) for cell in row] for row in rows[1:]], caption=caption)
+    return parts.table(rows[0], [[_mark(text) for text in row] for row in rows[1:]], caption=caption)
 
 
-def _mark(cell: str) -> Any:
-    word, _, rest = cell.partition(" ")
+def _mark(text: str) -> Any:
+    word, _, rest = text.partition(" ")
     verdict = MARKED.get(word.rstrip(":"))
     if verdict is None:
-        return cell
-    shown = {"pass": "met", "fail": "missed", "open": "open"}[verdict]
-    return [parts.mark(parts.SHAPES[verdict], shown, verdict), rest]
+        return text
+    return parts.cell(rest, mark=(parts.SHAPES[verdict], parts.JUDGED[verdict], verdict))
 
 
 def _corners(found: Comparison) -> Any:
@@ -314,15 +313,10 @@ def _register_pins(app: Dash, desk: Desk) -> None:
 
 
 def _register_body(app: Dash, desk: Desk) -> None:
-    def on_pins(pins: Any, pathname: str, _doc: Any) -> Any:
-        return pin_rows(desk, pins or []) if pathname == "/compare" else no_update
+    app.callback(Output("pin-list", "children"), Input("pins", "data"))(lambda pins: pin_rows(desk, pins or []))
 
-    app.callback(Output("pin-list", "children"), Input("pins", "data"), Input("url", "pathname"), Input("doc", "data"))(
-        on_pins
-    )
-
-    def on_change(doc: Any, pins: Any, pathname: str, same: Any, tab: str) -> Any:
-        if not doc or pathname != "/compare":
+    def on_change(doc: Any, pins: Any, same: Any, tab: str) -> Any:
+        if not doc:
             return no_update, no_update
         rows = variants_of(desk, doc, pins or [])
         if len(rows) < 2:
@@ -334,9 +328,8 @@ def _register_body(app: Dash, desk: Desk) -> None:
     app.callback(
         Output("compare-job", "data"),
         Output("compare-clock", "disabled"),
-        Input("doc", "data"),
+        Input("doc-compare", "data"),
         Input("pins", "data"),
-        Input("url", "pathname"),
         Input("compare-same", "checked"),
         State("tab", "data"),
         prevent_initial_call=True,

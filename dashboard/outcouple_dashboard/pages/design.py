@@ -13,10 +13,17 @@ from outcouple.report import figures
 from outcouple_dashboard import parts
 from outcouple_dashboard.changes import plain_mistake
 from outcouple_dashboard.desk import Desk
+from outcouple_dashboard.documents import link_of
 from outcouple_dashboard.tags import aria, local
 
 __all__ = ["layout", "register"]
 
+PICTURES = {
+    "readings": "Readings and the level",
+    "ledger": "Where the light goes",
+    "noise": "What the noise is made of",
+    "response": "Response",
+}
 SECTION_HEIGHT = 330
 FOLLOW_EVERY = 400
 """Milliseconds between looks at background work."""
@@ -82,12 +89,12 @@ def layout() -> Any:
                 className="card wide",
                 **aria(labelledby="section-title"),
             ),
-            html.Div(id="cautions-place", className="wide"),
+            parts.card("Cautions", None, name="cautions", wide=True),
             parts.card("Requirements", None, name="requirements", wide=True),
-            parts.card("Readings and the level", None, name="readings"),
-            parts.card("Where the light goes", None, name="ledger"),
-            parts.card("What the noise is made of", None, name="noise"),
-            parts.card("Response", html.P("Being computed…", className="faint"), name="response"),
+            *(
+                parts.card(title, parts.graph(f"{name}-graph", label=title), name=name)
+                for name, title in PICTURES.items()
+            ),
             html.Div(id="maps", className="wide"),
             parts.card("If something fails", None, name="failures", wide=True),
             parts.card("All readings", None, name="states-table", wide=True),
@@ -100,6 +107,10 @@ def layout() -> Any:
         className="cards",
         id="design-cards",
     )
+
+
+def _picture_card(name: str, title: str) -> Any:
+    return parts.card(title, parts.graph(f"{name}-graph", label=title), name=name)
 
 
 def look_of(theme: str | None) -> figures.Look:
@@ -118,21 +129,38 @@ def section_picture(outcome: Outcome, states: list[str], theme: str | None) -> d
     return figures.section_figure(outcome, states, view=first_view(outcome), look=look_of(theme), height=SECTION_HEIGHT)
 
 
-def first_screen(desk: Desk, text: str, states: list[str], theme: str | None) -> tuple[Any, Any, Any]:
-    """(verdict, drawing, states to choose from)."""
+def first_screen(desk: Desk, doc: Any, states: list[str], theme: str | None) -> tuple[Any, Any, list[str], str]:
+    """(verdict, drawing, states to choose from, title)."""
     try:
-        outcome = desk.quick(text)
+        outcome = desk.quick(doc["text"])
     except UserMistake as mistake:
-        return parts.mistakes(plain_mistake(mistake)), _nothing(theme), []
+        return parts.mistakes(plain_mistake(mistake)), _nothing(theme), [], doc["file"] or "A design with mistakes"
     names = [state.name for state in outcome.states]
-    return parts.verdict(outcome), section_picture(outcome, states, theme), names
+    return parts.verdict(outcome), section_picture(outcome, states, theme), names, outcome.title
 
 
-def _nothing(theme: str | None) -> dict[str, Any]:
+def _nothing(theme: str | None, told: str = "") -> dict[str, Any]:
+    """An empty picture with a few words in it."""
     look = look_of(theme)
-    layout = {"paper_bgcolor": look.paper, "plot_bgcolor": look.paper, "height": 80}
     hidden = {"visible": False}
+    words = {"text": told, "x": 0.5, "y": 0.5, "xref": "paper", "yref": "paper", "showarrow": False}
+    words["font"] = {"color": look.faint, "size": 13}
+    layout = {"paper_bgcolor": look.paper, "plot_bgcolor": look.paper, "height": 80, "annotations": [words]}
     return {"data": [], "layout": {**layout, "xaxis": hidden, "yaxis": hidden}}
+
+
+def pictures(outcome: Outcome, theme: str | None, busy: bool) -> list[dict[str, Any]]:
+    """The pictures of ``PICTURES``, in their order."""
+    look = look_of(theme)
+    noise = figures.noise_figure(outcome, look=look) if outcome.noise else _nothing(theme, "no noise")
+    told = "being computed…" if busy else "this sensor has no response curve"
+    response = _nothing(theme, told) if outcome.curve is None else figures.response_figure(outcome, look=look)
+    return [figures.signals_figure(outcome, look=look), figures.ledger_figure(outcome, look=look), noise, response]
+
+
+def tall(figure: dict[str, Any]) -> dict[str, str]:
+    """Style of a picture's place."""
+    return {"height": f"{figure['layout']['height']}px"}
 
 
 def advice(outcome: Outcome, busy: bool) -> Any:
@@ -201,78 +229,66 @@ def maps(outcome: Outcome, theme: str | None) -> list[Any]:
 
 def register(app: Dash, desk: Desk) -> None:
     """Hang all parts on the document."""
+    _register_first(app, desk)
+    _register_rest(app, desk)
+    _register_follow(app, desk)
 
-    def on_first(doc: Any, states: list[str] | None, theme: str | None, _followed: Any) -> Any:
+
+def _register_first(app: Dash, desk: Desk) -> None:
+    def on_first(doc: Any, states: list[str] | None, theme: str | None, _followed: Any, pins: Any) -> Any:
         if not doc:
-            return no_update, no_update, no_update, no_update
-        body, figure, names = first_screen(desk, doc["text"], states or [], theme)
+            return (no_update,) * 6
+        body, figure, names, title = first_screen(desk, doc, states or [], theme)
         kept = [name for name in states or [] if name in names]
-        return body, figure, names, no_update if kept == (states or []) else kept
+        chosen = no_update if kept == (states or []) else kept
+        return body, figure, names, chosen, title, link_of(doc, pins or [])
 
     app.callback(
         Output("verdict", "children"),
         Output("section", "figure"),
         Output("shown-states", "data"),
         Output("shown-states", "value"),
+        Output("headline-title", "children"),
+        Output("link", "data"),
         Input("doc", "data"),
         Input("shown-states", "value"),
         Input("theme", "data"),
         Input("followed", "data"),
+        Input("pins", "data"),
         prevent_initial_call=True,
     )(on_first)
 
-    def on_rest(
-        doc: Any, theme: str | None, _followed: Any, states: list[str] | None, job: str | None, tab: str
-    ) -> Any:
+
+def _register_rest(app: Dash, desk: Desk) -> None:
+    def on_rest(doc: Any, theme: str | None, _seen: Any, states: list[str] | None, job: str | None, tab: str) -> Any:
         if not doc:
-            return (no_update,) * 12
+            return (no_update,) * 16
         try:
             outcome = desk.quick(doc["text"])
         except UserMistake:
-            return (None,) * 12
-        look = look_of(theme)
+            nothing = _nothing(theme)
+            return (*(None,) * 8, *(nothing,) * 4, *(tall(nothing),) * 4)
         running = desk.jobs.find(job, tab)
         busy = running is not None and not running.over
-        noise = parts.graph("noise-graph", figures.noise_figure(outcome, look=look), label="Shares of the noise power")
-        response: Any = html.P("Being computed…" if busy else "This sensor has no response curve.", className="faint")
-        if outcome.curve is not None:
-            response = parts.graph(
-                "response-graph", figures.response_figure(outcome, look=look), label=outcome.curve.label
-            )
+        drawn = pictures(outcome, theme, busy)
         return (
             advice(outcome, busy),
-            parts.card("Cautions", parts.cautions(outcome.notes), name="cautions", wide=True),
+            parts.cautions(outcome.notes),
             parts.requirements(outcome),
-            parts.graph(
-                "readings-graph",
-                figures.signals_figure(outcome, look=look),
-                label="Readings with their spread, and the level",
-            ),
-            parts.graph(
-                "ledger-graph", figures.ledger_figure(outcome, look=look), label="Where the light goes, per state"
-            ),
-            noise if outcome.noise else html.P("No noise.", className="faint"),
-            response,
             maps(outcome, theme),
             parts.failures(outcome),
             parts.states_table(outcome),
             parts.metrics_table(outcome),
             [*other_drawings(outcome, states or [], theme), *plugin_views(outcome, desk)],
+            *drawn,
+            *(tall(figure) for figure in drawn),
         )
 
+    names = ("advice", "cautions", "requirements", "maps", "failures", "states-table", "metrics-table", "views")
     app.callback(
-        Output("advice", "children"),
-        Output("cautions-place", "children"),
-        Output("requirements", "children"),
-        Output("readings", "children"),
-        Output("ledger", "children"),
-        Output("noise", "children"),
-        Output("response", "children"),
-        Output("maps", "children"),
-        Output("failures", "children"),
-        Output("states-table", "children"),
-        Output("metrics-table", "children"),
-        Output("views", "children"),
+        *(Output(name, "children") for name in names),
+        *(Output(f"{name}-graph", "figure") for name in PICTURES),
+        *(Output(f"{name}-graph", "style") for name in PICTURES),
         Input("doc", "data"),
         Input("theme", "data"),
         Input("followed", "data"),
@@ -281,7 +297,6 @@ def register(app: Dash, desk: Desk) -> None:
         State("tab", "data"),
         prevent_initial_call=True,
     )(on_rest)
-    _register_follow(app, desk)
 
 
 def _register_follow(app: Dash, desk: Desk) -> None:

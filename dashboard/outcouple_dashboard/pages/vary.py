@@ -259,8 +259,8 @@ def register(app: Dash, desk: Desk) -> None:
 
 
 def _register_pickers(app: Dash, desk: Desk) -> None:
-    def on_doc(doc: Any, pathname: str, x: Any, y: Any, metric: Any, opened: Any) -> Any:
-        if not doc or pathname != "/vary":
+    def on_doc(doc: Any, x: Any, y: Any, metric: Any, opened: Any) -> Any:
+        if not doc:
             return (no_update,) * 7
         try:
             inputs, again, new_x, new_y, metrics, new_metric = setup(desk, doc["text"], x, y, metric)
@@ -280,8 +280,7 @@ def _register_pickers(app: Dash, desk: Desk) -> None:
         Output("vary-metric", "data"),
         Output("vary-metric", "value"),
         Output("vary-opened", "data"),
-        Input("doc", "data"),
-        Input("url", "pathname"),
+        Input("doc-vary", "data"),
         State("vary-x", "value"),
         State("vary-y", "value"),
         State("vary-metric", "value"),
@@ -305,10 +304,8 @@ def _register_pickers(app: Dash, desk: Desk) -> None:
 
 
 def _register_job(app: Dash, desk: Desk) -> None:
-    def on_setup(
-        doc: Any, pathname: str, x0: str, x1: str, y0: str, y1: str, metric: str | None, x: Any, y: Any, tab: str
-    ) -> Any:
-        if not doc or pathname != "/vary" or not x or not x0 or not metric or (y and not y0):
+    def on_setup(doc: Any, x0: str, x1: str, y0: str, y1: str, metric: str | None, x: Any, y: Any, tab: str) -> Any:
+        if not doc or not x or not x0 or not metric or (y and not y0):
             return no_update, no_update, no_update
         try:
             design = desk.design(doc["text"])
@@ -323,8 +320,7 @@ def _register_job(app: Dash, desk: Desk) -> None:
         Output("vary-job", "data"),
         Output("vary-clock", "disabled"),
         Output("vary-said", "children"),
-        Input("doc", "data"),
-        Input("url", "pathname"),
+        Input("doc-vary", "data"),
         Input("vary-x-from", "value"),
         Input("vary-x-to", "value"),
         Input("vary-y-from", "value"),
