@@ -117,7 +117,7 @@ def test_every_control_has_a_name_and_the_page_its_landmarks(visitor):
     """
     assert visitor.browser.execute_script(script) == []
     assert visitor.browser.execute_script("return document.documentElement.lang") == "en"
-    for css, count in (("main", 1), ("header", 1), ("nav", 1), ("aside", 1)):
+    for css, count in (("main", 1), ("header.bar", 1), ("nav", 1), ("aside", 1)):
         assert len(visitor.all(css)) == count, css
     visible = "return Array.from(document.querySelectorAll('h1')).filter(e => e.offsetParent).length"
     assert visitor.browser.execute_script(visible) == 1

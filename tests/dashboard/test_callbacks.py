@@ -27,10 +27,23 @@ def words(component):
     """All text of a drawn component."""
     if isinstance(component, dict):
         props = component.get("props", {})
+        if "data-table" in props:
+            return cells(json.loads(props["data-table"]))
         return " ".join(words(props[name]) for name in ("children", "value") if props.get(name) is not None)
     if isinstance(component, list):
         return " ".join(words(one) for one in component)
     return "" if component is None else str(component)
+
+
+def cells(table):
+    """All text of a table that the browser draws."""
+    found = []
+    for cell in (cell for row in table["rows"] for cell in row):
+        if isinstance(cell, dict):
+            found += [*(cell["mark"] or ())[:2], cell["text"]]
+        else:
+            found.append(str(cell))
+    return " ".join(found)
 
 
 def change(calls, doc, path, text, kind="value", prop="value"):
@@ -135,16 +148,16 @@ def test_a_file_with_mistakes_says_where(calls, tank):
 
 def test_the_rest_of_the_page_draws_every_part(calls, tank):
     found = calls.fire("advice.children", "doc", "data", {"doc.data": document(tank), "tab.data": "me"})
-    assert "Danger" in words(found["cautions-place.children"])
-    assert "explosive" in words(found["cautions-place.children"])
+    assert "Danger" in words(found["cautions.children"])
+    assert "explosive" in words(found["cautions.children"])
     told = words(found["failures.children"])
     assert "▲ dangerous" in told
     assert "◆ spurious" in told
     assert "dry angle margin" in words(found["requirements.children"])
     graphs = ("readings", "ledger", "noise")
     for name in graphs:
-        config = found[f"{name}.children"]["props"]["children"]["props"]["config"]
-        assert config["showSendToCloud"] is False
+        assert found[f"{name}-graph.figure"]["data"]
+        assert found[f"{name}-graph.style"]["height"].endswith("px")
 
 
 def test_a_requirement_that_waits_for_a_map_reads_open(calls):
@@ -243,3 +256,16 @@ def test_a_strangers_sensor_and_views_need_no_line_here(folder, stranger):
         job.cancelled.wait(0.02)
     assert (job.state, job.why) == ("done", ())
     app.desk.jobs.close()
+
+
+def test_a_fold_is_filled_when_it_is_opened(calls, tank):
+    doc, id_ = document(tank), field("section/layout", "fold")
+    found = calls.fire("folds.data", id_, "n_clicks", {"doc.data": doc, "folds.data": [], key(id_, "n_clicks"): 1})
+    assert found["folds.data"] == ["section/layout"]
+    inside = field("section/layout", "folded")
+    assert "detector position" in json.dumps(found[key(inside, "children")])
+    assert found[key(inside, "hidden")] is False
+    values = {"doc.data": doc, "folds.data": ["section/layout"], key(id_, "n_clicks"): 2}
+    found = calls.fire("folds.data", id_, "n_clicks", values)
+    assert found["folds.data"] == []
+    assert found[key(inside, "children")] == []

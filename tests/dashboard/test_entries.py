@@ -10,7 +10,7 @@ from outcouple.design import design_model, parse_design
 from outcouple.design.starter import starter_text
 from outcouple.fields import leaves, parse_leaf
 from outcouple.hooks import build_host
-from outcouple_dashboard.controls import form
+from outcouple_dashboard.controls import folds, form
 from outcouple_dashboard.entries import STEPS, join, section_groups, slider_position, slider_text
 from outcouple_dashboard.ranges import sentence, span_of, varying
 
@@ -32,7 +32,11 @@ def test_every_input_has_a_control(name):
     from dash import html
 
     design = design_for(name)
-    found = {one["path"] for one in ids(html.Div(form(design, {}))) if isinstance(one, dict) and one["kind"] == "value"}
+    found = {
+        one["path"]
+        for one in ids(html.Div(form(design, {}, opened=folds(design))))
+        if isinstance(one, dict) and one["kind"] == "value"
+    }
     assert {join(leaf.path) for leaf in leaves(design_model(type(design.geometry)))} <= found
 
 
