@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.design import Design
-from outcouple.evaluation.curves import continuous_curve
+from outcouple.evaluation.curves import POINTS, continuous_curve
 from outcouple.evaluation.measures import measure_common
 from outcouple.evaluation.overlay import Samples, check_samples, samples_count
 from outcouple.evaluation.signals import trial_share
@@ -22,7 +22,7 @@ __all__ = ["Batch", "evaluate_batch", "measure", "results_of", "sample_elements"
 
 Floats = NDArray[np.float64]
 
-ELEMENTS = 4_000_000
+ELEMENTS = 2_000_000
 """Array elements a chunk may hold; keeps the peak of a batch near 300 MB whatever its length."""
 SAMPLES = 256
 """Samples a chunk may hold: beyond, arrays only grow, and nothing gets faster."""
@@ -79,7 +79,8 @@ def sample_elements(table: Table) -> int:
     light = next(iter(table.lights.values()))
     channels = max(light.hits.shape[1], light.length.shape[1])
     nodes = max(len(row.laid.weights) for row in table.rows)
-    return int(nodes * light.rays * max(channels, len(light.faces)) + light.reach[0].size)
+    along = POINTS if any(isinstance(row.laid.state.expect, float) for row in table.rows) else 1
+    return along * int(nodes * light.rays * max(channels, len(light.faces)) + light.reach[0].size)
 
 
 def _signals(table: Table) -> dict[str, Floats]:

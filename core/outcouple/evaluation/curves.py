@@ -15,7 +15,7 @@ from outcouple.evaluation.table import Table, nodes_for
 from outcouple.geometry import ContinuousCurve, Curve, ResponseAxis
 from outcouple.readout.chain import Reading, read
 
-__all__ = ["continuous_curve", "response_curve"]
+__all__ = ["POINTS", "continuous_curve", "response_curve"]
 
 Floats = NDArray[np.float64]
 

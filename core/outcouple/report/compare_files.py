@@ -115,7 +115,7 @@ def _variant(found: Comparison, one: Variant) -> dict[str, Any]:
 
 
 def _rescue(found: Rescue) -> dict[str, Any]:
-    return {"searched": found.searched, "found": [_flip(flip) for flip in found.found]}
+    return {"searched": found.searched, "coarse": found.few, "found": [_flip(flip) for flip in found.found]}
 
 
 def _flip(flip: Flip) -> dict[str, Any]:

@@ -121,14 +121,16 @@ def _missed(found: Comparison, at: int) -> str:
 
 def _rescue(one: Variant) -> str:
     assert one.rescue is not None
+    coarse = " that move a requirement, in long steps" if one.rescue.few else ""
     if not one.rescue.found:
         return (
-            f"rescue: none; none of its {one.rescue.searched} free numeric inputs, changed alone within its bounds, "
-            "meets every requirement"
+            f"rescue: none; none of its {one.rescue.searched} free numeric inputs{coarse}, changed alone within its "
+            "bounds, meets every requirement"
         )
     best, *rest = one.rescue.found
     others = f"; or {', or '.join(_change(flip) for flip in rest[:2])}" if rest else ""
-    return f"rescue: {_change(best)} meets every requirement{others} (nominal; {one.rescue.searched} inputs searched)"
+    searched = f"nominal; {one.rescue.searched} inputs{coarse} searched"
+    return f"rescue: {_change(best)} meets every requirement{others} ({searched})"
 
 
 def _change(flip: Flip) -> str:

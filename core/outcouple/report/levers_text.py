@@ -54,6 +54,10 @@ def format_levers(found: Levers) -> str:
         "elasticity: percent of the metric per percent of the input",
         "from, to: one input at a time; - where the verdict holds as far as the input may go",
     ]
+    if found.few:
+        parts.append(
+            "one evaluation is dear: bounds are sought in long steps, and only of inputs that move something here"
+        )
     if idle:
         parts += ["", f"Without any effect on the verdict ({len(idle)}): {', '.join(idle)}"]
     return "\n".join(parts) + "\n"
@@ -131,6 +135,7 @@ def levers_data(found: Levers) -> dict[str, Any]:
             "margin": finite(found.worst),
         },
         "open": list(found.unknown),
+        "coarse": found.few,
         "levers": [_data(one) for one in found.levers],
     }
 

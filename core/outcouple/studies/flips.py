@@ -12,10 +12,10 @@ from numpy.typing import NDArray
 from outcouple.design import Design
 from outcouple.fields import Leaf
 from outcouple.quantities import format_number, from_unit, in_unit
-from outcouple.studies.margins import margins, wanted_for
+from outcouple.studies.margins import SIGMA, judged_by, margins, wanted_for
 from outcouple.studies.work import Task, chunked, elements_of, run_tasks
 
-__all__ = ["Flip", "Input", "ladder", "margins_at", "turning_points"]
+__all__ = ["Flip", "Input", "all_met", "is_dear", "ladder", "margins_at", "movers", "step_about", "turning_points"]
 
 Floats = NDArray[np.float64]
 
@@ -23,8 +23,16 @@ NEAR = (0.003, 0.01, 0.03, 0.1)
 """First relative steps away from the value."""
 FAR = 8
 """Steps from there to the bound."""
+FEW_NEAR, FEW_FAR = (0.02, 0.1), 4
+"""The same where an evaluation is dear."""
+DEAR = 50_000
+"""Array elements of one sample from which an evaluation is dear: channels by the thousand, or a curve per sample."""
 REACH = 100.0
 """Factor up to which an input without a bound is tried."""
+TOLD = 1e-6
+"""Standard deviations from the level below which a state is not told from the other."""
+STEP = 0.01
+"""Relative step of differences."""
 ROUNDS = 3
 INSIDE = 8
 """Points between two steps in every round of closing in: three rounds leave a 700th of the step."""
@@ -67,11 +75,17 @@ class Flip:
         return abs(self.value - self.input.value) / size
 
 
-def ladder(one: Input, *, upwards: bool) -> Floats:
+def is_dear(design: Design) -> bool:
+    """True where a search takes fewer steps, and leaves out inputs that move nothing here."""
+    return elements_of(design) > DEAR
+
+
+def ladder(one: Input, *, upwards: bool, few: bool = False) -> Floats:
     """Values from an input's own towards its bound, nearest first, the bound last.
 
     Even ratios where value and bound are positive and far apart, growing steps otherwise.
     """
+    near_steps, count = (FEW_NEAR, FEW_FAR) if few else (NEAR, FAR)
     value, sign = one.value, 1.0 if upwards else -1.0
     bound = one.leaf.high if upwards else one.leaf.low
     size = abs(value) or one.leaf.small_step()
@@ -80,13 +94,12 @@ def ladder(one: Input, *, upwards: bool) -> Floats:
         end = value / REACH**2
     if (end - value) * sign <= 0:
         return np.zeros(0)
-    near = value + sign * size * np.array(NEAR)
-    start = near[-1]
+    near = value + sign * size * np.array(near_steps)
+    start, part = near[-1], np.arange(1, count + 1) / count
     if value > 0 and end > 0 and max(end / start, start / end) > 3:
-        far = start * (end / start) ** (np.arange(1, FAR + 1) / FAR)
+        far = start * (end / start) ** part
     else:
-        far = start + (end - start) * (np.arange(1, FAR + 1) / FAR) ** 2
-        far = np.concatenate([value + sign * size * np.array([0.3, 0.6, 0.9]), far]) if end * sign <= 0 < size else far
+        far = np.concatenate([value + sign * size * np.array([0.3, 0.6, 0.9]), start + (end - start) * part**2])
     far[-1] = end
     steps = np.concatenate([near, far])
     inside = (steps - value) * sign
@@ -101,13 +114,12 @@ def margins_at(
     executor: Executor | None = None,
     progress: Callable[[int, int], None] | None = None,
 ) -> Floats:
-    """Margins (requirements, points) with one input at a time moved to a value."""
-    if not points:
-        return np.zeros((len(design.requirements) or 1, 0))
-    found = np.full((len(design.requirements) or 1, len(points)), np.nan)
+    """Margins with one input at a time moved to a value: a row per requirement, the last the margin in sigma."""
+    rows = (*judged_by(design), SIGMA)
+    found = np.full((len(rows), len(points)), np.nan)
     done = 0
     for task, batch in run_tasks(_tasks(design, points), executor):
-        found[:, task.places] = margins(design, batch.metrics)
+        found[:, task.places] = margins(design, batch.metrics, rows)
         done += len(task.places)
         if progress is not None:
             progress(done, len(points))
@@ -119,7 +131,8 @@ def _tasks(design: Design, points: Sequence[tuple[Input, float]]) -> list[Task]:
     places: dict[tuple[str, ...], list[int]] = {}
     for at, (one, _) in enumerate(points):
         places.setdefault(one.path, []).append(at)
-    want, size = wanted_for(design), elements_of(design)
+    want = tuple(dict.fromkeys([*wanted_for(design), SIGMA.metric]))
+    size = elements_of(design) if points else None
     return [
         task
         for path, mine in places.items()
@@ -129,20 +142,44 @@ def _tasks(design: Design, points: Sequence[tuple[Input, float]]) -> list[Task]:
     ]
 
 
+def step_about(one: Input) -> tuple[float, float]:
+    """A percent to either side, within the bounds; a hundredth of a small step about zero."""
+    step = abs(one.value) * STEP or one.leaf.small_step() * STEP
+    return one.leaf.clip(one.value - step), one.leaf.clip(one.value + step)
+
+
+def movers(inputs: Sequence[Input], moved: Floats) -> list[Input]:
+    """The inputs that move any margin; ``moved`` as :func:`margins_at` gives it at the two ends of every step."""
+    low, high = moved[:, 0::2], moved[:, 1::2]
+    still = np.all((low == high) | (np.isnan(low) & np.isnan(high)), axis=0)
+    return [one for one, idle in zip(inputs, still, strict=True) if not idle]
+
+
+def all_met(found: Floats) -> NDArray[np.bool_]:
+    """True where every requirement is met and every state is told right: a sensor that sees nothing is no pass.
+
+    found  as :func:`margins_at` gives them; a sensor without binary states has no margin in sigma, and needs none
+    """
+    return np.asarray(np.all(found[:-1] >= 0, axis=0) & ~(found[-1] < TOLD))
+
+
 def turning_points(
     design: Design,
     inputs: Sequence[Input],
     good: Callable[[Floats], NDArray[np.bool_]],
     *,
+    few: bool = False,
     executor: Executor | None = None,
     progress: Callable[[int, int], None] | None = None,
 ) -> list[Flip]:
     """For every input and direction the nearest value at which ``good(margins)`` turns true; in the input's own unit
     rounded to three or four digits where that still holds.
 
+    few  take longer steps
+
     What lies between two steps of the ladder is not seen: a verdict that turns twice within one step goes unnoticed.
     """
-    runs = [(one, up, ladder(one, upwards=up)) for one in inputs for up in (True, False)]
+    runs = [(one, up, ladder(one, upwards=up, few=few)) for one in inputs for up in (True, False)]
     runs = [run for run in runs if len(run[2])]
     points = [(one, float(value)) for one, _, steps in runs for value in steps]
     turned = good(margins_at(design, points, executor=executor, progress=progress))

@@ -16,15 +16,23 @@ from outcouple.evaluation.judge import value_for
 from outcouple.fields import Section, leaf_at, leaves
 from outcouple.geometry import Metric, MetricValue
 from outcouple.metrics import metrics_of
-from outcouple.studies.flips import Flip, Input, margins_at, turning_points
+from outcouple.studies.flips import (
+    STEP,
+    Flip,
+    Input,
+    all_met,
+    is_dear,
+    margins_at,
+    movers,
+    step_about,
+    turning_points,
+)
 from outcouple.studies.margins import deciding, judged_by, label_of, margins, scale_of, wanted_for
 
 __all__ = ["Lever", "Levers", "all_inputs", "levers"]
 
 Floats = NDArray[np.float64]
 
-STEP = 0.01
-"""Relative step of the differences."""
 NOTHING = 1e-9
 """Smallest movement of a margin (in units of its limit) that counts as one."""
 
@@ -64,6 +72,7 @@ class Levers:
     worst        its margin in units of its limit
     verdict      "pass", "fail" or "open": what the bounds keep
     unknown      requirements without a value here
+    few          True where the design is dear: longer steps, and bounds only of inputs that move something here
     """
 
     title: str
@@ -77,6 +86,7 @@ class Levers:
     levers: tuple[Lever, ...]
     unknown: tuple[str, ...] = ()
     stated: bool = True
+    few: bool = False
 
 
 def all_inputs(design: Design) -> list[Input]:
@@ -117,22 +127,25 @@ def levers(
     worst, at = deciding(rows)
     one = required[int(at[0])]
     inputs = all_inputs(design)
-    steps = [_about(each) for each in inputs]
+    steps = [step_about(each) for each in inputs]
     points = [(each, value) for each, pair in zip(inputs, steps, strict=True) for value in pair]
-    moved = margins_at(design, points, executor=executor, progress=progress)[int(at[0])].reshape(-1, 2)
+    moved = margins_at(design, points, executor=executor, progress=progress)
     passing = bool(worst[0] >= 0)
+    known_here = ~np.isnan(rows[:, 0])
 
     def turned(found: Floats) -> NDArray[np.bool_]:
-        least, _ = deciding(found)
-        return np.asarray((least < 0) if passing else (least >= 0))
+        if not passing:
+            return all_met(found)
+        return np.asarray(np.any(~(found[:-1][known_here] >= 0), axis=0))
 
-    sought = inputs if np.isfinite(worst[0]) else []
-    flips = turning_points(design, sought, turned, executor=executor, progress=progress)
+    few = is_dear(design)
+    sought = (movers(inputs, moved) if few else inputs) if np.isfinite(worst[0]) else []
+    flips = turning_points(design, sought, turned, few=few, executor=executor, progress=progress)
     turns = {(flip.input.path, flip.upwards): flip for flip in flips}
     value = _value(design, one, here.get(one.metric))
     made = [
         _lever(each, pair, ends, value, scale_of(one), one, turns)
-        for each, pair, ends in zip(inputs, steps, moved, strict=True)
+        for each, pair, ends in zip(inputs, steps, moved[int(at[0])].reshape(-1, 2), strict=True)
     ]
     unknown = [label_of(each, known[each.metric]) for each, row in zip(required, rows, strict=True) if np.isnan(row[0])]
     return Levers(
@@ -147,6 +160,7 @@ def levers(
         levers=tuple(sorted(made, key=_strength)),
         unknown=tuple(unknown),
         stated=bool(design.requirements),
+        few=few,
     )
 
 
@@ -155,12 +169,6 @@ def _strength(lever: Lever) -> tuple[bool, float, float, str]:
     effect = abs(lever.effect) if abs(lever.effect) > NOTHING else 0.0
     soonest = min((flip.relative for flip in (lever.below, lever.above) if flip is not None), default=np.inf)
     return not lever.moves, -effect, soonest, lever.input.name
-
-
-def _about(one: Input) -> tuple[float, float]:
-    """A percent to either side, within the bounds."""
-    step = abs(one.value) * STEP or one.leaf.small_step() * STEP
-    return one.leaf.clip(one.value - step), one.leaf.clip(one.value + step)
 
 
 def _value(design: Design, one: Requirement, found: object) -> float:
