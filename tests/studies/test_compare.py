@@ -154,6 +154,17 @@ def test_the_smallest_change_that_rescues_is_found_where_single_evaluations_turn
     assert relatives == sorted(relatives)
 
 
+def test_a_blind_sensor_is_no_rescue() -> None:
+    """An emitter beside its plate leaves nothing to confuse, so both requirements of the strip would be met by it."""
+    design = demo("cooktop_strip")
+    blind = sweep(design, ["emitters.offset at 5 mm"])
+    assert set(blind.verdicts) == {"pass"}
+    assert blind.metrics["margin_sigma"].values[0] < 0
+    found = rescue(design)
+    assert found.few, "a plate with many channels is searched in longer steps, and says so"
+    assert "emitters.offset" not in [flip.input.name for flip in found.found]
+
+
 def test_tables_and_data_hold_every_variant_and_requirement(acid: Comparison) -> None:
     rows = comparison_rows(acid)
     assert len(rows) == 1 + 2 * len(acid.rows)

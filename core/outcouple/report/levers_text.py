@@ -55,9 +55,7 @@ def format_levers(found: Levers) -> str:
         "from, to: one input at a time; - where the verdict holds as far as the input may go",
     ]
     if found.few:
-        parts.append(
-            "one evaluation is dear: bounds are sought in long steps, and only of inputs that move something here"
-        )
+        parts.append("evaluations are dear here: bounds are sought in long steps, of inputs that move something alone")
     if idle:
         parts += ["", f"Without any effect on the verdict ({len(idle)}): {', '.join(idle)}"]
     return "\n".join(parts) + "\n"
