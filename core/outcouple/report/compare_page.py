@@ -34,9 +34,9 @@ def comparison_pictures(found: Comparison, *, look: figures.Look = figures.LIGHT
 
 def comparison_page(found: Comparison, *, look: figures.Look = figures.LIGHT) -> str:
     """One self-contained HTML page."""
-    variants = [["variant", "", "why"]]
+    variants = [["variant", "verdict", "why"]]
     for at, one in enumerate(found.variants):
-        why = ". ".join(_sentence(line) for line in variant_lines(found, at))
+        why = "\n".join(_sentence(line) for line in variant_lines(found, at))
         variants.append([one.label, one.verdict.upper(), why])
     tables = [("Variants", variants), ("Requirements, nominal", requirement_table(found))]
     corners = corner_table(found)

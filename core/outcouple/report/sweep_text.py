@@ -37,9 +37,7 @@ def sweep_lines(found: Sweep) -> tuple[str, list[tuple[str, list[list[str]]]], l
     tables = []
     for heading, lines in (("All requirements are met", _span_lines(found)), ("Just met", _crossing_lines(found))):
         if lines:
-            tables.append(
-                (heading, [[f"{len(lines)} places, interpolated between points"], *([line] for line in lines)])
-            )
+            tables.append((heading, [["interpolated between points"], *([line] for line in lines)]))
     lead = f"{_axes(found)}: {_count(found)}." + ("" if _span_lines(found) else f" {_met(found)}.")
     return lead, tables, _cautions(found)
 

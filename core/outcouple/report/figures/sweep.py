@@ -85,7 +85,9 @@ def verdict_figure(found: Sweep, *, at: Place | None = None, look: Look = LIGHT)
     if upward is None:
         return margin_figure(found, look=look)
     place = at or slices(found)[0]
-    values = np.clip(_slice(found.worst, place, across, upward), -BOUND, BOUND)
+    values = _slice(found.worst, place, across, upward)
+    if np.any(values > -BOUND):
+        values = np.clip(values, -BOUND, BOUND)
     return _map(found, values * 100.0, "% of the limit", place, [0.0], look)
 
 
@@ -109,8 +111,9 @@ def _curves(found: Sweep, metric: Metric, across: int, limits: Sequence[Limit], 
     layout["shapes"] = [_level(bound, look) for bound in bounds]
     layout["annotations"] = [_note(bound, limit, metric, look) for bound, limit in zip(bounds, limits, strict=True)]
     drawn = np.concatenate([_scaled(values, metric) for _, values in lines[:SERIES]])
-    if _wide(np.append(drawn, bounds)):
-        layout["yaxis"]["type"] = "log"
+    every = np.append(drawn, bounds)
+    if _wide(every):
+        layout["yaxis"].update(type="log", **_log_ticks(every[np.isfinite(every)].tolist()))
         layout["annotations"] = [{**one, "y": float(np.log10(one["y"]))} for one in layout["annotations"]]
     layout["shapes"] += _bands(found, across, look)
     return {"data": data, "layout": layout}
