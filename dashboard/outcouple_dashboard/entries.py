@@ -35,6 +35,8 @@ __all__ = [
 Path = tuple[str, ...]
 STEPS = 1000
 """Positions of a slider."""
+SHARED = ("emitter", "readout", "decision", "environment")
+"""Sections that every sensor has; its own stand before them."""
 DECADES = 8
 """Decades a logarithmic slider spans where the lower limit is zero."""
 
@@ -107,8 +109,8 @@ def section_groups(design: Design) -> list[Group]:
     for leaf in leaves(design_model(type(design.geometry))):
         found.setdefault(leaf.path[0], []).append(_entry(design, leaf.path, leaf, leaf.default_text))
         about.setdefault(leaf.path[0], leaf.section)
-    own = [name for name in design.geometry.Parameters.model_fields if name in found]
-    order = [*own, *(name for name in ("emitter", "readout", "decision", "environment") if name not in own)]
+    own = [name for name in design.geometry.Parameters.model_fields if name not in SHARED]
+    order = [*own, *SHARED]
     return [Group(name, about[name], tuple(found[name])) for name in order if name in found]
 
 

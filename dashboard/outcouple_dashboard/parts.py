@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+import re
 from collections.abc import Mapping, Sequence
 from typing import Any
 
@@ -27,6 +28,7 @@ __all__ = [
     "mark",
     "metrics_table",
     "mistakes",
+    "plain",
     "requirements",
     "states_table",
     "table",
@@ -84,6 +86,11 @@ def cell(text: str = "", *, mark: tuple[str, str, str] | None = None, title: str
 def mark(shape: str, word: str, tone: str) -> Any:
     """A word with its shape; colour only repeats them."""
     return html.Span([html.Span(shape, className="shape", **aria(hidden="true")), word], className=f"mark {tone}")
+
+
+def plain(text: str) -> str:
+    """A text of the report without what only a command line can be asked for."""
+    return re.sub(r" \(--[a-z-]+[^)]*\)", "", text)
 
 
 def verdict(outcome: Outcome) -> list[Any]:

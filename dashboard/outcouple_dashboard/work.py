@@ -13,7 +13,6 @@ from typing import Any
 from outcouple.design import Design, parse_design
 from outcouple.errors import UserMistake
 from outcouple.evaluation import evaluate
-from outcouple.geometry import Curve
 from outcouple.hooks import Host, build_host
 from outcouple.metrics import metrics_of
 from outcouple.outcome import Outcome
@@ -61,19 +60,19 @@ def vary(step: Step, *, text: str, axes: list[str], metric: str) -> Iterator[Swe
     )
 
 
-def compare(step: Step, *, names: list[str], texts: list[str], same: bool) -> Iterator[Comparison | tuple[str, Curve]]:
-    """Variants side by side: the comparison, every response curve, then the comparison with what rescues whom."""
+def compare(
+    step: Step, *, names: list[str], texts: list[str], same: bool, maps: bool
+) -> Iterator[Comparison | tuple[str, Outcome]]:
+    """Variants side by side: the comparison, every outcome, then the comparison with what rescues whom."""
     designs = [replace(design_of(text), file=f"{at}.toml") for at, text in enumerate(texts)]
     shown = {str(at): name for at, name in enumerate(names)}
     step(0.1, "requirements and corners")
     yield _named(compare_variants(designs, same_conditions=same, rescues=False), shown)
     for at, (name, design) in enumerate(zip(names, designs, strict=True)):
-        step(0.3 + 0.2 * at / len(names), f"response of {name}")
-        curve = evaluate(design, want=(), advice=False, views=False, curve=True).curve
-        if curve is not None:
-            yield name, curve
-    step(0.5, "what would rescue those that fail")
-    yield _named(compare_variants(designs, same_conditions=same), shown)
+        step(0.3 + 0.2 * at / len(names), f"cautions and response of {name}")
+        yield name, evaluate(design, want=(), advice=False, views=False, curve=True)
+    step(0.5, "what would rescue those that fail" + (", and maps" if maps else ""))
+    yield _named(compare_variants(designs, same_conditions=same, maps=maps), shown)
 
 
 def _named(found: Comparison, names: dict[str, str]) -> Comparison:

@@ -100,7 +100,11 @@ def test_pins_have_names_of_their_own_and_an_end(app, tank):
 
 def test_variants_side_by_side(tank):
     leaky = tank.replace('crosstalk = "2 %"', 'crosstalk = "30 %"')
-    parts = list(work.compare(lambda share, text: None, names=["1.5 thick", "leaky"], texts=[tank, leaky], same=False))
+    parts = list(
+        work.compare(
+            lambda share, text: None, names=["1.5 thick", "leaky"], texts=[tank, leaky], same=False, maps=False
+        )
+    )
     found, last = parts[0], parts[-1]
     assert [one.label for one in found.variants] == ["1.5 thick", "leaky"]
     assert [one.verdict for one in found.variants] == ["pass", "fail"]

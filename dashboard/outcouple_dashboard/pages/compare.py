@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from typing import Any
 
 import dash_mantine_components as dmc
 from dash import ALL, Dash, Input, Output, State, ctx, dcc, html, no_update
 
 from outcouple.errors import UserMistake
-from outcouple.geometry import Curve
+from outcouple.notes import Note
+from outcouple.outcome import Outcome
 from outcouple.report.cells import csv_text
 from outcouple.report.compare_files import comparison_rows
 from outcouple.report.compare_page import comparison_page, comparison_pictures
@@ -17,7 +19,6 @@ from outcouple.report.compare_text import (
     corner_line,
     corner_table,
     requirement_table,
-    shared_notes,
     variant_lines,
     wide_difference_table,
 )
@@ -66,6 +67,9 @@ def layout() -> Any:
                                 label="Judge all under the surroundings, decision and requirements of the first",
                                 size="xs",
                                 checked=False,
+                            ),
+                            dmc.Switch(
+                                id="compare-maps", label="Also what needs a map (slower)", size="xs", checked=False
                             ),
                             html.Span("", id="compare-step", className="faint", role="status"),
                             html.Button("Stop", id="compare-stop", className="quiet", type="button", hidden=True),
@@ -136,7 +140,7 @@ def pin_rows(desk: Desk, pins: list[Any]) -> Any:
     return html.Ul(rows, className="pins")
 
 
-def body(found: Comparison | None, curves: list[tuple[str, Curve]], theme: str | None, waiting: bool) -> list[Any]:
+def body(found: Comparison | None, outcomes: list[tuple[str, Outcome]], theme: str | None, waiting: bool) -> list[Any]:
     """Everything below the list of variants."""
     if found is None:
         told = "Being compared…" if waiting else "Pin a variant, then change the design: both appear here side by side."
@@ -158,16 +162,27 @@ def body(found: Comparison | None, curves: list[tuple[str, Curve]], theme: str |
         cards.append(
             parts.card(picture.heading, graph, name=f"compare-card-{picture.name}", wide=True, note=picture.text)
         )
+    curves = [(name, outcome.curve) for name, outcome in outcomes if outcome.curve is not None]
     responses = responses_picture(curves, look)
     if responses is not None:
         graph = parts.graph("compare-responses", responses, label="Response curves of every variant")
         cards.append(parts.card("Response", graph, name="compare-card-responses", wide=True))
-    notes = [
-        html.Li([parts.mark(*parts.SEVERITY[note.severity], note.severity), f"{note.text} [{', '.join(names)}]"])
-        for note, names in sorted(shared_notes(found), key=lambda row: row[0].severity != "danger")
-    ]
-    cards.append(parts.card("Cautions", html.Ul(notes, className="cautions"), name="compare-cautions", wide=True))
     return cards
+
+
+def _cautions(outcomes: list[tuple[str, Outcome]]) -> Any:
+    """Every caution once, with the variants it holds for."""
+    rows: dict[tuple[str, str], tuple[Note, list[str]]] = {}
+    for name, outcome in outcomes:
+        for note in outcome.notes:
+            rows.setdefault((note.code, note.text), (note, []))[1].append(name)
+    if not rows:
+        return html.P("Being gathered…", className="faint")
+    shared = [
+        note if len(names) == len(outcomes) else replace(note, text=f"{note.text} [{', '.join(names)}]")
+        for note, names in rows.values()
+    ]
+    return parts.cautions(shared)
 
 
 def _lead(found: Comparison, waiting: bool) -> Any:
@@ -180,7 +195,7 @@ def _lead(found: Comparison, waiting: bool) -> Any:
                         html.B(one.label),
                     ]
                 ),
-                html.Ul([html.Li(f"{line[:1].upper()}{line[1:]}.") for line in variant_lines(found, at)]),
+                html.Ul([html.Li(f"{parts.plain(line[:1].upper() + line[1:])}.") for line in variant_lines(found, at)]),
             ]
         )
         for at, one in enumerate(found.variants)
@@ -201,8 +216,8 @@ def _mark(text: str) -> Any:
     word, _, rest = text.partition(" ")
     verdict = MARKED.get(word.rstrip(":"))
     if verdict is None:
-        return text
-    return parts.cell(rest, mark=(parts.SHAPES[verdict], parts.JUDGED[verdict], verdict))
+        return parts.plain(text)
+    return parts.cell(parts.plain(rest), mark=(parts.SHAPES[verdict], parts.JUDGED[verdict], verdict))
 
 
 def _corners(found: Comparison) -> Any:
@@ -248,13 +263,13 @@ def register(app: Dash, desk: Desk) -> None:
     )(on_export)
 
 
-def found_by(desk: Desk, number: str | None, tab: str) -> tuple[Comparison | None, list[tuple[str, Curve]]]:
-    """The comparison a job has come to so far, and the response curves."""
+def found_by(desk: Desk, number: str | None, tab: str) -> tuple[Comparison | None, list[tuple[str, Outcome]]]:
+    """The comparison a job has come to so far, and the outcomes of its variants."""
     job = desk.jobs.find(number, tab)
     parts_so_far = job.parts if job is not None else []
     found = [part for part in parts_so_far if isinstance(part, Comparison)]
-    curves = [part for part in parts_so_far if isinstance(part, tuple)]
-    return (found[-1] if found else None), curves
+    outcomes = [part for part in parts_so_far if isinstance(part, tuple)]
+    return (found[-1] if found else None), outcomes
 
 
 def pinned(desk: Desk, pins: list[Any], doc: Any, name: str) -> list[Any]:
@@ -315,14 +330,15 @@ def _register_pins(app: Dash, desk: Desk) -> None:
 def _register_body(app: Dash, desk: Desk) -> None:
     app.callback(Output("pin-list", "children"), Input("pins", "data"))(lambda pins: pin_rows(desk, pins or []))
 
-    def on_change(doc: Any, pins: Any, same: Any, tab: str) -> Any:
+    def on_change(doc: Any, pins: Any, same: Any, mapped: Any, tab: str) -> Any:
         if not doc:
             return no_update, no_update
         rows = variants_of(desk, doc, pins or [])
         if len(rows) < 2:
             return None, False
         names, texts = zip(*rows, strict=True)
-        job = desk.jobs.start(tab, "compare", names=list(names), texts=list(texts), same=bool(same))
+        how = {"same": bool(same), "maps": bool(mapped)}
+        job = desk.jobs.start(tab, "compare", names=list(names), texts=list(texts), **how)
         return job.number, False
 
     app.callback(
@@ -331,6 +347,7 @@ def _register_body(app: Dash, desk: Desk) -> None:
         Input("doc-compare", "data"),
         Input("pins", "data"),
         Input("compare-same", "checked"),
+        Input("compare-maps", "checked"),
         State("tab", "data"),
         prevent_initial_call=True,
     )(on_change)
@@ -361,8 +378,8 @@ def _register_body(app: Dash, desk: Desk) -> None:
 
     def on_compared(compared: Any, theme: str | None, tab: str) -> Any:
         number, _, over = compared or ["", 0, True]
-        found, curves = found_by(desk, number, tab)
-        return body(found, curves, theme, not over)
+        found, outcomes = found_by(desk, number, tab)
+        return body(found, outcomes, theme, not over)
 
     app.callback(
         Output("compare-body", "children"), Input("compared", "data"), Input("theme", "data"), State("tab", "data")

@@ -20,6 +20,7 @@ from outcouple_dashboard.documents import with_text
 from outcouple_dashboard.editing import say
 from outcouple_dashboard.entries import join
 from outcouple_dashboard.pages.design import look_of
+from outcouple_dashboard.parts import plain
 from outcouple_dashboard.pictures import WORST, clicked_at, sweep_picture, swept_text
 from outcouple_dashboard.ranges import MAP_POINTS, POINTS, Varying, find_varying, sentence, span_of, varying
 from outcouple_dashboard.tags import aria, local
@@ -160,9 +161,10 @@ def _choices(design: Design) -> list[dict[str, Any]]:
 def _metrics(design: Design) -> list[dict[str, str]]:
     known = metrics_of(design.geometry)
     asked = list(dict.fromkeys(one.metric for one in design.requirements))
-    rest = [name for name, metric in known.items() if metric.cost == "scalar" and name not in asked]
+    rest = [name for name in known if name not in asked]
     first = [{"value": WORST, "label": "least margin over all requirements"}] if asked else []
-    return [*first, *({"value": name, "label": known[name].label} for name in (*asked, *rest))]
+    slow = {name: " (takes a map at every point)" if known[name].cost == "map" else "" for name in known}
+    return [*first, *({"value": name, "label": known[name].label + slow[name]} for name in (*asked, *rest))]
 
 
 def setup(desk: Desk, text: str, x: str | None, y: str | None, metric: str | None) -> tuple[Any, ...]:
@@ -223,7 +225,7 @@ def told_of(found: Sweep) -> str:
         return f"{now} No requirements are stated."
     good, count = int(np.sum(found.verdicts == "pass")), found.done.size
     marks = "Shaded" if picture_axes(found)[1] is None else "Without crosses"
-    why = "; ".join(f"{limit.label} is open: {limit.why}" for limit in found.limits if limit.why)
+    why = "; ".join(f"{limit.label} is open: {plain(limit.why)}" for limit in found.limits if limit.why)
     told = f"{now} {marks}: all requirements are met, which {good} of {count} points do."
     return f"{told} {why}" if why else told
 

@@ -43,7 +43,8 @@ def ledger_figure(outcome: Outcome, states: Sequence[str] = (), *, look: Look = 
         showlegend=True,
         legend={
             "orientation": "h",
-            "y": -0.25 - 0.3 / len(shown),
+            "y": -54 / (44 * len(shown)),  # below the axis title, whatever the height
+            "yanchor": "top",
             "x": 0,
             "traceorder": "normal",
             "font": {"size": 12},
