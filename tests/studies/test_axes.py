@@ -116,6 +116,16 @@ def test_what_cannot_be_taken_is_refused_by_name(text: str, words: list[str]) ->
         assert word in str(mistake.value)
 
 
+def test_what_every_state_sets_itself_is_varied_in_a_state() -> None:
+    cell = load_design(DEMOS / "force_cell.toml")
+    with pytest.raises(UserMistake, match="every state sets it"):
+        read_axes(cell, ["gap.distance from 50 nm to 400 nm in 8"])
+    (axis,) = read_axes(cell, ["states.half load.expect from 150 nm to 250 nm in 3"])
+    assert axis.unit == "nm"
+    made = with_values(cell, {axis.place: axis.values[0]})
+    assert next(one for one in made.states if one.name == "half load").expect == pytest.approx(150e-9)
+
+
 def test_all_mistakes_of_all_axes_come_in_one_go() -> None:
     with pytest.raises(UserMistake) as mistake:
         read_axes(TANK, ["prism.bse at 1 mm", "prism.base from 6 mm to 900 m in 3", "prism.base at 5 mm"])

@@ -87,6 +87,7 @@ def read_axes(design: Design, texts: Sequence[str]) -> tuple[Axis, ...]:
             axes.append(read_axis(design, text))
         except UserMistake as mistake:
             mistakes += [f'"{text}": {line}' for line in mistake.lines]
+    mistakes += [_overruled(axis) for axis in axes if _is_overruled(design, axis)]
     names = [axis.place.raw for axis in axes]
     mistakes += [f"{axis.name}: stands on two axes" for axis in axes if names.count(axis.place.raw) > 1]
     total = int(np.prod([len(axis.values) for axis in axes], dtype=float)) if axes else 0
@@ -95,6 +96,18 @@ def read_axes(design: Design, texts: Sequence[str]) -> tuple[Axis, ...]:
     if mistakes:
         raise UserMistake(*dict.fromkeys(mistakes))
     return tuple(axes)
+
+
+def _is_overruled(design: Design, axis: Axis) -> bool:
+    """True where every state sets the input itself, so that varying it changes nothing."""
+    return axis.runs and all(axis.place.path in state.changes for state in design.states)
+
+
+def _overruled(axis: Axis) -> str:
+    return (
+        f"{axis.name}: every state sets it by its own expect or set, so varying it here changes nothing; "
+        "vary it in a state: states.NAME.expect from ..."
+    )
 
 
 def read_axis(design: Design, text: str) -> Axis:

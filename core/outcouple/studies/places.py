@@ -118,6 +118,9 @@ def _state_leaf(design: Design, name: str, family: str, keys: Path) -> Place:
     if keys[0] == "set":
         inner = find_place(design, ".".join(keys[1:]))
         return Place(name, ("states", family, "set", inner.name), inner.leaf)
+    if keys == ("expect",) and isinstance(state.expect, float):
+        known = leaves(design_model(type(design.geometry)))
+        return Place(name, raw, next(leaf for leaf in known if leaf.path == design.geometry.measurand))
     if keys[0] == "expect" or len(keys) == (2 if keys[0] == "faces" else 1):
         return Place(name, raw)
     if keys[0] == "object":

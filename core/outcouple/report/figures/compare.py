@@ -9,7 +9,7 @@ import numpy as np
 
 from outcouple.quantities import symbol
 from outcouple.report.cells import metric_unit, shown_number
-from outcouple.report.figures.look import LIGHT, Look, axis, base_layout, wrapped
+from outcouple.report.figures.look import LIGHT, Look, axis, base_layout, log_ticks, wrapped
 from outcouple.studies.compare import Cell, Comparison, Row
 
 __all__ = ["margins_figure", "readings_figure", "values_figure"]
@@ -104,12 +104,11 @@ def values_figure(found: Comparison, *, look: Look = LIGHT) -> dict[str, Any]:
         unit = metric_unit(row.metric)
         dots = _dots(row, labels, unit, look, x_name, y_name)
         limit = shown_number(row.cells[0].limit, row.metric.kind, unit)
-        log = _wide([limit, *(x for trace in dots for x in trace["x"])])
+        scale = _scale([limit, *(x for trace in dots for x in trace["x"])])
         title = f"{row.label} ({symbol(unit)})" if unit else row.label
         layout[f"xaxis{x_name}"] = axis(
-            look, title, domain=_domain(column, columns), anchor=f"y{y_name}", type="log" if log else "-", nticks=5,
-            exponentformat="power",
-            zeroline=False,
+            look, title, domain=_domain(column, columns), anchor=f"y{y_name}", nticks=5, zeroline=False,
+            exponentformat="power", **scale,
         )  # fmt: skip
         layout[f"yaxis{y_name}"] = axis(
             look, "", domain=band, anchor=f"x{x_name}", categoryorder="array", categoryarray=labels,
@@ -172,9 +171,10 @@ def readings_figure(found: Comparison, *, look: Look = LIGHT) -> dict[str, Any]:
     """The reading in every state, all variants on one axis: how far apart the states are."""
     states = list(dict.fromkeys(state for one in found.variants for state in one.signals))[::-1]
     layout = base_layout(look, height=110 + 30 * len(states))
-    values = [value for one in found.variants for value in one.signals.values()]
+    tops = [max(one.signals.values(), default=1.0) or 1.0 for one in found.variants]
+    shares = [value / top for one, top in zip(found.variants, tops, strict=True) for value in one.signals.values()]
     layout.update(
-        xaxis=axis(look, "reading, share of the largest", type="log" if _wide(values) else "-"),
+        xaxis=axis(look, "reading, share of the largest", **_scale(shares)),
         yaxis=axis(look, "", categoryorder="array", categoryarray=states, ticks=""),
         showlegend=True,
         legend={"orientation": "h", "y": 1.02, "yanchor": "bottom", "x": 0},
@@ -182,13 +182,12 @@ def readings_figure(found: Comparison, *, look: Look = LIGHT) -> dict[str, Any]:
     symbols = ("circle", "diamond", "square", "triangle-up", "x", "cross", "star")
     data = []
     for at, one in enumerate(found.variants):
-        top = max(one.signals.values(), default=1.0) or 1.0
         data.append(
             {
                 "type": "scatter",
                 "mode": "markers",
                 "name": one.label,
-                "x": [value / top for value in one.signals.values()],
+                "x": [value / tops[at] for value in one.signals.values()],
                 "y": list(one.signals),
                 "marker": {"size": 13, "symbol": symbols[at % 7], "color": look.states[at % 7]},
                 "hovertemplate": "%{y}: %{x:.4g}<extra></extra>",
@@ -202,10 +201,12 @@ def _narrow(label: str, width: int) -> str:
     return wrapped(label.replace("_", "_\u200b ").replace("-", "-\u200b "), width).replace("\u200b ", "")
 
 
-def _wide(values: Sequence[float | None]) -> bool:
-    """True where positive values span more than two decades."""
+def _scale(values: Sequence[float | None]) -> dict[str, Any]:
+    """Type and ticks of an axis: logarithmic where positive values span more than a decade and a half."""
     good = [value for value in values if value is not None and np.isfinite(value)]
-    return bool(good) and min(good) > 0 and max(good) > 100 * min(good)
+    if good and min(good) > 0 and max(good) > 30 * min(good):
+        return {"type": "log", **log_ticks(good)}
+    return {"type": "-"}
 
 
 def _axes(at: int) -> tuple[str, str]:

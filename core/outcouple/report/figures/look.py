@@ -2,15 +2,16 @@
 
 from __future__ import annotations
 
+import math
 import textwrap
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any
 
 from outcouple import quantities
-from outcouple.quantities import in_unit, is_kind, kind_of
+from outcouple.quantities import format_number, in_unit, is_kind, kind_of
 
-__all__ = ["CONFIG", "DARK", "LIGHT", "Look", "axis", "base_layout", "best_unit", "ramp", "state_colours", "wrapped"]
+__all__ = ["CONFIG", "DARK", "LIGHT", "Look", "axis", "base_layout", "best_unit", "log_ticks", "ramp", "state_colours", "wrapped"]
 
 CONFIG: Mapping[str, Any] = {
     "showSendToCloud": False,
@@ -109,6 +110,16 @@ def best_unit(values: Sequence[float], kind: str, unit: str = "") -> tuple[str, 
     top = max((abs(value) for value in values if value == value), default=0.0)
     chosen = unit or quantities.best_unit(top, kind)
     return chosen, [float(in_unit(float(value), kind, chosen)) for value in values]
+
+
+def log_ticks(values: Sequence[float]) -> dict[str, Any]:
+    """Ticks of an axis over positive values: at 1, 2 and 5 of every decade; over more than two decades at their
+    beginnings alone, nine at most."""
+    low, high = math.log10(min(values)), math.log10(max(values))
+    steps = (1.0,) if high - low > 2.01 else (1.0, 2.0, 5.0)
+    decades = range(math.floor(low), math.ceil(high) + 1, max(1, math.ceil((high - low) / 8)))
+    places = [step * 10.0**decade for decade in decades for step in steps]
+    return {"tickvals": places, "ticktext": [format_number(place) for place in places]}
 
 
 def wrapped(text: str, width: int = 34) -> str:

@@ -10,9 +10,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.geometry import Metric
-from outcouple.quantities import format_number, format_quantity, symbol
+from outcouple.quantities import format_quantity, symbol
 from outcouple.report.cells import metric_unit, shown_number
-from outcouple.report.figures.look import LIGHT, Look, axis, base_layout, ramp, wrapped
+from outcouple.report.figures.look import LIGHT, Look, axis, base_layout, log_ticks, ramp, wrapped
 from outcouple.studies import Axis, Limit, Sweep, spans
 
 __all__ = ["SERIES", "margin_figure", "metric_figure", "picture_axes", "slices", "verdict_figure"]
@@ -113,7 +113,7 @@ def _curves(found: Sweep, metric: Metric, across: int, limits: Sequence[Limit], 
     drawn = np.concatenate([_scaled(values, metric) for _, values in lines[:SERIES]])
     every = np.append(drawn, bounds)
     if _wide(every):
-        layout["yaxis"].update(type="log", **_log_ticks(every[np.isfinite(every)].tolist()))
+        layout["yaxis"].update(type="log", **log_ticks(every[np.isfinite(every)].tolist()))
         layout["annotations"] = [{**one, "y": float(np.log10(one["y"]))} for one in layout["annotations"]]
     layout["shapes"] += _bands(found, across, look)
     return {"data": data, "layout": layout}
@@ -157,17 +157,8 @@ def _places(one: Axis) -> list[Any]:
 def _across_axis(one: Axis, look: Look) -> dict[str, Any]:
     title = f"{one.name} ({symbol(one.unit)})" if one.unit else one.name
     kind = "log" if one.scale == "log" else ("-" if one.numeric else "category")
-    ticks = _log_ticks(_places(one)) if kind == "log" else {}
+    ticks = log_ticks(_places(one)) if kind == "log" else {}
     return axis(look, title, type=kind, **PLAIN, **ticks)
-
-
-def _log_ticks(values: Sequence[float]) -> dict[str, Any]:
-    """Ticks at 1, 2 and 5 of every decade, at its beginning alone over more than two."""
-    low, high = np.log10(min(values)), np.log10(max(values))
-    steps = (1.0,) if high - low > 2.01 else (1.0, 2.0, 5.0)
-    decades = range(int(np.floor(low)), int(np.ceil(high)) + 1)
-    places = [step * 10.0**decade for decade in decades for step in steps]
-    return {"tickvals": places, "ticktext": [format_number(place) for place in places]}
 
 
 def _line(across: Axis, values: Floats, name: str, colour: str, at: int) -> dict[str, Any]:
