@@ -11,7 +11,19 @@ from typing import Any
 from outcouple import quantities
 from outcouple.quantities import format_number, in_unit, is_kind, kind_of
 
-__all__ = ["CONFIG", "DARK", "LIGHT", "Look", "axis", "base_layout", "best_unit", "log_ticks", "ramp", "state_colours", "wrapped"]
+__all__ = [
+    "CONFIG",
+    "DARK",
+    "LIGHT",
+    "Look",
+    "axis",
+    "base_layout",
+    "best_unit",
+    "log_ticks",
+    "ramp",
+    "state_colours",
+    "wrapped",
+]
 
 CONFIG: Mapping[str, Any] = {
     "showSendToCloud": False,
