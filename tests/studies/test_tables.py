@@ -49,7 +49,7 @@ def test_every_column_has_its_unit_and_every_point_its_row() -> None:
     assert head[:2] == ["prism.base (mm)", "prism.material"]
     assert "dry_angle_margin (deg)" in head
     assert "reading [cold vapour] (uA)" in head
-    assert head[-1] == "verdict"
+    assert head[-2:] == ["dangers", "verdict"]
     assert len(rows) == 6
     assert [row[0] for row in rows] == ["4", "4", "6", "6", "8", "8"]
     angle = float(rows[0][head.index("dry_angle_margin (deg)")])
@@ -80,6 +80,16 @@ def test_the_text_says_where_all_is_met_and_where_just() -> None:
     assert "worst ratio: met below prism.crosstalk" in text
     assert "every 2nd" not in text
     assert "of 60; --csv holds all" in text
+
+
+def test_points_that_pass_in_danger_are_marked() -> None:
+    """A saturated stage hides what lies beyond full scale; the requirements of the strip do not see it."""
+    found = sweep(load_design(DEMO.parent / "cooktop_strip.toml"), ["emitter.power at 5 mW, 60 mW"])
+    assert found.dangers[0] == ""
+    assert "saturat" in found.dangers[1]
+    lines = format_sweep(found).splitlines()
+    assert next(line for line in lines if line.startswith("  60 mW")).endswith("!")
+    assert not next(line for line in lines if line.startswith("  5 mW")).endswith("!")
 
 
 @pytest.mark.parametrize(

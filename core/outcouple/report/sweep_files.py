@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.geometry import Metric
+from outcouple.notes import Note
 from outcouple.quantities import si_unit
 from outcouple.report.cells import digest, finite, headed, metric_unit, shown_number
 from outcouple.studies import Axis, Sweep, SweptMetric, crossings, spans
@@ -32,6 +33,7 @@ def sweep_rows(found: Sweep) -> list[list[Cell]]:
         columns.append(_column(f"reading [{state}]", found.reading, values))
     for limit in found.limits:
         columns.append((f"margin of {limit.label} (share of the limit)", _floats(limit.scaled)))
+    columns.append(("dangers", list(found.dangers)))
     columns.append(("verdict", [str(one) for one in found.verdicts.ravel()]))
     rows: list[list[Cell]] = [[*(headed(axis.name, axis.unit) for axis in found.axes), *(name for name, _ in columns)]]
     for flat in np.flatnonzero(found.done.ravel()):
@@ -85,7 +87,10 @@ def sweep_manifest(found: Sweep, *, values: bool = True) -> dict[str, Any]:
         "requirements": [_limit(found, at, values) for at in range(len(found.limits))],
         "just_met": _just_met(found),
         "all_met": _all_met(found),
-        "cautions": [{"code": note.code, "text": note.text, "severity": note.severity} for note in found.notes],
+        "cautions": [
+            {"code": note.code, "text": note.text, "severity": note.severity, "points": _held(found, note)}
+            for note in found.notes
+        ],
     }
     if values:
         answer["verdicts"] = found.verdicts.tolist()
@@ -94,6 +99,10 @@ def sweep_manifest(found: Sweep, *, values: bool = True) -> dict[str, Any]:
             "states": {state: _nested(array) for state, array in found.signals.items()},
         }
     return answer
+
+
+def _held(found: Sweep, note: Note) -> int:
+    return int(np.sum(found.done)) if note.where is None else int(np.sum(note.where))
 
 
 def _axis(axis: Axis) -> dict[str, Any]:

@@ -91,6 +91,8 @@ def _span(found: Sweep, axis: Axis, span: Span) -> str:
     reach = {(True, True): ", the whole sweep", (True, False): ", from where the sweep begins"}.get(
         span.opens, ", to where the sweep ends" if span.opens[1] else ""
     )
+    if low == high:
+        return f"{axis.name} = {low} alone{_beside(found.axes, span.others)}"
     return f"{axis.name} from {low} to {high}{reach}{_beside(found.axes, span.others)}"
 
 
@@ -121,6 +123,7 @@ def _listed(lines: Sequence[str]) -> str:
 
 def _points(found: Sweep) -> str:
     done = np.flatnonzero(found.done.ravel())
+    verdicts, dangers = found.verdicts, found.dangers
     step = -(-len(done) // ROWS)
     shown = [one.metric for one in found.metrics.values() if not one.why or np.any(np.isfinite(one.values))]
     rows = [(*(axis.name for axis in found.axes), *(metric.label for metric in shown), "")]
@@ -131,10 +134,12 @@ def _points(found: Sweep) -> str:
             for metric in shown
         ]
         places = [axis.shown(axis.values[one]) for axis, one in zip(found.axes, at, strict=True)]
-        rows.append((*places, *cells, MARKS[str(found.verdicts[at])]))
+        mark = MARKS[str(verdicts[at])] + (" !" if dangers[flat] else "")
+        rows.append((*places, *cells, mark))
     heading = "Points" if step == 1 else f"Points (every {step}th of {len(done)}; --csv holds all)"
+    danger = "\n  ! a danger holds there; the cautions tell it" if any(row[-1].endswith("!") for row in rows) else ""
     right = range(len(found.axes), len(found.axes) + len(shown))
-    return f"{heading}\n{table(rows, right=tuple(right))}" if len(rows) > 1 else ""
+    return f"{heading}\n{table(rows, right=tuple(right))}{danger}" if len(rows) > 1 else ""
 
 
 def _cautions(found: Sweep) -> list[str]:

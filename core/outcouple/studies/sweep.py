@@ -106,6 +106,17 @@ class Sweep:
         return bool(np.all(self.done))
 
     @property
+    def dangers(self) -> list[str]:
+        """Codes of the dangers that hold at every point, in the flat order of the arrays; "" where none does."""
+        dangers = [note for note in self.notes if note.severity == "danger"]
+        held = [np.ones(self.done.size, dtype=bool) if note.where is None else note.where for note in dangers]
+        codes = [note.code for note in dangers]
+        return [
+            ", ".join(code for code, where in zip(codes, held, strict=True) if where[at])
+            for at in range(self.done.size)
+        ]
+
+    @property
     def worst(self) -> Floats:
         """Least margin over all requirements in units of their limits; nan where one is open or nothing is asked."""
         if not self.limits:
