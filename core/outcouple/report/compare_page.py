@@ -4,11 +4,11 @@ from __future__ import annotations
 
 from outcouple.report import figures
 from outcouple.report.compare_text import (
+    caution_lines,
     compare_lead,
     corner_line,
     corner_table,
     requirement_table,
-    shared_notes,
     variant_lines,
     wide_difference_table,
 )
@@ -46,7 +46,7 @@ def comparison_page(found: Comparison, *, look: figures.Look = figures.LIGHT) ->
     unlike = [(heading, wide_difference_table(found, condition=condition)) for heading, condition in both]
     details = [(heading, rows) for heading, rows in unlike if rows]
     title = "Comparison: " + ", ".join(one.label for one in found.variants)
-    cautions = [f"{note.severity}: {note.text} [{', '.join(labels)}]" for note, labels in shared_notes(found)]
+    cautions = caution_lines(found)
     pictures = comparison_pictures(found, look=look)
     lead = compare_lead(found)
     return page_of(title, pictures, lead=lead, tables=tables, cautions=cautions, details=details, look=look)

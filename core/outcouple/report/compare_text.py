@@ -12,13 +12,13 @@ from outcouple.studies.compare import Cell, Comparison, Row, Variant
 from outcouple.studies.flips import Flip
 
 __all__ = [
+    "caution_lines",
     "compare_lead",
     "corner_line",
     "corner_table",
     "difference_table",
     "format_comparison",
     "requirement_table",
-    "shared_notes",
     "variant_lines",
     "wide_difference_table",
 ]
@@ -105,6 +105,9 @@ def variant_lines(found: Comparison, at: int) -> list[str]:
     cells = [(row, row.cells[at]) for row in found.rows]
     still = [f"{row.label}: {cell.why}" for row, cell in cells if cell.asked and not cell.known]
     lines += [f"open, not a pass: {line}" for line in still]
+    dangers = sum(note.severity == "danger" for note in one.notes)
+    if dangers:
+        lines.append(f"beside the verdict: {dangers} danger{'' if dangers == 1 else 's'}, told among the cautions")
     if one.dominated_by:
         lines.append(f"dominated by {', '.join(one.dominated_by)}: nowhere better in any requirement, somewhere worse")
     if one.rescue is not None:
@@ -278,18 +281,28 @@ def _shown(row: Row, value: float | None) -> str:
 
 
 def _cautions(found: Comparison, width: int) -> str:
-    lines = [f"{note.severity}: {note.text} [{', '.join(labels)}]" for note, labels in shared_notes(found)]
+    lines = caution_lines(found)
     return "Cautions\n" + "\n".join(_wrap(line, width, "  - ", "    ") for line in lines) if lines else ""
 
 
-def shared_notes(found: Comparison) -> list[tuple[Note, list[str]]]:
-    """Cautions with the variants they hold for."""
+def caution_lines(found: Comparison) -> list[str]:
+    """Cautions as sentences: what decides instead, and the variants they hold for."""
+    lines = []
+    for note, labels in _shared_notes(found):
+        decides = f" Decides: {note.decides}." if note.decides else ""
+        lines.append(f"{note.severity}: {note.text}{decides} [{', '.join(labels)}]")
+    return lines
+
+
+def _shared_notes(found: Comparison) -> list[tuple[Note, list[str]]]:
+    """Cautions with the variants they hold for, dangers first."""
     rows: dict[tuple[str, str], tuple[Note, list[str]]] = {}
     for one in found.variants:
         for note in one.notes:
-            if note.severity != "info":
+            if note.severity != "info" or note.code == "estimate":
                 rows.setdefault((note.code, note.text), (note, []))[1].append(one.label)
-    return list(rows.values())
+    order = {"danger": 0, "caution": 1}
+    return sorted(rows.values(), key=lambda row: order.get(row[0].severity, 2))
 
 
 def _wrap(text: str, width: int, first: str, rest: str) -> str:

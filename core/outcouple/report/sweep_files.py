@@ -89,7 +89,7 @@ def sweep_manifest(found: Sweep, *, values: bool = True) -> dict[str, Any]:
         "all_met": _all_met(found),
         "cautions": [
             {"code": note.code, "text": note.text, "severity": note.severity, "points": _held(found, note)}
-            for note in found.notes
+            for note in (*found.notes, *found.standing)
         ],
     }
     if values:

@@ -145,11 +145,14 @@ def _points(found: Sweep) -> str:
 def _cautions(found: Sweep) -> list[str]:
     total = int(np.sum(found.done))
     lines = []
-    for note in found.notes:
+    for note in sorted(found.notes, key=lambda one: one.severity != "danger"):
         if note.severity == "info":
             continue
         held = total if note.where is None else int(np.sum(note.where))
         where = "" if held >= total else f" (at {held} of {total} points)"
         decides = f" Decides: {note.decides}." if note.decides else ""
         lines.append(f"{note.severity}: {note.text}{where}{decides}")
+    for note in sorted(found.standing, key=lambda one: one.severity != "danger"):
+        decides = f" Decides: {note.decides}." if note.decides else ""
+        lines.append(f"{note.severity}: {note.text}{decides} (told of the design as it stands)")
     return lines

@@ -210,7 +210,8 @@ class _Column:
         want = tuple(dict.fromkeys([*(one.metric for one in self.evaluated), SIGMA]))
         with np.errstate(all="ignore"):
             self.batch: Batch = evaluate_batch(design, {}, want)
-            told = evaluate(design, want=(), advice=False, views=False).headline
+            outcome = evaluate(design, want=(), advice=False, views=False)
+        told, self.notes = outcome.headline, outcome.notes
         self.why = told.removeprefix("FAIL: ").rstrip(".") if told.startswith("FAIL: ") else ""
         self.corners = evaluate_corners(design, self.evaluated, most=most, executor=executor, progress=progress)
         self.states = [(state.name, state.family) for state in design.states]
@@ -299,7 +300,7 @@ def _variant(
         why=column.why,
         corners=column.corners,
         rescue=found,
-        notes=tuple(replace(note, where=None) for note in column.batch.notes),
+        notes=tuple(replace(note, where=None) for note in column.notes),
         signals={state: float(values[0]) for state, values in column.batch.signals.items()},
         unverified=design.unverified(),
     )

@@ -13,15 +13,17 @@ from numpy.typing import NDArray
 
 from outcouple.design import Design, Requirement
 from outcouple.errors import UserMistake, nearest
-from outcouple.evaluation.batch import Batch
+from outcouple.evaluation.batch import Batch, sample_elements
 from outcouple.evaluation.judge import value_for
+from outcouple.evaluation.notes import design_notes
+from outcouple.evaluation.table import tabulate
 from outcouple.geometry import Metric, MetricValue, Missing
 from outcouple.metrics import metrics_of
 from outcouple.notes import Note, merge_notes
 from outcouple.studies.axes import Axis, read_axes
 from outcouple.studies.margins import label_of, scale_of
 from outcouple.studies.places import with_values
-from outcouple.studies.work import Task, chunked, elements_of, run_tasks
+from outcouple.studies.work import Task, chunked, run_tasks
 
 __all__ = ["NEEDS_MAP", "Limit", "Sweep", "SweptMetric", "sweep", "wanted_metrics"]
 
@@ -81,6 +83,7 @@ class Sweep:
     done     points that were evaluated; all of them unless it was interrupted
     reading  the metric that says what the signals are
     notes    cautions, each with the points it holds for (flat, in the order of the arrays)
+    standing  cautions of the design as it stands: its purpose, its conditions
     """
 
     title: str
@@ -93,6 +96,7 @@ class Sweep:
     done: Bools
     reading: Metric
     notes: tuple[Note, ...] = ()
+    standing: tuple[Note, ...] = ()
     raw: Mapping[str, Any] = field(default_factory=dict)
 
     @property
@@ -156,7 +160,10 @@ def sweep(
     read = tuple(axis for axis in axes if isinstance(axis, Axis)) or read_axes(design, [str(text) for text in axes])
     want = wanted_metrics(design, metrics, maps=maps)
     grid = _Grid(design, read, want)
-    size = elements_of(design) if any(axis.runs for axis in read) else None
+    with np.errstate(all="ignore"):
+        nominal = tabulate(design)
+    grid.standing = tuple(replace(note, where=None) for note in design_notes(design, nominal))
+    size = sample_elements(nominal)
     designs = _designs(design, read)
     tasks = [task for made, at in designs for task in chunked(made, *_laid(read, at, want), elements=size)]
     total, count = grid.total, 0
@@ -223,6 +230,7 @@ class _Grid:
         self.why: dict[str, dict[str, None]] = {name: {} for name in want}
         self.signals: dict[str, Floats] = {}
         self.margins = [self._empty() for _ in design.requirements]
+        self.standing: tuple[Note, ...] = ()
         self.notes: dict[tuple[str, str], Note] = {}
 
     def _empty(self) -> Floats:
@@ -277,6 +285,7 @@ class _Grid:
             done=self.done.reshape(self.shape),
             reading=known["signal"],
             notes=merge_notes(self.notes.values()),
+            standing=self.standing,
             raw=self.design.raw,
         )
 
