@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from typing import Any
 
 import tomlkit
@@ -87,17 +88,27 @@ def remove_row(text: str, path_text: str) -> str:
 
 
 def add_state(design: Design, text: str) -> str:
-    """The text with one more state, like the last one where that stands for a number."""
+    """The text with one more state, a copy of the last one that is no fault, to be changed."""
     document = tomlkit.parse(text)
     taken = {state.family for state in design.states}
     number = next(n for n in range(1, 1000) if f"state {n}" not in taken)
+    rows = design.raw.get("states") or [{"expect": "absent", "touching": "dry"}]
+    last = next((row for row in reversed(rows) if row.get("role") != "fault"), rows[-1])
     row = tomlkit.table()
     row["name"] = f"state {number}"
-    last = (design.raw.get("states") or [{"expect": "absent"}])[-1].get("expect", "absent")
-    row["expect"] = last if last not in ("absent", "present") else "present"
-    if last in ("absent", "present"):
-        row["touching"] = "water"
+    for key, value in last.items():
+        if key not in ("name", "role", "describe"):
+            row[key] = _inline(value)
     return _append(document, "states", row)
+
+
+def _inline(value: Any) -> Any:
+    """A value whose tables stay on one line."""
+    if isinstance(value, Mapping):
+        table = tomlkit.inline_table()
+        table.update({key: _inline(inner) for key, inner in value.items()})
+        return table
+    return value
 
 
 def add_requirement(text: str, metric: str | None, limit: str | None) -> str:

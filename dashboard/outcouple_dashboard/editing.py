@@ -183,7 +183,7 @@ def _follow_controls(desk: Desk, doc: Any, path_text: str, new: str) -> None:
 def _register_rows(app: Dash, desk: Desk) -> None:
     """States and requirements added and removed, and another sensor."""
 
-    def on_rows(_removes: Any, _state: Any, _requirement: Any, sensor: Any, wanted: Any, doc: Any) -> Any:
+    def on_rows(_removes: Any, _state: Any, _requirement: Any, sensor: Any, wanted: Any, doc: Any, folds: Any) -> Any:
         trigger, _ = pressed()
         if not doc or trigger is None:
             return no_update
@@ -196,6 +196,8 @@ def _register_rows(app: Dash, desk: Desk) -> None:
                 new = changes.add_requirement(text, *wanted)
             elif trigger == "state-add":
                 new = changes.add_state(design, text)
+                at = len(design.raw.get("states", []))
+                set_props("folds", {"data": [*(folds or []), f"states/{at}"]})
             elif sensor == design.geometry.name:
                 return no_update
             else:
@@ -214,6 +216,7 @@ def _register_rows(app: Dash, desk: Desk) -> None:
         Input("geometry-pick", "value"),
         State({"kind": "new-requirement", "path": ALL}, "value"),
         State("doc", "data"),
+        State("folds", "data"),
         prevent_initial_call=True,
     )(on_rows)
 

@@ -90,12 +90,13 @@ def mark(shape: str, word: str, tone: str) -> Any:
 
 def plain(text: str) -> str:
     """A text of the report without what only a command line can be asked for."""
-    return re.sub(r" \(--[a-z-]+[^)]*\)", "", text)
+    text = re.sub(r" \(--[a-z-]+[^)]*\)", "", text)
+    return text.replace("needs a map, which was not asked for", "needs a map")
 
 
 def verdict(outcome: Outcome) -> list[Any]:
     """The word, the consequence, the state that decides and what limits it."""
-    sentence = outcome.headline.partition(": ")[2] or outcome.headline
+    sentence = plain(outcome.headline.partition(": ")[2] or outcome.headline)
     dangers = sum(note.severity == "danger" for note in outcome.notes)
     others = sum(note.severity == "caution" for note in outcome.notes)
     counted = [f"{dangers} danger{'s' * (dangers != 1)}"] if dangers else []
@@ -159,7 +160,7 @@ def requirements(outcome: Outcome) -> Any:
             f"{one.sense} {_shown(one.limit, one.kind, one.unit)}",
             _shown(one.value, one.kind, one.unit) if one.value is not None else "open",
             _margin(one),
-            one.at if one.value is not None else one.why,
+            one.at if one.value is not None else plain(one.why),
         )
         for one in outcome.requirements
     ]
@@ -257,7 +258,7 @@ def metrics_table(outcome: Outcome) -> Any:
         (
             metric.label,
             _shown(metric.value, metric.kind, metric.unit) if metric.value is not None else metric.status,
-            metric.at if metric.value is not None else metric.why,
+            metric.at if metric.value is not None else plain(metric.why),
             metric.meaning,
         )
         for metric in outcome.metrics.values()

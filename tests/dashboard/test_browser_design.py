@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+from pathlib import Path
+
+import pytest
 from selenium.webdriver.common.keys import Keys
 
 from .conftest import TANK
@@ -121,3 +124,21 @@ def test_every_control_has_a_name_and_the_page_its_landmarks(visitor):
         assert len(visitor.all(css)) == count, css
     visible = "return Array.from(document.querySelectorAll('h1')).filter(e => e.offsetParent).length"
     assert visitor.browser.execute_script(visible) == 1
+
+
+CONTRAST = (Path(__file__).parent / "contrast.js").read_text(encoding="utf-8")
+
+
+@pytest.mark.parametrize("theme", ["light", "dark"])
+def test_all_text_stands_out_from_its_ground(visitor, theme):
+    """Contrast of at least 4.5 to 1 (WCAG 2.1, success criterion 1.4.3), computed from the colours as drawn."""
+    visitor.open(TANK)
+    scheme = "return document.documentElement.getAttribute('data-mantine-color-scheme')"
+    visitor.until(lambda: visitor.browser.execute_script(scheme), "a theme")
+    if visitor.browser.execute_script(scheme) != theme:
+        visitor.click("#theme-switch")
+        visitor.until(lambda: visitor.browser.execute_script(scheme) == theme, theme)
+    for page, sign in (("design", "cautions"), ("vary", "vary-heading"), ("compare", "pin-list")):
+        visitor.click(f"#nav-{page}")
+        visitor.until(lambda sign=sign: visitor.text(sign), page)
+        assert visitor.browser.execute_script(CONTRAST) == []

@@ -86,6 +86,7 @@ def test_states_and_requirements_come_and_go():
     more = changes.add_state(design, TEXT)
     assert [row["name"] for row in tomllib.loads(more)["states"]] == ["dry", "wet", "state 1"]
     parse_design(more)
+    assert tomllib.loads(more)["states"][2]["touching"] == "film"
     assert changes.remove_row(more, "states/2").rstrip() == TEXT.rstrip()
     asked = changes.add_requirement(TEXT, "worst_ratio", "at least 20")
     assert parse_design(asked).requirements[0].at_least == 20

@@ -146,14 +146,11 @@ def body(found: Comparison | None, outcomes: list[tuple[str, Outcome]], theme: s
         told = "Being compared…" if waiting else "Pin a variant, then change the design: both appear here side by side."
         return [html.P(told, className="card wide faint")]
     look = look_of(theme)
+    nominal = _marked(requirement_table(found), "Requirements")
     cards = [
         parts.card("Which one, and why", _lead(found, waiting), name="compare-worst", wide=True),
-        parts.card(
-            "Requirements, nominal",
-            _marked(requirement_table(found), "Requirements"),
-            name="compare-nominal",
-            wide=True,
-        ),
+        parts.card("Cautions", _cautions(outcomes), name="compare-cautions", wide=True),
+        parts.card("Requirements, nominal", nominal, name="compare-nominal", wide=True),
         parts.card("Requirements, worst at the corners", _corners(found), name="compare-corners", wide=True),
         parts.card("What differs", _differences(found), name="compare-differences", wide=True),
     ]
