@@ -49,10 +49,20 @@ def worst_state_of(table: Table, judged: Sequence[Judged]) -> str:
     for one in sorted(missed, key=lambda found: -float(found.shortfall or 0)):
         for part in reversed(one.at.split(" : ")):
             if part in names:
-                return part
+                return _dark_twin(table, part)
     if table.decided is not None:
         return table.decided.worst()
     return table.rows[0].laid.state.name
+
+
+def _dark_twin(table: Table, state: str) -> str:
+    """Of states that cannot be told apart the one that should be dark: the light it still gets says why."""
+    sigma = table.decided.sigma if table.decided is not None else {}
+    if state not in sigma or abs(float(sigma[state][0])) >= TIED:
+        return state
+    dark = "present" if table.design.geometry.present_reads == "low" else "absent"
+    tied = [name for name, value in sigma.items() if abs(float(value[0])) < TIED]
+    return next((name for name in tied if table.row(name).laid.state.expect == dark), state)
 
 
 def limiting_of(table: Table, state: str) -> str:
@@ -179,8 +189,10 @@ def _misread(design: Design, table: Table, one: Judged) -> str:
     absent, present = design.geometry.words
     for part in reversed(one.at.split(" : ")):
         sigma = table.decided.sigma.get(part)
-        if sigma is None or float(sigma[0]) >= 0:
+        if sigma is None or float(sigma[0]) >= TIED:
             continue
+        if abs(float(sigma[0])) < TIED:
+            part = _dark_twin(table, part)
         expect = table.row(part).laid.state.expect
         if abs(float(sigma[0])) < TIED:
             return f"{part} cannot be told from {present if expect == 'absent' else absent}; "

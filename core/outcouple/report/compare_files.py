@@ -6,7 +6,7 @@ from typing import Any
 
 from outcouple.quantities import si_unit
 from outcouple.report.cells import finite, metric_unit, shown_number
-from outcouple.studies.compare import Cell, Comparison, Row, Variant
+from outcouple.studies.compared import Cell, Comparison, Row, Variant
 from outcouple.studies.corners import Worst
 from outcouple.studies.flips import Flip
 from outcouple.studies.rescue import Rescue

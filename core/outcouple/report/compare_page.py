@@ -14,7 +14,7 @@ from outcouple.report.compare_text import (
 )
 from outcouple.report.figures.compare import margins_figure, readings_figure, values_figure
 from outcouple.report.page import Picture, page_of
-from outcouple.studies.compare import Comparison
+from outcouple.studies.compared import Comparison
 
 __all__ = ["comparison_page", "comparison_pictures"]
 

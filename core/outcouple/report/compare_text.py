@@ -8,7 +8,7 @@ import textwrap
 from outcouple.notes import Note
 from outcouple.quantities import format_quantity
 from outcouple.report.text import table
-from outcouple.studies.compare import Cell, Comparison, Row, Variant
+from outcouple.studies.compared import Cell, Comparison, Row, Variant
 from outcouple.studies.flips import Flip
 
 __all__ = [

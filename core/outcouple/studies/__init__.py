@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from outcouple.studies.axes import Axis, read_axes
 from outcouple.studies.just_met import Crossing, Span, crossings, spans
-from outcouple.studies.sweep import Limit, Sweep, SweptMetric, sweep
+from outcouple.studies.sweep import sweep
+from outcouple.studies.swept import Limit, Sweep, SweptMetric
 
 __all__ = ["Axis", "Crossing", "Limit", "Span", "Sweep", "SweptMetric", "crossings", "read_axes", "spans", "sweep"]

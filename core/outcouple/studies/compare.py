@@ -2,9 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Callable, Sequence
 from concurrent.futures import Executor
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from pathlib import PurePath
 
 import numpy as np
@@ -14,103 +14,19 @@ from outcouple.errors import UserMistake
 from outcouple.evaluation import evaluate
 from outcouple.evaluation.batch import Batch, evaluate_batch
 from outcouple.evaluation.judge import value_for, verdict_of
-from outcouple.geometry import Metric, MetricValue, Missing
+from outcouple.geometry import MetricValue, Missing
 from outcouple.metrics import metrics_of
-from outcouple.notes import Note
 from outcouple.outcome import Verdict
-from outcouple.studies.corners import CORNERS, Cornered, Worst, evaluate_corners
-from outcouple.studies.differences import Difference, differences, under_conditions_of
+from outcouple.studies.compared import Cell, Comparison, Row, Variant
+from outcouple.studies.corners import CORNERS, evaluate_corners
+from outcouple.studies.differences import differences, under_conditions_of
 from outcouple.studies.margins import label_of, scale_of
 from outcouple.studies.rescue import Rescue, rescue
 from outcouple.studies.sweep import NEEDS_MAP
 
-__all__ = ["Cell", "Comparison", "Row", "Variant", "compare"]
+__all__ = ["Comparison", "compare"]
 
 SIGMA = "margin_sigma"
-
-
-@dataclass(frozen=True)
-class Cell:
-    """One requirement at one variant.
-
-    asked     False where this variant does not ask for it; the value is shown all the same
-    limit     its limit (SI) here
-    value     nominal, SI; None where there is none, ``why`` says why not, ``status`` whether that is for good
-    at        state the value belongs to
-    corner    worst at the corners; None where no corners were run
-    margin    distance to the limit in units of the limit, at the scope the requirement asks for; None where unknown
-    nominal_margin, corner_margin  the same at either scope
-    """
-
-    asked: bool
-    limit: float
-    limit_text: str
-    value: float | None
-    at: str
-    status: str
-    why: str
-    corner: Worst | None
-    margin: float | None
-    nominal_margin: float | None
-    corner_margin: float | None
-    verdict: str
-
-    @property
-    def known(self) -> bool:
-        """True where it can be compared."""
-        return self.margin is not None
-
-
-@dataclass(frozen=True)
-class Row:
-    """One requirement over all variants: the metric, the state it is about, the scope it asks for."""
-
-    metric: Metric
-    state: str
-    over: str
-    at_least: bool
-    label: str
-    cells: tuple[Cell, ...]
-
-
-@dataclass(frozen=True)
-class Variant:
-    """One design among others.
-
-    misses        row and cell of the requirement it misses by most, in units of the limit; None where it misses none
-    closest       row and cell of the least margin, missed or not
-    sigma         its least margin in sigma, and the state
-    dominated_by  labels of variants that answer the same question and are nowhere worse and somewhere better
-    why           what is wrong with one that fails, as its own evaluation tells it; empty for others
-    rescue        only for one that fails; None where it was not searched
-    """
-
-    label: str
-    title: str
-    file: str
-    geometry: str
-    verdict: Verdict
-    misses: int | None
-    closest: int | None
-    sigma: float | None
-    sigma_at: str
-    dominated_by: tuple[str, ...]
-    why: str
-    corners: Cornered
-    rescue: Rescue | None
-    notes: tuple[Note, ...]
-    signals: Mapping[str, float]
-    unverified: tuple[str, ...]
-
-
-@dataclass(frozen=True)
-class Comparison:
-    """What came of it; cells of a row stand in the order of the variants."""
-
-    variants: tuple[Variant, ...]
-    rows: tuple[Row, ...]
-    differences: tuple[Difference, ...]
-    frozen: bool
 
 
 Told = Callable[[str], Callable[[int, int], None] | None]

@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.studies.axes import Axis
-from outcouple.studies.sweep import Sweep
+from outcouple.studies.swept import Sweep
 
 __all__ = ["Crossing", "Span", "crossings", "spans"]
 

@@ -2,11 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Callable, Sequence
 from concurrent.futures import Executor
-from dataclasses import dataclass, field, replace
+from dataclasses import replace
 from itertools import product
-from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -17,124 +16,22 @@ from outcouple.evaluation.batch import Batch, sample_elements
 from outcouple.evaluation.judge import value_for
 from outcouple.evaluation.notes import design_notes
 from outcouple.evaluation.table import tabulate
-from outcouple.geometry import Metric, MetricValue, Missing
+from outcouple.geometry import MetricValue, Missing
 from outcouple.metrics import metrics_of
 from outcouple.notes import Note, merge_notes
 from outcouple.studies.axes import Axis, read_axes
-from outcouple.studies.margins import label_of, scale_of
+from outcouple.studies.margins import label_of
 from outcouple.studies.places import with_values
+from outcouple.studies.swept import Limit, Sweep, SweptMetric
 from outcouple.studies.work import Task, chunked, run_tasks
 
-__all__ = ["NEEDS_MAP", "Limit", "Sweep", "SweptMetric", "sweep", "wanted_metrics"]
+__all__ = ["NEEDS_MAP", "Sweep", "sweep", "wanted_metrics"]
 
 Floats = NDArray[np.float64]
-Bools = NDArray[np.bool_]
 
 ALWAYS = ("margin_sigma",)
 """Metrics of every sweep, beside those that requirements name."""
 NEEDS_MAP = Missing("needs a map, which was not asked for (--maps)", "open")
-
-
-@dataclass(frozen=True)
-class SweptMetric:
-    """One metric over the grid of a sweep.
-
-    values  SI, one axis of the array per axis of the sweep; nan where there is no value
-    states  the same per state
-    why     what was said where there is no value
-    """
-
-    metric: Metric
-    values: Floats
-    states: Mapping[str, Floats]
-    why: tuple[str, ...] = ()
-
-
-@dataclass(frozen=True)
-class Limit:
-    """One requirement over the grid.
-
-    margin  distance to the limit in the metric's own unit, positive where it is met; nan where unknown
-    scaled  the same in units of the limit (of the metric's unit where the limit is zero)
-    why     why it is open throughout; empty where it was judged
-    """
-
-    requirement: Requirement
-    label: str
-    margin: Floats
-    why: str = ""
-
-    @property
-    def scaled(self) -> Floats:
-        """Margins in units of the limit."""
-        return self.margin / scale_of(self.requirement)
-
-    @property
-    def met(self) -> Bools:
-        """True where it is known to be met."""
-        return np.asarray(self.margin >= 0)
-
-
-@dataclass(frozen=True)
-class Sweep:
-    """What a sweep found. Arrays have one axis per axis of the sweep.
-
-    signals  state -> reading of its faintest channel (SI)
-    done     points that were evaluated; all of them unless it was interrupted
-    reading  the metric that says what the signals are
-    notes    cautions, each with the points it holds for (flat, in the order of the arrays)
-    standing  cautions of the design as it stands: its purpose, its conditions
-    """
-
-    title: str
-    file: str
-    geometry: str
-    axes: tuple[Axis, ...]
-    metrics: Mapping[str, SweptMetric]
-    signals: Mapping[str, Floats]
-    limits: tuple[Limit, ...]
-    done: Bools
-    reading: Metric
-    notes: tuple[Note, ...] = ()
-    standing: tuple[Note, ...] = ()
-    raw: Mapping[str, Any] = field(default_factory=dict)
-
-    @property
-    def shape(self) -> tuple[int, ...]:
-        """Points on every axis."""
-        return tuple(len(axis.values) for axis in self.axes)
-
-    @property
-    def finished(self) -> bool:
-        """True where nothing was left out."""
-        return bool(np.all(self.done))
-
-    @property
-    def dangers(self) -> list[str]:
-        """Codes of the dangers that hold at every point, in the flat order of the arrays; "" where none does."""
-        dangers = [note for note in self.notes if note.severity == "danger"]
-        held = [np.ones(self.done.size, dtype=bool) if note.where is None else note.where for note in dangers]
-        codes = [note.code for note in dangers]
-        return [
-            ", ".join(code for code, where in zip(codes, held, strict=True) if where[at])
-            for at in range(self.done.size)
-        ]
-
-    @property
-    def worst(self) -> Floats:
-        """Least margin over all requirements in units of their limits; nan where one is open or nothing is asked."""
-        if not self.limits:
-            return np.full(self.shape, np.nan)
-        return np.asarray(np.min(np.stack([limit.scaled for limit in self.limits]), axis=0))
-
-    @property
-    def verdicts(self) -> NDArray[np.str_]:
-        """ "pass", "fail", "open" or "none stated" at every point; "" where it was not evaluated."""
-        if not self.limits:
-            return np.where(self.done, "none stated", "")
-        stack = np.stack([limit.margin for limit in self.limits])
-        missed, unknown = np.any(stack < 0, axis=0), np.any(np.isnan(stack), axis=0)
-        return np.where(~self.done, "", np.where(missed, "fail", np.where(unknown, "open", "pass")))
 
 
 def sweep(

@@ -10,7 +10,7 @@ import numpy as np
 from outcouple.quantities import symbol
 from outcouple.report.cells import metric_unit, shown_number
 from outcouple.report.figures.look import LIGHT, Look, axis, base_layout, log_ticks, wrapped
-from outcouple.studies.compare import Cell, Comparison, Row
+from outcouple.studies.compared import Cell, Comparison, Row
 
 __all__ = ["margins_figure", "readings_figure", "values_figure"]
 
