@@ -26,7 +26,7 @@ PAGES = (("Design", "/"), ("Vary", "/vary"), ("Compare", "/compare"))
 INDEX = """<!DOCTYPE html>
 <html lang="en">
 <head>{%metas%}<title>{%title%}</title>{%favicon%}{%css%}</head>
-<body>{%app_entry%}<footer>{%config%}{%scripts%}{%renderer%}</footer></body>
+<body>{%app_entry%}{%config%}{%scripts%}{%renderer%}</body>
 </html>"""
 THEME = {
     "primaryColor": "teal",

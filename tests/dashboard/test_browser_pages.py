@@ -54,6 +54,19 @@ def test_pin_variants_and_compare_them(visitor):
     visitor.until(lambda: not visitor.all("#pin-list li"), "no pins")
 
 
+def test_a_file_of_this_computer_is_taken_or_refused_in_words(visitor, tmp_path, tank):
+    visitor.open(TANK)
+    visitor.click("#shelf-open")
+    long, mine = tmp_path / "long.toml", tmp_path / "mine.toml"
+    long.write_text("#" * 300_000)
+    visitor.one("#upload input[type=file]").send_keys(str(long))
+    visitor.shows("message", "too long for a design")
+    mine.write_text(tank.replace('title = "Day tank', 'title = "My own tank'))
+    visitor.one("#upload input[type=file]").send_keys(str(mine))
+    visitor.shows("headline-title", "My own tank")
+    visitor.shows("file-standing", "not saved yet")
+
+
 @pytest.fixture
 def strange_visitor(chromium, folder, stranger):
     served = Served(folder)
