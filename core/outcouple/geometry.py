@@ -189,12 +189,15 @@ class Setting:
     samples  S
     index    (material name) -> real absolute index at the emitter's centre wavelength, (S,)
     breaks   indices (S,) of the media the states hold: where the light's quadrature wants edges, and for nothing else
+    absorption  (material name) -> absorption coefficient at the emitter's centre wavelength [1/m], (S,); for measures
+             and maps only: the light's own absorption follows from its lengths
     """
 
     p: Any
     samples: int
     index: Callable[[str], Floats]
     breaks: tuple[Floats, ...] = ()
+    absorption: Callable[[str], Floats] = lambda name: np.zeros(1)
 
     def spread(self, value: Floats | float) -> Floats:
         """A value as an array (S,)."""

@@ -11,6 +11,8 @@ GEOMETRIES: tuple[str, ...] = (
     "gap-pair = outcouple_plugins.gap_pair:GapPair | two prisms whose narrow gap passes light: displacement or force",
     "edge-perimeter = outcouple_plugins.edge_perimeter:EdgePerimeter | plate read around its perimeter: objects shadow "
     "chords of guided light",
+    "edge-camera = outcouple_plugins.edge_camera:EdgeCamera | plate lit at its edges, read by a camera behind it: "
+    "touches glow",
 )
 
 

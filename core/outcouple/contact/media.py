@@ -60,6 +60,11 @@ class Media:
         index = self.index(name)
         return np.asarray(index[:, index.shape[1] // 2].real)
 
+    def absorption(self, name: str) -> Floats:
+        """Absorption coefficient at the centre of the line [1/m], shape (S,)."""
+        middle = self.wavelengths.shape[1] // 2
+        return np.asarray(4 * np.pi * self.index(name)[:, middle].imag / self.wavelengths[:, middle])
+
     @property
     def notes(self) -> tuple[Note, ...]:
         """Cautions of every material looked up so far."""

@@ -146,7 +146,8 @@ def setting_of(
         extra=extra,
     )
     breaks = tuple(media.centre(name) for name in breaks_of)
-    return Setting(p=p, samples=samples, index=media.centre, breaks=breaks), media, weights
+    setting = Setting(p=p, samples=samples, index=media.centre, breaks=breaks, absorption=media.absorption)
+    return setting, media, weights
 
 
 def lay_state(

@@ -1,0 +1,235 @@
+"""Maps of a camera-read plate: light on the face, and what an object would read wherever it lies."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+
+import numpy as np
+from numpy.typing import NDArray
+
+from outcouple.evaluation.transport import mean_power
+from outcouple.geometry import Curve, MetricValue, Missing, Results, StateResult, Surface
+from outcouple.readout.emitted import emitted_power
+from outcouple_plugins.edge_camera.lens import pixel_side, sight_of
+from outcouple_plugins.edge_camera.light import SPOT, hop_of, strips_of
+from outcouple_plugins.edge_camera.measures import (
+    background,
+    by_state,
+    centroid_error,
+    face_irradiance,
+    object_pixels,
+    place_of,
+    rise,
+    rows_shared,
+    touches,
+)
+from outcouple_plugins.plate.flux import Flux, Rows, flux_at
+
+__all__ = ["measured_on_maps", "middle_line", "surfaces_of"]
+
+Floats = NDArray[np.float64]
+
+BLOCK = 200
+"""Places followed at a time."""
+POINTS = 61
+
+
+@dataclass(frozen=True)
+class _Field:
+    """One object moved over places (P,) of one sample.
+
+    gain   rise there over the rise at the object's own place
+    snr    per reading; whole per object
+    error  of the position [m]
+    """
+
+    gain: Floats
+    snr: Floats
+    whole: Floats
+    error: Floats
+
+
+def _grid(results: Results, sample: int, margin: Floats | float) -> tuple[Floats, Floats]:
+    p, spread = results.setting.p, results.setting.spread
+    inner = np.broadcast_to(margin, (results.setting.samples,))[sample]
+    width, height = (max(spread(side)[sample] - 2 * inner, 0.0) for side in (p.plate.width, p.plate.height))
+    x = ((np.arange(p.field.columns) + 0.5) / p.field.columns - 0.5) * width
+    y = ((np.arange(p.field.rows) + 0.5) / p.field.rows - 0.5) * height
+    return x, y
+
+
+def _one(rows: Rows, sample: int) -> Rows:
+    """The rows of one sample."""
+
+    def row(array: Floats) -> Floats:
+        return array[min(sample, array.shape[0] - 1)][None]
+
+    port = replace(
+        rows.port,
+        **{
+            name: row(getattr(rows.port, name))
+            for name in ("index", "thickness", "height", "offset", "gap", "half_angle", "exponent")
+        },
+    )
+    fan = replace(
+        rows.fan,
+        **{name: row(getattr(rows.fan, name)) for name in ("elevation", "weight", "s", "p", "reflected", "scale")},
+    )
+    return replace(
+        rows, port=port, fan=fan, size=row(rows.size), width=row(rows.width), height=row(rows.height),
+        mirror=row(rows.mirror), haze=row(rows.haze),
+    )  # fmt: skip
+
+
+def _blocks(rows: Rows, x: Floats, y: Floats) -> list[tuple[slice, Flux]]:
+    cuts = [slice(start, start + BLOCK) for start in range(0, len(x), BLOCK)]
+    return [(cut, flux_at(rows, x[cut], y[cut])) for cut in cuts]
+
+
+def _absorption(results: Results, sample: int) -> Floats:
+    return results.setting.spread(results.setting.absorption(results.setting.p.plate.material))[sample : sample + 1]
+
+
+def _taken(results: Results, state: StateResult, sample: int) -> Floats:
+    """Share of every ray of one bundle that the object takes, (2, E), mean over its strips."""
+    assert state.reply is not None
+    light, diameter = state.light, place_of(results, state)[0]
+    rows = rows_shared(results)
+    nodes = rows.fan.elevation.shape[1]
+    hop = hop_of(rows, 1)[:, None, :]
+    hits = strips_of(diameter, diameter, diameter).lengths[:, 0, 0, :, None] / hop
+    s_ray = light.polarization[:, : 2 * nodes][:, None, :] > 0
+    lost: Floats = np.zeros((1, 1))
+    for share, Rs, Rp in state.reply("spot", light.angle[:, : 2 * nodes, SPOT]):
+        bounce = np.where(s_ray, Rs[:, None, :], Rp[:, None, :])
+        lost = lost + np.asarray(share).reshape(-1, 1) * np.mean(1 - mean_power(bounce, hits), axis=1)
+    return np.asarray(lost[min(sample, lost.shape[0] - 1)].reshape(2, nodes))
+
+
+def _strength(flux: Flux, rows: Rows, taken: Floats, absorption: Floats) -> Floats:
+    """Light an object draws out at every place, per power and width, (P,)."""
+    kept = np.exp(-absorption[:, None, None] * flux.length[:, :, None] / np.cos(rows.fan.elevation)[:, None, :])
+    return np.asarray(np.sum((flux.s * taken[0] + flux.p * taken[1]) * kept, axis=(1, 2)))
+
+
+def _gathered(results: Results, sample: int, x: Floats, y: Floats) -> Floats:
+    """Share the lens gets of what an object sends back, over that on the axis, (P,)."""
+    setting = results.setting
+    if setting.samples > 1:
+        middle = sight_of(setting, np.zeros(setting.samples), np.zeros(setting.samples)).lambertian[sample]
+        whole = [
+            sight_of(setting, np.full(setting.samples, a), np.full(setting.samples, b)).lambertian[sample]
+            for a, b in zip(x, y, strict=True)
+        ]
+        return np.asarray(whole) / middle
+    return np.asarray(sight_of(setting, x, y).lambertian)
+
+
+def _drawn(results: Results, state: StateResult, sample: int, x: Floats, y: Floats) -> Floats:
+    rows, absorption = _one(rows_shared(results), sample), _absorption(results, sample)
+    taken = _taken(results, state, sample)
+    drawn = [_strength(flux, rows, taken, absorption) for _, flux in _blocks(rows, x, y)]
+    return np.concatenate(drawn) * _gathered(results, sample, x, y)
+
+
+def _field(results: Results, state: StateResult, sample: int, margin: Floats | float) -> _Field:
+    """What the object would read over the grid; the noise grows with its own light's shot noise."""
+    gx, gy = _grid(results, sample, margin)
+    x, y = np.tile(gx, len(gy)), np.repeat(gy, len(gx))
+    diameter, x0, y0 = (part[sample : sample + 1] for part in place_of(results, state))
+    drawn = _drawn(results, state, sample, np.concatenate([x0, x]), np.concatenate([y0, y]))
+    gain = drawn[1:] / drawn[0] if drawn[0] > 0 else np.zeros(len(x))
+    here = rise(results, state)[sample]
+    noise = np.broadcast_to(state.noise[:, 0], (results.setting.samples,))[sample]
+    # Only the signal's shot noise and the pixels' unevenness change; both are bounded by scaling the rise alone.
+    variance = np.maximum(noise**2 + (gain - 1) * here, (gain * here) / 2)
+    snr = gain * here / np.sqrt(np.maximum(variance, 1e-12))
+    pixels = object_pixels(results, place_of(results, state)[0])[sample]
+    side = pixel_side(results.setting)[sample] * np.sqrt(float(results.setting.p.readout.pixels))
+    return _Field(gain, snr, snr * np.sqrt(pixels), centroid_error(diameter, np.asarray(side), snr))
+
+
+def _shared(results: Results, state: StateResult, sample: int, margin: Floats | float, key: str) -> _Field:
+    name = f"field {state.name} {sample} {key}"
+    if name not in results.memo:
+        results.memo[name] = _field(results, state, sample, margin)
+    found: _Field = results.memo[name]
+    return found
+
+
+def measured_on_maps(names: Sequence[str], results: Results) -> dict[str, MetricValue | Missing]:
+    """Those of ``names`` that need maps, over every sample and touch with a place."""
+    margin = results.setting.spread(results.setting.p.field.margin)
+    states = [state for state in touches(results) if state.place is not None]
+    found: dict[str, MetricValue | Missing] = {}
+    if not states or background(results) is None:
+        return dict.fromkeys(names, Missing("needs an object that must trigger and a state where nothing does"))
+    for name in names:
+        area = max((one.area for one in results.requirements if one.metric == name), default=1.0)
+        values = {}
+        for state in states:
+            fields = [_shared(results, state, at, margin, "field") for at in range(results.setting.samples)]
+            values[state.name] = np.array([_worst(name, field, area) for field in fields])
+        found[name] = by_state(values, results.setting.samples, highest=name == "worst_position_error")
+    return found
+
+
+def _worst(name: str, field: _Field, area: float) -> float:
+    """The value that a share of the cells keeps."""
+    cut = 1 - area
+    if name == "uniformity":
+        most = float(np.max(field.gain))
+        return float(np.quantile(field.gain, cut)) / most if most > 0 else 0.0
+    if name == "least_object_snr":
+        return float(np.quantile(field.whole, cut))
+    return float(np.quantile(field.error, area))
+
+
+def surfaces_of(results: Results) -> tuple[Surface, ...]:
+    """Irradiance of the touched face, signal over noise and position error of the first object."""
+    gx, gy = _grid(results, 0, 0.0)
+    axes = (("y", "mm", gy), ("x", "mm", gx))
+    shape = (len(gy), len(gx))
+    rows, absorption = _one(rows_shared(results), 0), _absorption(results, 0)
+    x, y = np.tile(gx, len(gy)), np.repeat(gy, len(gx))
+    light = np.concatenate([face_irradiance(flux, rows, absorption) for _, flux in _blocks(rows, x, y)])
+    power = float(np.atleast_1d(emitted_power(results.setting.p))[0])
+    found = [
+        Surface("irradiance_map", "irradiance of the touched face", axes, (light * power).reshape(shape),
+                "irradiance", "W/m2")
+    ]  # fmt: skip
+    states = [state for state in touches(results) if state.place is not None]
+    if states and background(results) is not None:
+        field, name = _shared(results, states[0], 0, 0.0, "plate"), states[0].name
+        certainty = float(np.atleast_1d(results.setting.p.field.certainty)[0])
+        found += [
+            Surface("object_snr_map", f"signal over noise of {name!r}", axes, field.whole.reshape(shape),
+                    limit=certainty),
+            Surface("position_error_map", f"position error of {name!r}", axes, field.error.reshape(shape),
+                    "length", "um"),
+        ]  # fmt: skip
+    return tuple(found)
+
+
+def middle_line(results: Results) -> Curve | None:
+    """Rise by the first object along the plate's middle line, over its rise at its own place."""
+    states = [state for state in touches(results) if state.place is not None]
+    if not states or background(results) is None:
+        return None
+    state = states[0]
+    diameter, x0, y0 = (part[:1] for part in place_of(results, state))
+    half = float(results.setting.spread(results.setting.p.plate.width)[0]) / 2 - float(diameter[0]) / 2
+    x = np.linspace(-half, half, POINTS)
+    drawn = _drawn(results, state, 0, np.concatenate([x0, x]), np.concatenate([y0, 0 * x + y0]))
+    here = float(rise(results, state)[0])
+    values = drawn[1:] / drawn[0] * here if drawn[0] > 0 else 0 * x
+    return Curve(
+        name="response",
+        label=f"rise of the pixel's reading under {state.name!r} along the plate",
+        axes=(("place along x", "mm", x),),
+        values=values,
+        kind="electrons",
+        unit="ke-",
+        marks=((state.name, float(x0[0]), here),),
+    )

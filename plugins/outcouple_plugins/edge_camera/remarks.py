@@ -1,0 +1,100 @@
+"""Cautions and failure directions of a camera-read plate."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from outcouple.geometry import FailureRow, MetricValue, Results, Setting
+from outcouple.notes import Note
+from outcouple_plugins.edge_camera.lens import pixel_side
+from outcouple_plugins.edge_camera.measures import MEASURES
+
+__all__ = ["failure_rows", "remarks_on", "setting_notes"]
+
+
+def remarks_on(results: Results) -> tuple[Note, ...]:
+    """Saturated pixels and what to do, and outside light brighter than a touch."""
+    found = []
+    headroom = results.metric("saturation_headroom")
+    if isinstance(headroom, MetricValue) and headroom.values[0] < 1:
+        exposure = float(np.atleast_1d(results.setting.p.readout.exposure)[0])
+        fitting = 0.8 * exposure * float(headroom.values[0])
+        found.append(
+            Note(
+                "shorten-exposure",
+                f"Pixels are full in {headroom.at!r}: what they read means nothing. Shorten the exposure to about "
+                f"{fitting * 1e3:.2g} ms or close the pupil.",
+                trigger="saturation headroom below 1",
+            )
+        )
+    touch, outside = MEASURES["touch_radiance"](results), MEASURES["outside_radiance"](results)
+    if isinstance(touch, MetricValue) and isinstance(outside, MetricValue) and outside.values[0] > touch.values[0]:
+        found.append(
+            Note(
+                "outside-outshines-touch",
+                f"Outside light makes what hovers up to {outside.values[0] / max(touch.values[0], 1e-12):.2g} times as "
+                f"bright as the weakest touch: {outside.at!r} looks like a touch. A frame without emitters to subtract, "
+                "a narrower filter with brighter pulses, or shade could help.",
+                trigger="radiance from outside above that of the weakest touch",
+            )
+        )
+    return tuple(found)
+
+
+def setting_notes(setting: Setting) -> tuple[Note, ...]:
+    """What the model leaves out, and inputs that do not fit together."""
+    p = setting.p
+    index = setting.index(p.plate.material)
+    view = pixel_side(setting) * p.lens.columns
+    return (
+        Note(
+            "edge-light-not-guided",
+            "At this index light that enters through the edge does not all stay in the plate: below 1.414 even a plate "
+            "in air leaks.",
+            trigger="index of the plate below 1.414",
+            where=index < np.sqrt(2),
+        ),
+        Note(
+            "bonded-emitters-shed",
+            "Bonded emitters put light into the plate that the faces do not guide; it leaves near the edge as glow.",
+            severity="info",
+            where=np.full(setting.samples, p.emitters.coupling == "bonded"),
+        ),
+        Note(
+            "view-misses-plate",
+            "The camera does not see the whole width of the plate.",
+            trigger="lens.view below plate.width",
+            where=view < setting.spread(p.plate.width) * (1 - 1e-9),
+        ),
+        Note(
+            "frames-overlap",
+            "The exposure is longer than the time between two decisions.",
+            trigger="readout.exposure above one over decision.rate",
+            where=setting.spread(p.readout.exposure * p.decision.rate) > 1,
+        ),
+        Note(
+            "back-not-air",
+            "The camera is taken to look through a back face in air; a layer there changes what escapes.",
+            where=np.full(setting.samples, p.plate.back != "air"),
+        ),
+        Note(
+            "unpolarised-emitters",
+            "Emitters along edges are taken as unpolarised.",
+            where=np.full(setting.samples, p.emitter.polarization != "none"),
+        ),
+    )
+
+
+def failure_rows(setting: Setting) -> tuple[FailureRow, ...]:
+    """Rows of the failure-direction table."""
+    return (
+        FailureRow("scratch or chip", "glows for good like a small touch", False, ("trend",), slow=True),
+        FailureRow("fingerprint grease", "a flat film does nothing, its ridges glow", False, ("trend",)),
+        FailureRow("gasket or label on a face", "glows and takes light from what lies behind it", None, ("trend",)),
+        FailureRow("dust on the plate", "its few contact points glow", False, ("trend",), slow=True),
+        FailureRow("sun on hands or sleeves", "hovering things look like touches", False, ("dark test",)),
+        FailureRow("one emitter dead", "its side of the plate grows dim", True, ("reference",)),
+        FailureRow("warming up", "emitters fade together and leave the filter's band", True, ("reference",), slow=True),
+        FailureRow("lens fogged or moved", "touches blur and grow dim", True, ("trend",), slow=True),
+        FailureRow("plate bowed or wedged", "rays steepen on the way and leak early", None, (), slow=True),
+    )
