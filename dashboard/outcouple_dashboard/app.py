@@ -84,6 +84,8 @@ def layout(desk: Desk) -> Any:
             dcc.Store(id="doc-vary"),
             dcc.Store(id="doc-compare"),
             dcc.Store(id="folds", data=[]),
+            dcc.Store(id="vary-setup"),
+            dcc.Store(id="vary-asked"),
             dcc.Store(id="form-key"),
             dcc.Store(id="link"),
             dcc.Store(id="tab"),
@@ -201,7 +203,13 @@ def _register_frame(app: Dash) -> None:
         Input("redo", "n_clicks"),
         prevent_initial_call=True,
     )
-    here("address", Output("sink", "children"), Input("link", "data"), Input("url", "pathname"))
+    here(
+        "address",
+        Output("sink", "children"),
+        Input("link", "data"),
+        Input("url", "pathname"),
+        Input("vary-setup", "data"),
+    )
     here("copyLink", Output("copy-link", "children"), Input("copy-link", "n_clicks"), prevent_initial_call=True)
     here(
         "closeMessage",

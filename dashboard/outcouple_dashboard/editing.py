@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 from typing import Any
 from urllib.parse import parse_qs
 
@@ -17,7 +18,7 @@ from outcouple_dashboard.edits import get_value
 from outcouple_dashboard.entries import Entry, contact_of, entry_at, slider_position, slider_text, split
 from outcouple_dashboard.tags import changed_inputs, pressed
 
-__all__ = ["register", "shown_text"]
+__all__ = ["register", "say", "shown_text", "vary_asked"]
 
 
 def register(app: Dash, desk: Desk) -> None:
@@ -36,16 +37,34 @@ def say(text: str) -> None:
 
 def _register_link(app: Dash) -> None:
     def on_open(search: str | None, doc: Any) -> Any:
-        link = parse_qs((search or "").lstrip("?")).get("d", [""])[0]
+        asked = parse_qs((search or "").lstrip("?"))
+        link = asked.get("d", [""])[0]
         if doc or not link:
-            return no_update, no_update
+            return no_update, no_update, no_update
         try:
-            return from_link(link)
+            return *from_link(link), vary_asked(asked.get("v", [""])[0])
         except UserMistake as mistake:
             say(str(mistake))
-            return no_update, no_update
+            return no_update, no_update, no_update
 
-    app.callback(Output("doc", "data"), Output("pins", "data"), Input("url", "search"), State("doc", "data"))(on_open)
+    app.callback(
+        Output("doc", "data"),
+        Output("pins", "data"),
+        Output("vary-asked", "data"),
+        Input("url", "search"),
+        State("doc", "data"),
+    )(on_open)
+
+
+def vary_asked(text: str) -> dict[str, list[str]]:
+    """What a link says of the Vary page: [input, from, to] of "x" and "y", [metric]; nothing where it is damaged."""
+    try:
+        values = json.loads(text)
+    except (ValueError, RecursionError):
+        return {}
+    if not (isinstance(values, list) and len(values) == 7 and all(isinstance(one, str) for one in values)):
+        return {}
+    return {"x": values[:3], "y": values[3:6], "metric": values[6:]}
 
 
 def _register_form(app: Dash, desk: Desk) -> None:

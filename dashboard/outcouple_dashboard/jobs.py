@@ -20,7 +20,7 @@ from outcouple_dashboard import work
 __all__ = ["Job", "Jobs"]
 
 State = Literal["waiting", "running", "done", "failed", "cancelled"]
-KEPT = 200
+KEPT = 100
 """Jobs that are remembered."""
 LISTEN = 0.05
 """Seconds between looks at a running job."""

@@ -213,6 +213,7 @@ def _register_opening(app: Dash, desk: Desk) -> None:
         if not clicks:
             return (no_update,) * 4
         name = desk.folder.free_name(doc["file"] or "design") if doc else ""
+        set_props("shelf-said", {"children": ""})
         return True, _open_buttons(desk), doc["text"] if doc else "", name
 
     app.callback(

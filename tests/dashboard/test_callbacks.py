@@ -5,6 +5,7 @@ from __future__ import annotations
 import json
 import tomllib
 from concurrent.futures import ThreadPoolExecutor
+from urllib.parse import quote
 
 import pytest
 
@@ -269,3 +270,17 @@ def test_a_fold_is_filled_when_it_is_opened(calls, tank):
     found = calls.fire("folds.data", id_, "n_clicks", values)
     assert found["folds.data"] == []
     assert found[key(inside, "children")] == []
+
+
+def test_a_link_to_a_sweep_brings_it_back(calls, tank):
+    setup = json.dumps(["prism.crosstalk", "1 %", "60 %", "", "", "", "worst_ratio"])
+    found = calls.fire("doc.data", "url", "search", {"url.search": f"?d={link_of(document(tank))}&v={quote(setup)}"})
+    asked = found["vary-asked.data"]
+    page = {"doc-vary.data": found["doc.data"], "vary-asked.data": asked}
+    chosen = calls.fire("vary-x.value", "doc-vary", "data", page)
+    assert (chosen["vary-x.value"], chosen["vary-metric.value"]) == ("prism.crosstalk", "worst_ratio")
+    page = {"doc.data": found["doc.data"], "vary-x.value": "prism.crosstalk", "vary-asked.data": asked}
+    ends = calls.fire("vary-x-from.value", "vary-x", "value", page)
+    assert (ends["vary-x-from.value"], ends["vary-x-to.value"]) == ("1 %", "60 %")
+    damaged = calls.fire("doc.data", "url", "search", {"url.search": f"?d={link_of(document(tank))}&v=[[["})
+    assert damaged["vary-asked.data"] == {}

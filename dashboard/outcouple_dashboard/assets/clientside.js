@@ -118,12 +118,16 @@
         return Object.assign({}, state.doc, { text: text, origin: back ? "undo" : "redo", serial: state.doc.serial + 1 });
       },
 
-      address: function (link, pathname) {
+      address: function (link, pathname, vary) {
         if (link) {
-          const search = "?d=" + link;
+          const search = "?d=" + link + (vary ? "&v=" + encodeURIComponent(vary) : "");
           if (window.location.search !== search) history.replaceState(history.state, "", (pathname || "/") + search);
         }
         return keep();
+      },
+
+      varySetup: function (...values) {
+        return values[0] ? JSON.stringify(values.map((one) => one || "")) : keep();
       },
 
       copyLink: async function () {

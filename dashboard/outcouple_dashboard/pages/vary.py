@@ -20,7 +20,6 @@ from outcouple_dashboard.documents import with_text
 from outcouple_dashboard.editing import say
 from outcouple_dashboard.entries import join
 from outcouple_dashboard.pages.design import look_of
-from outcouple_dashboard.parts import plain
 from outcouple_dashboard.pictures import WORST, clicked_at, sweep_picture, swept_text
 from outcouple_dashboard.ranges import MAP_POINTS, POINTS, Varying, find_varying, sentence, span_of, varying
 from outcouple_dashboard.tags import aria, local
@@ -225,7 +224,7 @@ def told_of(found: Sweep) -> str:
         return f"{now} No requirements are stated."
     good, count = int(np.sum(found.verdicts == "pass")), found.done.size
     marks = "Shaded" if picture_axes(found)[1] is None else "Without crosses"
-    why = "; ".join(f"{limit.label} is open: {plain(limit.why)}" for limit in found.limits if limit.why)
+    why = "; ".join(f"{limit.label} is open: {parts.plain(limit.why)}" for limit in found.limits if limit.why)
     told = f"{now} {marks}: all requirements are met, which {good} of {count} points do."
     return f"{told} {why}" if why else told
 
@@ -261,9 +260,11 @@ def register(app: Dash, desk: Desk) -> None:
 
 
 def _register_pickers(app: Dash, desk: Desk) -> None:
-    def on_doc(doc: Any, x: Any, y: Any, metric: Any, opened: Any) -> Any:
+    def on_doc(doc: Any, x: Any, y: Any, metric: Any, opened: Any, asked: Any) -> Any:
         if not doc:
             return (no_update,) * 7
+        if opened is None and asked:  # the first look after a link was opened
+            x, y, metric = asked["x"][0], asked["y"][0], asked["metric"][0]
         try:
             inputs, again, new_x, new_y, metrics, new_metric = setup(desk, doc["text"], x, y, metric)
         except UserMistake:
@@ -287,11 +288,17 @@ def _register_pickers(app: Dash, desk: Desk) -> None:
         State("vary-y", "value"),
         State("vary-metric", "value"),
         State("vary-opened", "data"),
+        State("vary-asked", "data"),
     )(on_doc)
 
-    def on_pick(name: str | None, doc: Any) -> Any:
+    def on_pick(name: str | None, doc: Any, asked: Any) -> Any:
         if not doc:
             return no_update, no_update
+        ends = next(
+            (row[1:] for row in ((asked or {}).get("x"), (asked or {}).get("y")) if row and row[0] == name), None
+        )
+        if name and ends:
+            return ends
         one = find_varying(desk.design(doc["text"]), name)
         return span_of(one) if one is not None else ("", "")
 
@@ -301,8 +308,12 @@ def _register_pickers(app: Dash, desk: Desk) -> None:
             Output(f"vary-{which}-to", "value"),
             Input(f"vary-{which}", "value"),
             State("doc", "data"),
+            State("vary-asked", "data"),
             prevent_initial_call=True,
         )(on_pick)
+    fields = ("x", "x-from", "x-to", "y", "y-from", "y-to", "metric")
+    inputs = (Input(f"vary-{name}", "value") for name in fields)
+    local(app, "varySetup", Output("vary-setup", "data"), *inputs, prevent_initial_call=True)
 
 
 def _register_job(app: Dash, desk: Desk) -> None:
