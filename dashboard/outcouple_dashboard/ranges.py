@@ -41,12 +41,13 @@ class Varying:
 
 
 def varying(design: Design) -> list[Varying]:
-    """Everything that can run, decisive inputs first within their section."""
+    """Everything that can run, decisive inputs first within their section; not what every state sets for itself."""
     found = []
+    overruled = set.intersection(*(set(state.changes) for state in design.states)) if design.states else set()
     for group in section_groups(design):
         rows = sorted(group.entries, key=lambda one: not one.leaf.deciding)
         for entry in rows:
-            if _can_run(entry):
+            if _can_run(entry) and entry.path not in overruled:
                 found.append(Varying(entry.leaf.name, entry.label, words(group.name), entry))
     for at, row in enumerate(design.raw.get("states", [])):
         for entry in state_entries(design, at):

@@ -11,7 +11,7 @@ from outcouple_dashboard.jobs import Jobs
 from .conftest import DEMOS
 
 SLOW = (DEMOS / "force_cell.toml").read_text(encoding="utf-8")
-AXES = ["gap.distance from 50 nm to 400 nm in 200", "gap.tilt from 0 urad to 6 urad in 200"]
+AXES = ["gap.roughness from 10 nm to 60 nm in 200", "gap.tilt from 0 urad to 6 urad in 200"]
 PATIENCE = 120
 
 

@@ -16,6 +16,8 @@ from outcouple_dashboard.pages import compare, vary
 from outcouple_dashboard.pictures import WORST, clicked_at, sweep_picture
 from outcouple_dashboard.ranges import find_varying, span_of
 
+from .conftest import DEMOS
+
 
 def swept(tank, *axes):
     return sweep(parse_design(tank), list(axes))
@@ -30,6 +32,12 @@ def test_every_number_of_the_design_can_run(tank):
     assert span_of(find_varying(design, "environment.temperature")) == ("-10 degC", "50 degC")
     axes = vary.axes_of(design, [("prism.base", "4 mm", "16 mm"), (None, "", "")])
     assert axes == ["prism.base from 4 mm to 16 mm in 33"]
+
+
+def test_what_every_state_sets_for_itself_does_not_run():
+    design = parse_design((DEMOS / "force_cell.toml").read_text(encoding="utf-8"))
+    assert find_varying(design, "gap.distance") is None
+    assert find_varying(design, "gap.roughness") is not None
 
 
 def test_a_point_of_a_curve_is_taken_over(app, tank):
