@@ -109,7 +109,6 @@ def _powers(
         thicknesses,
         theta,
         wavelength,
-        linewidth=linewidth,
         layer=at,
         spread=films[at].spread,
         deviation=_column(films[at].deviation),

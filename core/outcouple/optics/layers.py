@@ -20,7 +20,7 @@ import numpy as np
 
 from outcouple.optics.arrays import Array, Complexes, Floats
 
-__all__ = ["Layer", "Load", "front_load"]
+__all__ = ["Layer", "Load", "front_load", "unit"]
 
 SMALL = 1e-300
 """Added to |w^2|, so that (sin d) / w at w = 0 comes out as its limit, d / w."""
@@ -37,20 +37,23 @@ class Layer:
 
 @dataclass(frozen=True)
 class Load:
-    """Tangential fields behind an interface, s and p on the first axis.
+    """Tangential fields at the front of layers, (2, ...) with s and p on the first axis.
 
-    Each is real and imaginary part on an axis before that where ``clear`` is true of the layers, else complex; use
-    ``denominator`` and ``numerator``.
+    exit    real part of the exit medium's admittance: what carries power away
+    passed  |exp(i d)|^2 over all layers: what both fields were scaled by
     """
 
     B: Complexes
     C: Complexes
+    exit: Floats
     passed: Floats | float = 1.0
 
 
 def front_load(layers: Sequence[Layer], permittivity: Array, square: Floats) -> Load:
     """Fields at the front of ``layers`` (from the guide outwards) over the exit medium, and the exit's admittance."""
     admittance = exit_admittance(permittivity, square)
+    if not layers:
+        return Load(np.ones_like(admittance), admittance, admittance.real)
     if any(np.iscomplexobj(layer.permittivity) for layer in layers):
         return _absorbing_front(layers, admittance)
     return _clear_front(layers, admittance)
@@ -62,7 +65,7 @@ def exit_admittance(permittivity: Array, square: Floats) -> Complexes:
         w = _complex(*_root(square, permittivity.imag))
     else:
         w = _complex(np.sqrt(np.maximum(square, 0.0)), np.sqrt(np.maximum(-square, 0.0)))
-    return _pair(w, w / permittivity)
+    return w / unit(permittivity)
 
 
 def _clear_front(layers: Sequence[Layer], admittance: Complexes) -> Load:
@@ -77,12 +80,15 @@ def _clear_front(layers: Sequence[Layer], admittance: Complexes) -> Load:
     passed: Floats | float = 1.0
     for layer in reversed(layers):
         cosine, sine, decay = _clear_layer(layer)
-        along = _pair(sine, sine * layer.permittivity)
-        sine = sine * layer.square
-        back = _pair(sine, sine / layer.permittivity)
-        B, iC = cosine * B - along * iC, cosine * iC + back * B
+        step = unit(layer.permittivity)
+        along, back = sine * step, sine * layer.square / step
+        along, back = along * iC, back * B
+        B *= cosine
+        B -= along
+        iC *= cosine
+        iC += back
         passed = passed * decay
-    return Load(_complex(B[0], B[1]), _complex(iC[1], -iC[0]), passed)
+    return Load(_complex(B[0], B[1]), _complex(iC[1], -iC[0]), admittance.real, passed)
 
 
 def _clear_layer(layer: Layer) -> tuple[Floats, Floats, Floats | float]:
@@ -116,16 +122,14 @@ def _decay(phase: Floats) -> tuple[Floats, Floats, Floats]:
 
 
 def _absorbing_front(layers: Sequence[Layer], admittance: Complexes) -> Load:
-    B, C = np.ones_like(admittance), admittance
+    B, C, exit = np.ones_like(admittance), admittance, admittance.real
     passed: Floats | float = 1.0
     for layer in reversed(layers):
         cosine, sine, back, decay = _absorbing_layer(layer)
-        B, C = (
-            cosine * B + _pair(sine, sine * layer.permittivity) * C,
-            cosine * C + _pair(back, back / layer.permittivity) * B,
-        )
+        step = unit(layer.permittivity)
+        B, C = cosine * B + sine * step * C, cosine * C + back / step * B
         passed = passed * decay
-    return Load(B, C, passed)
+    return Load(B, C, exit, passed)
 
 
 def _absorbing_layer(layer: Layer) -> tuple[Complexes, Complexes, Complexes, Floats]:
@@ -155,5 +159,6 @@ def _complex(real: Floats, imag: Floats) -> Complexes:
     return result
 
 
-def _pair(s: Array, p: Array) -> Array:
-    return np.stack(np.broadcast_arrays(s, p))
+def unit(permittivity: Array) -> Array:
+    """What s and p divide a normal index by to get the admittance, on a new first axis: 1 and the permittivity."""
+    return np.stack([np.ones_like(permittivity), permittivity])
