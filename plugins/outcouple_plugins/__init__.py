@@ -13,6 +13,8 @@ GEOMETRIES: tuple[str, ...] = (
     "chords of guided light",
     "edge-camera = outcouple_plugins.edge_camera:EdgeCamera | plate lit at its edges, read by a camera behind it: "
     "touches glow",
+    "soft-overlay = outcouple_plugins.soft_overlay:SoftOverlay | soft skin over an edge-lit plate, read by a camera: "
+    "pressure makes it glow",
 )
 
 

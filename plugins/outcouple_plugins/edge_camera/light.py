@@ -62,7 +62,7 @@ def _weighted(weight: Floats, diameter: Floats, x: Floats, y: Floats) -> Strips:
 
 def bundles_of(light: Light, rows: Rows) -> int:
     """Bundles of a light whose rays are laid out by bundle, polarisation and elevation."""
-    return light.rays // (2 * rows.fan.elevation.shape[1])
+    return int(light.rays // (2 * rows.fan.elevation.shape[1]))
 
 
 def hop_of(rows: Rows, bundles: int) -> Floats:

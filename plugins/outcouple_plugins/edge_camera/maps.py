@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, fields, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -24,6 +24,8 @@ from outcouple_plugins.edge_camera.measures import (
     rows_shared,
     touches,
 )
+from outcouple_plugins.plate.edge import Port
+from outcouple_plugins.plate.fan import Fan
 from outcouple_plugins.plate.flux import Flux, Rows, flux_at
 
 __all__ = ["measured_on_maps", "middle_line", "surfaces_of"]
@@ -63,21 +65,22 @@ def _one(rows: Rows, sample: int) -> Rows:
     """The rows of one sample."""
 
     def row(array: Floats) -> Floats:
-        return array[min(sample, array.shape[0] - 1)][None]
+        return np.asarray(array[min(sample, array.shape[0] - 1)][None])
 
-    port = replace(
-        rows.port,
-        **{
-            name: row(getattr(rows.port, name))
-            for name in ("index", "thickness", "height", "offset", "gap", "half_angle", "exponent")
-        },
+    port, fan = rows.port, rows.fan
+    one = Port(
+        row(port.index),
+        thickness=row(port.thickness),
+        height=row(port.height),
+        offset=row(port.offset),
+        gap=row(port.gap),
+        half_angle=row(port.half_angle),
+        bonded=port.bonded,
+        exponent=row(port.exponent),
     )
-    fan = replace(
-        rows.fan,
-        **{name: row(getattr(rows.fan, name)) for name in ("elevation", "weight", "s", "p", "reflected", "scale")},
-    )
+    part = Fan(*(row(getattr(fan, field.name)) for field in fields(fan)))
     return replace(
-        rows, port=port, fan=fan, size=row(rows.size), width=row(rows.width), height=row(rows.height),
+        rows, port=one, fan=part, size=row(rows.size), width=row(rows.width), height=row(rows.height),
         mirror=row(rows.mirror), haze=row(rows.haze),
     )  # fmt: skip
 
@@ -88,7 +91,8 @@ def _blocks(rows: Rows, x: Floats, y: Floats) -> list[tuple[slice, Flux]]:
 
 
 def _absorption(results: Results, sample: int) -> Floats:
-    return results.setting.spread(results.setting.absorption(results.setting.p.plate.material))[sample : sample + 1]
+    found = results.setting.spread(results.setting.absorption(results.setting.p.plate.material))[sample : sample + 1]
+    return np.asarray(found)
 
 
 def _taken(results: Results, state: StateResult, sample: int) -> Floats:

@@ -33,8 +33,8 @@ def remarks_on(results: Results) -> tuple[Note, ...]:
             Note(
                 "outside-outshines-touch",
                 f"Outside light makes what hovers up to {outside.values[0] / max(touch.values[0], 1e-12):.2g} times as "
-                f"bright as the weakest touch: {outside.at!r} looks like a touch. A frame without emitters to subtract, "
-                "a narrower filter with brighter pulses, or shade could help.",
+                f"bright as the weakest touch: {outside.at!r} looks like a touch. A frame without emitters to "
+                "subtract, a narrower filter with brighter pulses, or shade could help.",
                 trigger="radiance from outside above that of the weakest touch",
             )
         )

@@ -19,7 +19,10 @@ touching = "dry"
 name = "finger"
 expect = "present"
 object = { diameter = "10 mm" }
-touching = { patches = [{ share = "30 %", backing = "epidermis mid", albedo = "70 %" }, { share = "70 %", backing = "air" }] }
+touching.patches = [
+  { share = "30 %", backing = "epidermis mid", albedo = "70 %" },
+  { share = "70 %", backing = "air" },
+]
 
 [[states]]
 name = "water drop"
