@@ -10,7 +10,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cache
 
 import numpy as np
@@ -74,7 +74,7 @@ def _normal_rule() -> Rule:
 
 @cache
 def _hermite_rule() -> Rule:
-    nodes, weights = np.polynomial.hermite_e.hermegauss(12)
+    nodes, weights = np.polynomial.hermite_e.hermegauss(8)
     return nodes, weights / weights.sum()
 
 
@@ -186,100 +186,135 @@ def thickness_average(
     (others, up to a deviation of 30 % of the mean), 3e-2 in X beyond (tests). Absorption over many fringes counts at
     the mean thickness. KeyError for an unknown spread.
     """
-    rule = SPREADS[spread]
-    arrays = [angles(angle), floats(wavelength), clear(indices[0]), *(medium(n) for n in indices[1:])]
-    arrays += [*(floats(d) for d in thicknesses), floats(deviation)]
-    shape = np.broadcast_shapes(*(a.shape for a in arrays))
-    flat = [np.broadcast_to(a, shape).reshape(-1) for a in arrays]
-    theta, lengths, width = flat[0], flat[1], flat[-1]
-    media, depths = flat[2 : len(indices) + 2], flat[len(indices) + 2 : -1]
-    tangential = np.square(media[0] * np.sin(theta))
-    square = np.square(np.real(media[layer + 1])) - tangential
-    phase = 4 * np.pi * np.sqrt(np.abs(square)) / lengths * rule.scale(depths[layer], width)
-    touching = rule.touching(depths[layer], width)
-    fast = (phase > rule.slow) & (square > 0)
-    gentle = (phase <= rule.calm) & (touching < CLIPPED)
-    whole = tuple(np.empty(theta.shape, dtype=kind) for kind in (float, float, complex, float, float))
-    for here, way in ((fast, "trips"), (gentle, "gentle"), (~(fast | gentle), "fine")):
-        if not np.any(here):
+    points = _Points(
+        media=[clear(indices[0]), *(medium(index) for index in indices[1:])],
+        depths=[floats(depth) for depth in thicknesses],
+        theta=angles(angle),
+        wavelength=floats(wavelength),
+        deviation=floats(deviation),
+        layer=layer,
+        spread=SPREADS[spread],
+    )
+    shape, ways = points.shape, points.ways()
+    whole = tuple(np.empty(shape, dtype=kind) for kind in (float, float, complex, float, float))
+    for way, here in ways.items():
+        share = np.mean(np.broadcast_to(here, shape))
+        if share == 0:
             continue
-        cut = ([a[here] for a in media], [a[here] for a in depths], theta[here], lengths[here])
+        # The way of most points is gone by all, which keeps what does not vary short; the rest is overwritten.
+        chosen = points if share > 0.5 and way == "gentle" else points.at(here)
+        target_here = ... if chosen is points else np.broadcast_to(here, shape)
+        for target, values in zip(whole, chosen.average(way), strict=True):
+            target[target_here] = values
+    Rs, Rp, X, Ts, Tp = whole
+    return Rs, Rp, X, Ts, Tp
+
+
+@dataclass(frozen=True)
+class _Points:
+    """Arguments of :func:`thickness_average` as arrays that broadcast."""
+
+    media: Sequence[Array]
+    depths: Sequence[Floats]
+    theta: Floats
+    wavelength: Floats
+    deviation: Floats
+    layer: int
+    spread: Spread
+
+    @property
+    def shape(self) -> tuple[int, ...]:
+        """Of all arguments together."""
+        arrays = (*self.media, *self.depths, self.theta, self.wavelength, self.deviation)
+        return np.broadcast_shapes(*(array.shape for array in arrays))
+
+    @property
+    def mean(self) -> Floats:
+        """Of the layer's thickness."""
+        return self.depths[self.layer]
+
+    @property
+    def touching(self) -> Floats:
+        """Share of the layer's area without thickness."""
+        return self.spread.touching(self.mean, self.deviation)
+
+    @property
+    def tangential(self) -> Floats:
+        """Square of the tangential index."""
+        return np.asarray(np.square(self.media[0] * np.sin(self.theta)))
+
+    def at(self, here: Array) -> _Points:
+        """The points where ``here`` is true, on one axis."""
+        shape = self.shape
+        mask = np.broadcast_to(here, shape)
+
+        def pick(array: Array) -> Array:
+            return np.asarray(np.broadcast_to(array, shape)[mask])
+
+        return replace(
+            self,
+            media=[pick(index) for index in self.media],
+            depths=[pick(depth) for depth in self.depths],
+            theta=pick(self.theta),
+            wavelength=pick(self.wavelength),
+            deviation=pick(self.deviation),
+        )
+
+    def ways(self) -> dict[str, Array]:
+        """Where to take which way; "gentle" first."""
+        square = np.square(np.real(self.media[self.layer + 1])) - self.tangential
+        scale = self.spread.scale(self.mean, self.deviation)
+        phase = 4 * np.pi * np.sqrt(np.abs(square)) / self.wavelength * scale
+        trips = (phase > self.spread.slow) & (square > 0)
+        gentle = (phase <= self.spread.calm) & (self.touching < CLIPPED)
+        return {"gentle": gentle, "fine": ~(gentle | trips), "trips": trips}
+
+    def average(self, way: str) -> Powers:
+        """All points by one way."""
         if way == "trips":
-            part = _by_round_trips(*cut, layer, rule, width[here])
-            part = _with_touching(part, *cut, layer, touching[here])
-        else:
-            part = _by_nodes(*cut, layer, rule, rule.gentle() if way == "gentle" else rule.fine(), width[here])
-        for target, values in zip(whole, part, strict=True):
-            target[here] = values
-    Rs, Rp, X, Ts, Tp = (part.reshape(shape) for part in whole)
-    return Rs, Rp, X, Ts, Tp
+            return self._touched(self._by_round_trips())
+        return self._by_nodes(self.spread.gentle() if way == "gentle" else self.spread.fine())
 
+    def _by_nodes(self, rule: Rule) -> Powers:
+        total: list[Array] = [np.zeros(self.shape, dtype=kind) for kind in (float, float, complex, float, float)]
+        every = list(self.depths)
+        for x, weight in zip(*rule, strict=True):
+            every[self.layer] = self.spread.place(self.mean, self.deviation, float(x))
+            for sum_, part in zip(total, reflectance(self.media, every, self.theta, self.wavelength), strict=True):
+                sum_ += weight * part
+        return total[0], total[1], total[2], total[3], total[4]
 
-def _by_nodes(
-    media: Sequence[Array],
-    depths: Sequence[Floats],
-    theta: Floats,
-    wavelength: Floats,
-    layer: int,
-    spread: Spread,
-    rule: Rule,
-    width: Floats,
-) -> Powers:
-    total: list[Array] = [np.zeros(theta.shape, dtype=kind) for kind in (float, float, complex, float, float)]
-    every = list(depths)
-    for x, weight in zip(*rule, strict=True):
-        every[layer] = spread.place(depths[layer], width, float(x))
-        for at, part in enumerate(reflectance(media, every, theta, wavelength)):
-            total[at] = total[at] + weight * part
-    return total[0], total[1], total[2], total[3], total[4]
+    def _by_round_trips(self) -> Powers:
+        cut = self.layer + 1
+        before = group_of(self.tangential, self.wavelength, self.media[: cut + 1], self.depths[: self.layer])
+        behind = group_of(self.tangential, self.wavelength, self.media[cut:], self.depths[cut:])
+        normal = np.sqrt(np.square(self.media[cut]) + 0j - self.tangential)
+        fade = np.exp(-4 * np.pi * normal.imag * self.mean / self.wavelength)
+        trip, gain = before.back * behind.front, before.across * behind.front
+        wave = 4 * np.pi * normal.real / self.wavelength
+        first, further = _phase_sums(trip, wave, self.mean, self.deviation, self.spread)
 
+        def both(a: int, b: int) -> Complexes:
+            """<r_a conj r_b> for polarisations a and b."""
+            direct = before.front[a] * np.conj(before.front[b])
+            mixed = before.front[a] * np.conj(gain[b] * first[b]) + gain[a] * first[a] * np.conj(before.front[b])
+            around = (1 + further[a] + np.conj(further[b])) / (1 - trip[a] * np.conj(trip[b]) * np.square(fade))
+            return np.asarray(direct + mixed * fade + gain[a] * np.conj(gain[b]) * np.square(fade) * around)
 
-def _by_round_trips(
-    media: Sequence[Array],
-    depths: Sequence[Floats],
-    theta: Floats,
-    wavelength: Floats,
-    layer: int,
-    rule: Spread,
-    width: Floats,
-) -> Powers:
-    tangential = np.square(media[0] * np.sin(theta))
-    before = group_of(tangential, wavelength, media[: layer + 2], depths[:layer])
-    behind = group_of(tangential, wavelength, media[layer + 1 :], depths[layer + 1 :])
-    normal = np.sqrt(np.square(media[layer + 1]) + 0j - tangential)
-    fade = np.exp(-8 * np.pi * normal.imag * depths[layer] / wavelength)
-    trip = before.back * behind.front
-    first, further = _phase_sums(trip, 4 * np.pi * normal.real / wavelength, depths[layer], width, rule)
-    gain = before.across * behind.front
+        inside = 1 - np.square(np.abs(trip)) * np.square(fade)
+        T = before.T * behind.T * fade * (1 + 2 * further.real) / inside
+        return both(0, 0).real, both(1, 1).real, both(0, 1), T[0], T[1]
 
-    def both(a: int, b: int) -> Complexes:
-        """<r_a conj r_b> for polarisations a and b."""
-        direct = before.front[a] * np.conj(before.front[b])
-        mixed = before.front[a] * np.conj(gain[b] * first[b]) + gain[a] * first[a] * np.conj(before.front[b])
-        spread_out = (1 + further[a] + np.conj(further[b])) / (1 - trip[a] * np.conj(trip[b]) * np.square(fade))
-        return np.asarray(direct + mixed * fade + gain[a] * np.conj(gain[b]) * np.square(fade) * spread_out)
-
-    inside = 1 - np.square(np.abs(trip)) * np.square(fade)
-    T = before.T * behind.T * np.sqrt(fade) * (1 + 2 * further.real) / inside
-    return both(0, 0).real, both(1, 1).real, both(0, 1), T[0], T[1]
-
-
-def _with_touching(
-    part: Powers,
-    media: Sequence[Array],
-    depths: Sequence[Floats],
-    theta: Floats,
-    wavelength: Floats,
-    layer: int,
-    share: Floats,
-) -> Powers:
-    """``part`` where the layer is open, and the layers without it on the share that touches."""
-    if not np.any(share > 1e-9):
-        return part
-    closed = [np.zeros_like(depth) if at == layer else depth for at, depth in enumerate(depths)]
-    contact = reflectance(media, closed, theta, wavelength)
-    Rs, Rp, X, Ts, Tp = ((1 - share) * a + share * b for a, b in zip(part, contact, strict=True))
-    return Rs, Rp, X, Ts, Tp
+    def _touched(self, part: Powers) -> Powers:
+        """``part`` where the layer is open, and the layers without it on the share that touches."""
+        share = self.touching
+        if not np.any(share > CLIPPED):
+            return part
+        closed = list(self.depths)
+        closed[self.layer] = np.zeros_like(self.mean)
+        contact = reflectance(self.media, closed, self.theta, self.wavelength)
+        Rs, Rp, X, Ts, Tp = ((1 - share) * a + share * b for a, b in zip(part, contact, strict=True))
+        return Rs, Rp, X, Ts, Tp
 
 
 def _phase_sums(
