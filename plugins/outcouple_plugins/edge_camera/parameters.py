@@ -50,7 +50,7 @@ class Lens(Section):
     y: float = quantity("0 mm", "length", ge="-5 m", le="5 m", describe="where the axis meets the plate")
     transmission: float = quantity("90 %", "ratio", gt="0 %", le="100 %", describe="of the lens")
     filter_index: float = quantity(
-        1.8, "number", ge=1, le=3, describe="effective index of an interference filter, whose band moves to blue off axis",
+        1.8, "number", ge=1, le=3, describe="effective index of an interference filter, bluer off axis",
         reference="1.5 to 2.1, from memory",
     )  # fmt: skip
 

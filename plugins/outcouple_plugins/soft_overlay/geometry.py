@@ -9,6 +9,7 @@ from typing import ClassVar
 import numpy as np
 
 from outcouple.contact.cover import Cover
+from outcouple.contact.mechanics import plane_strain_modulus
 from outcouple.geometry import (
     Curve,
     FailureRow,
@@ -37,6 +38,8 @@ FRONT = "front"
 FINE_PITCH = 30e-6
 """Pitch below which a texture turns light by more than a degree or so: it is no longer a mere mean of patches."""
 SOFT_SLOPE = 1.0
+SATURATED = 1.5
+"""Pressure over contact modulus and slope at which a random texture touches to 99.7 %."""
 
 
 class SoftOverlay(EdgeCamera):
@@ -76,10 +79,11 @@ class SoftOverlay(EdgeCamera):
         return None
 
     def response(self, setting: Setting) -> ResponseAxis:
-        """Reading against pressure, up to the highest that a state states."""
-        states = [state.expect for state in setting.p.states.values() if isinstance(state.expect, float)]
-        top = max([*states, 1e3])
-        return ResponseAxis("pressure on the skin", "pressure", "kPa", 0.0, 1.1 * top, "parameter", self.measurand)
+        """Reading against pressure, up to where nearly all of the skin touches."""
+        overlay = setting.p.overlay
+        modulus = plane_strain_modulus(modulus=overlay.modulus, poisson=overlay.poisson)
+        full = SATURATED * float(setting.spread(modulus * rms_slope(overlay.height, overlay.pitch))[0])
+        return ResponseAxis("pressure on the skin", "pressure", "kPa", 0.0, full, "parameter", self.measurand)
 
     def views(self, setting: Setting) -> tuple[View, ...]:
         """Plan, and the cross-section with the skin on the plate."""
