@@ -13,7 +13,7 @@ from outcouple.evaluation.curves import POINTS, continuous_curve
 from outcouple.evaluation.measures import measure_common
 from outcouple.evaluation.overlay import Samples, check_samples, samples_count
 from outcouple.evaluation.signals import trial_share
-from outcouple.evaluation.table import Table, tabulate
+from outcouple.evaluation.table import StateRow, Table, tabulate
 from outcouple.geometry import ContinuousCurve, MetricValue, Missing, Results
 from outcouple.metrics import metrics_of
 from outcouple.notes import Note, merge_notes
@@ -26,6 +26,8 @@ ELEMENTS = 2_000_000
 """Array elements a chunk may hold; keeps the peak of a batch near 300 MB whatever its length."""
 SAMPLES = 256
 """Samples a chunk may hold: beyond, arrays only grow, and nothing gets faster."""
+SPREAD = 8
+"""What the average over a film's thickness costs, in evaluations."""
 
 
 @dataclass(frozen=True)
@@ -80,7 +82,15 @@ def sample_elements(table: Table) -> int:
     channels = max(light.hits.shape[1], light.length.shape[1])
     nodes = max(len(row.laid.weights) for row in table.rows)
     along = POINTS if any(isinstance(row.laid.state.expect, float) for row in table.rows) else 1
+    if any(_spreads(row) for row in table.rows):
+        along *= SPREAD
     return along * int(nodes * light.rays * max(channels, len(light.faces)) + light.reach[0].size)
+
+
+def _spreads(row: StateRow) -> bool:
+    """True where a film's thickness is averaged over a distribution."""
+    covers = row.result.covers.values()
+    return any(film.spread != "none" for cover in covers for patch in cover.patches for film in patch.films)
 
 
 def _signals(table: Table) -> dict[str, Floats]:

@@ -19,7 +19,7 @@ __all__ = ["POINTS", "continuous_curve", "response_curve"]
 
 Floats = NDArray[np.float64]
 
-POINTS = 121
+POINTS = 81
 TRIAL = "(trial liquid)"
 DEAR = 1_000_000
 """Array elements beyond which the light of a response curve is not laid out anew for every index."""
