@@ -134,7 +134,7 @@ def _drawn(results: Results, state: StateResult, sample: int, x: Floats, y: Floa
     rows, absorption = _one(rows_shared(results), sample), _absorption(results, sample)
     taken = _taken(results, state, sample)
     drawn = [_strength(flux, rows, taken, absorption) for _, flux in _blocks(rows, x, y)]
-    return np.concatenate(drawn) * _gathered(results, sample, x, y)
+    return np.asarray(np.concatenate(drawn) * _gathered(results, sample, x, y))
 
 
 def _field(results: Results, state: StateResult, sample: int, margin: Floats | float) -> _Field:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
+from dataclasses import replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -158,8 +159,15 @@ def _contact_index(state: StateResult) -> Floats:
 
 
 def _leakable(results: Results) -> Found:
-    rows = rows_shared(results)
-    return _over(results, lambda state: leakable_share(rows.fan, index=rows.port.index, contact=_contact_index(state)))
+    rows, spread = rows_shared(results), results.setting.spread
+    found = {
+        state.name: spread(leakable_share(rows.fan, index=rows.port.index, contact=_contact_index(state)))
+        for state in results.states
+        if "spot" in state.covers
+    }
+    must = {state.name: found[state.name] for state in touches(results) if state.name in found}
+    worst = by_state(must, results.setting.samples)
+    return replace(worst, states=found) if isinstance(worst, MetricValue) else worst
 
 
 def _scatterer(state: StateResult) -> str | None:
