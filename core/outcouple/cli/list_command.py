@@ -88,7 +88,7 @@ def _touching(**_: Any) -> Rows:
         {
             "contact": preset.what,
             "what it is": preset.summary,
-            "numbers": ", ".join(f"{leaf.path[-1]} ({leaf.default_text})" for leaf in leaves(preset)) or "-",
+            "numbers": ", ".join(f"{leaf.path[-1]} ({leaf.default_text or 'unset'})" for leaf in leaves(preset)) or "-",
         }
         for preset in build_host().touching.values()
     ]

@@ -220,7 +220,7 @@ def _materials_known(preset: Touching, path: Path, parts: Parts) -> bool:
     for leaf in leaves(type(preset)):
         if leaf.what == "material" and len(leaf.path) == 1:
             value = getattr(preset, leaf.path[0])
-            if not parts.catalogue.knows(value):
+            if value is not None and not parts.catalogue.knows(value):
                 parts.wrong((*path, *leaf.path), value, *parts.catalogue.unknown(value))
                 good = False
     for cover in type(preset).build(preset).values() if good else ():
