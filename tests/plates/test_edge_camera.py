@@ -11,7 +11,8 @@ import pytest
 from outcouple import evaluate, load_design
 from outcouple.design import design_from_mapping
 from outcouple.evaluation import evaluate_batch
-from outcouple.evaluation.batch import results_of
+from outcouple.evaluation.batch import results_of as joined
+from outcouple.evaluation.table import tabulate
 from outcouple.testing import check_geometry
 from outcouple_plugins.edge_camera import EdgeCamera
 from outcouple_plugins.edge_camera.lens import pixel_side, sight_of
@@ -36,6 +37,10 @@ def edited(design, **sections):
     for section, keys in sections.items():
         raw[section] = {**raw.get(section, {}), **keys} if isinstance(keys, dict) else keys
     return design_from_mapping(raw)
+
+
+def results_of(design):
+    return joined(tabulate(design), None)
 
 
 def traced_design(plate, discs, **plate_keys):
@@ -265,8 +270,7 @@ def test_maps_agree_with_the_object_moved_there():
     drawn = _drawn(here, finger, 0, np.array([0.0, -0.45]), np.array([0.0, 0.2]))
     rest = here.expecting("absent")[0].signal[0, 0]
     rises = [
-        next(s for s in results.states if s.name == "finger").signal[0, 0]
-        - results.expecting("absent")[0].signal[0, 0]
+        next(s for s in results.states if s.name == "finger").signal[0, 0] - results.expecting("absent")[0].signal[0, 0]
         for results in (here, there)
     ]
     assert rest > 0

@@ -95,7 +95,7 @@ class EdgeCamera(Geometry):
         return surfaces_of(results)
 
     def curve(self, results: Results) -> Curve | None:
-        """Radiance against the place along the plate's middle: how even the light is."""
+        """Reading against the place along the plate: how even the light is."""
         from outcouple_plugins.edge_camera.maps import middle_line
 
         return middle_line(results)

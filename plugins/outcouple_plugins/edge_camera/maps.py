@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from outcouple.evaluation.transport import mean_power
 from outcouple.geometry import Curve, MetricValue, Missing, Results, StateResult, Surface
+from outcouple.readout.camera_reader import camera_of
 from outcouple.readout.emitted import emitted_power
 from outcouple_plugins.edge_camera.lens import pixel_side, sight_of
 from outcouple_plugins.edge_camera.light import SPOT, hop_of, strips_of
@@ -19,6 +20,7 @@ from outcouple_plugins.edge_camera.measures import (
     centroid_error,
     face_irradiance,
     object_pixels,
+    own_electrons,
     place_of,
     rise,
     rows_shared,
@@ -127,7 +129,7 @@ def _gathered(results: Results, sample: int, x: Floats, y: Floats) -> Floats:
             for a, b in zip(x, y, strict=True)
         ]
         return np.asarray(whole) / middle
-    return np.asarray(sight_of(setting, x, y).lambertian)
+    return sight_of(setting, x, y).lambertian
 
 
 def _drawn(results: Results, state: StateResult, sample: int, x: Floats, y: Floats) -> Floats:
@@ -217,7 +219,7 @@ def surfaces_of(results: Results) -> tuple[Surface, ...]:
 
 
 def middle_line(results: Results) -> Curve | None:
-    """Rise by the first object along the plate's middle line, over its rise at its own place."""
+    """Reading under the first object moved along the plate, up to where the pixel is full."""
     states = [state for state in touches(results) if state.place is not None]
     if not states or background(results) is None:
         return None
@@ -226,14 +228,19 @@ def middle_line(results: Results) -> Curve | None:
     half = float(results.setting.spread(results.setting.p.plate.width)[0]) / 2 - float(diameter[0]) / 2
     x = np.linspace(-half, half, POINTS)
     drawn = _drawn(results, state, 0, np.concatenate([x0, x]), np.concatenate([y0, 0 * x + y0]))
-    here = float(rise(results, state)[0])
-    values = drawn[1:] / drawn[0] * here if drawn[0] > 0 else 0 * x
+    own = float(own_electrons(results, state)[0])
+    reading = float(state.signal[0, 0])
+    rest = background(results)
+    assert rest is not None
+    beside = reading - own if reading > own else float(rest.signal[0, 0])
+    gain = drawn[1:] / drawn[0] if drawn[0] > 0 else 0 * x
+    values = np.minimum(beside + own * gain, float(camera_of(state.setting.p).capacity()[0, 0]))
     return Curve(
         name="response",
-        label=f"rise of the pixel's reading under {state.name!r} along the plate",
+        label=f"reading under {state.name!r} along the plate",
         axes=(("place along x", "mm", x),),
         values=values,
         kind="electrons",
         unit="ke-",
-        marks=((state.name, float(x0[0]), here),),
+        marks=((state.name, float(x0[0]), reading),),
     )

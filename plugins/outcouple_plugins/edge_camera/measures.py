@@ -11,7 +11,8 @@ from numpy.typing import NDArray
 from outcouple.contact.cover import Drops
 from outcouple.contact.diffuse import escape_share
 from outcouple.geometry import MetricValue, Missing, Results, StateResult
-from outcouple.readout.emitted import emitted_power
+from outcouple.readout.constants import LIGHT_SPEED, PLANCK
+from outcouple.readout.emitted import emitted_power, passed, peak
 from outcouple_plugins.edge_camera.lens import Sight, pixel_side, sight_of
 from outcouple_plugins.plate.fan import leakable_share
 from outcouple_plugins.plate.flux import Flux, Rows, flux_at, rows_of
@@ -25,6 +26,7 @@ __all__ = [
     "face_irradiance",
     "measured",
     "object_pixels",
+    "own_electrons",
     "place_of",
     "rise",
     "rows_shared",
@@ -52,6 +54,15 @@ def rise(results: Results, state: StateResult) -> Floats:
     """What the state adds to the untouched reading [electrons], (S,)."""
     rest = background(results)
     return np.asarray(state.signal[:, 0] - (0.0 if rest is None else rest.signal[:, 0]))
+
+
+def own_electrons(results: Results, state: StateResult) -> Floats:
+    """Electrons that a touch's own light brings, however full the pixel is, (S,); line taken at its peak."""
+    rest, p = background(results), state.setting.p
+    share = state.share[:, 0] - (0.0 if rest is None else rest.share[:, 0])
+    lit = p.readout.exposure if p.readout.strobe is None else np.minimum(p.readout.strobe, p.readout.exposure)
+    per_joule = p.readout.quantum_efficiency * peak(p) / (PLANCK * LIGHT_SPEED)
+    return np.asarray(share * emitted_power(p) * passed(p) * lit * per_joule)
 
 
 def rows_shared(results: Results) -> Rows:
