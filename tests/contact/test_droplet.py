@@ -45,7 +45,7 @@ def test_table_against_fresh_traces() -> None:
     alike = np.abs(places[:, 0] / places[:, 1] - 1) < 0.1
     assert np.median(largest) < 0.001
     assert np.quantile(largest, 0.98) < 0.025
-    assert largest[~alike].max() < 0.03, places[~alike][largest[~alike].argmax()]
+    assert largest[~alike].max() < 0.04, places[~alike][largest[~alike].argmax()]
     assert largest.max() < 0.1, places[largest.argmax()]
 
 

@@ -145,8 +145,8 @@ def answer_notes(cover: Cover) -> tuple[Note, ...]:
                 Note(
                     "drops-as-caps",
                     "Drops answer as spherical caps of one contact angle that cover their patch; what they send back "
-                    "is turned and counts only within the acceptance of the read-out. Shares hold to about 0.03; to 0.1 "
-                    "where guide and drop hardly differ in index.",
+                    "is turned and counts only within the acceptance of the read-out. Shares hold to about 0.04, "
+                    "to 0.1 where guide and drop hardly differ in index.",
                     severity="info",
                 )
             )
