@@ -33,6 +33,7 @@ class Job:
     owner   the browser tab it belongs to; nobody else can see or cancel it
     parts   what it has found so far, newest last; the last one is the whole answer when it is done
     why     sentences for the user where it failed
+    replaced  True where a newer job of the same owner and task took over
     """
 
     number: str
@@ -44,6 +45,7 @@ class Job:
     step: str = ""
     parts: list[Any] = field(default_factory=list)
     why: tuple[str, ...] = ()
+    replaced: bool = False
     started: float = field(default_factory=time.monotonic)
     cancelled: threading.Event = field(default_factory=threading.Event)
 
@@ -73,8 +75,10 @@ class Jobs:
         job = Job(next(self._names), owner, task, arguments)
         with self._ready:
             for other in self._jobs.values():
-                if other.owner == owner and other.task == task and not other.over:
-                    self._cancel(other)
+                if other.owner == owner and other.task == task:
+                    other.replaced = True
+                    if not other.over:
+                        self._cancel(other)
             self._jobs[job.number] = job
             self._forget()
             while len(self._threads) < self._workers:
@@ -88,6 +92,11 @@ class Jobs:
         """The owner's job of that number."""
         job = self._jobs.get(number or "")
         return job if job is not None and job.owner == owner else None
+
+    def current(self, number: str | None, owner: str) -> Job | None:
+        """The owner's job of that number, None where a newer one took over: what it says no longer counts."""
+        job = self.find(number, owner)
+        return None if job is None or job.replaced else job
 
     def cancel(self, number: str | None, owner: str) -> bool:
         """Cancel the owner's job; False where there is none or it is over."""

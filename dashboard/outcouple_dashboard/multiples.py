@@ -8,6 +8,7 @@ from typing import Any
 
 from outcouple.geometry import Curve
 from outcouple.quantities import symbol
+from outcouple.report.figures import surface_figure
 from outcouple.report.figures.look import Look, axis, base_layout, best_unit, wrapped
 
 __all__ = ["responses_picture"]
@@ -28,8 +29,8 @@ def responses_picture(curves: Sequence[tuple[str, Curve]], look: Look) -> dict[s
     layout["annotations"] = []
     first = curves[0][1]
     unit, _ = best_unit([max(float(curve.values.max()) for _, curve in curves)], first.kind)
-    label, x_unit, _ = first.axes[0]
-    titles = (f"{label} ({symbol(x_unit)})" if x_unit else label, f"reading ({symbol(unit)})")
+    single = [surface_figure(curve, look=look) for _, curve in curves]
+    titles = (single[0]["layout"]["xaxis"]["title"]["text"], f"reading ({symbol(unit)})")
     data = []
     for at, (name, curve) in enumerate(curves):
         suffix = "" if at == 0 else str(at + 1)
@@ -38,7 +39,7 @@ def responses_picture(curves: Sequence[tuple[str, Curve]], look: Look) -> dict[s
             {
                 "type": "scatter",
                 "mode": "lines",
-                "x": curve.axes[0][2].tolist(),
+                "x": single[at]["data"][0]["x"],
                 "y": best_unit(curve.values.tolist(), curve.kind, unit)[1],
                 "line": {"color": look.ramp[4], "width": 2.2},
                 "hovertemplate": "%{x:.4g}: %{y:.4g}<extra></extra>",

@@ -253,7 +253,8 @@ def _caution(note: Note) -> Any:
 
 
 def metrics_table(outcome: Outcome) -> Any:
-    """Every metric with its meaning."""
+    """Every metric with its meaning, those that have a value first."""
+    order = {"value": 0, "open": 1, "not applicable": 2}
     rows = [
         (
             metric.label,
@@ -261,7 +262,7 @@ def metrics_table(outcome: Outcome) -> Any:
             metric.at if metric.value is not None else plain(metric.why),
             metric.meaning,
         )
-        for metric in outcome.metrics.values()
+        for metric in sorted(outcome.metrics.values(), key=lambda one: order[one.status])
     ]
     return table(("metric", "value", "where", "meaning"), rows, numbers=(1,), caption="Metrics")
 

@@ -284,3 +284,19 @@ def test_a_link_to_a_sweep_brings_it_back(calls, tank):
     assert (ends["vary-x-from.value"], ends["vary-x-to.value"]) == ("1 %", "60 %")
     damaged = calls.fire("doc.data", "url", "search", {"url.search": f"?d={link_of(document(tank))}&v=[[["})
     assert damaged["vary-asked.data"] == {}
+
+
+def test_late_words_of_an_older_job_change_nothing(app, calls, tank):
+    tab = {"tab.data": "me"}
+    old = calls.fire("follow-job.data", "doc", "data", {"doc.data": document(tank), **tab})["follow-job.data"]
+    doc = document(tank.replace('base = "8 mm"', 'base = "9 mm"'))
+    new = calls.fire("follow-job.data", "doc", "data", {"doc.data": doc, **tab})["follow-job.data"]
+    late = {"follow-clock.n_intervals": 1, "follow-job.data": old, **tab}
+    assert "followed.data" not in calls.fire("followed.data", "follow-clock", "n_intervals", late)
+    job = app.desk.jobs.find(new, "me")
+    while not job.over:
+        job.cancelled.wait(0.02)
+    told = calls.fire("followed.data", "follow-clock", "n_intervals", {**late, "follow-job.data": new})
+    assert told["followed.data"] == [new, 2, True]
+    foreign = {**late, "follow-job.data": new, "tab.data": "somebody else"}
+    assert "followed.data" not in calls.fire("followed.data", "follow-clock", "n_intervals", foreign)

@@ -54,6 +54,8 @@ def test_the_newest_of_a_kind_takes_over(jobs, tank):
     until(lambda: old.over and new.over)
     assert (old.state, new.state) == ("cancelled", "done")
     assert new.parts[-1].metrics["worst_ratio"].values.shape == (3,)
+    assert jobs.current(old.number, "me") is None
+    assert jobs.current(new.number, "me") is new
 
 
 def test_nobody_touches_anothers_job(jobs):

@@ -145,7 +145,12 @@
 
       redraw: function () { relayout(); return keep(); },
       closeMessage: (clicks) => (clicks ? true : keep()),
-      hideStop: (off) => Boolean(off),
+
+      // A clock runs while the newest job has not said that it is over; late words of older jobs change nothing.
+      clock: function (job, seen) {
+        const off = !job || Boolean(seen && seen[0] === job && seen[2]);
+        return [off, off];
+      },
 
       readUpload: function (contents, name) {
         if (!contents) return keep();

@@ -29,7 +29,7 @@ from outcouple_dashboard.documents import MOST_PINS, document, pin_of
 from outcouple_dashboard.editing import say
 from outcouple_dashboard.multiples import responses_picture
 from outcouple_dashboard.pages.design import look_of
-from outcouple_dashboard.tags import aria, pressed
+from outcouple_dashboard.tags import aria, local, pressed
 
 __all__ = ["layout", "register", "variants_of"]
 
@@ -332,15 +332,14 @@ def _register_body(app: Dash, desk: Desk) -> None:
             return no_update, no_update
         rows = variants_of(desk, doc, pins or [])
         if len(rows) < 2:
-            return None, False
+            return None, ["", 0, True]
         names, texts = zip(*rows, strict=True)
         how = {"same": bool(same), "maps": bool(mapped)}
-        job = desk.jobs.start(tab, "compare", names=list(names), texts=list(texts), **how)
-        return job.number, False
+        return desk.jobs.start(tab, "compare", names=list(names), texts=list(texts), **how).number, no_update
 
     app.callback(
         Output("compare-job", "data"),
-        Output("compare-clock", "disabled"),
+        Output("compared", "data", allow_duplicate=True),
         Input("doc-compare", "data"),
         Input("pins", "data"),
         Input("compare-same", "checked"),
@@ -352,19 +351,17 @@ def _register_body(app: Dash, desk: Desk) -> None:
     def on_tick(_ticks: Any, _stop: Any, number: str | None, seen: Any, tab: str) -> Any:
         if ctx.triggered_id == "compare-stop":
             desk.jobs.cancel(number, tab)
-        job = desk.jobs.find(number, tab)
+        job = desk.jobs.current(number, tab)
         if job is None:
-            return ["", 0, True], True, "", True
+            return no_update, ""
         over = job.over or job.cancelled.is_set()
         new = [number, len(job.parts), over]
         told = " ".join(changes.plain_mistake(UserMistake(*job.why))) if over else f"Computing: {job.step or '…'}"
-        return no_update if new == seen else new, over, told, over
+        return no_update if new == seen else new, told
 
     app.callback(
         Output("compared", "data"),
-        Output("compare-clock", "disabled", allow_duplicate=True),
         Output("compare-step", "children"),
-        Output("compare-stop", "hidden"),
         Input("compare-clock", "n_intervals"),
         Input("compare-stop", "n_clicks"),
         State("compare-job", "data"),
@@ -372,6 +369,15 @@ def _register_body(app: Dash, desk: Desk) -> None:
         State("tab", "data"),
         prevent_initial_call=True,
     )(on_tick)
+
+    local(
+        app,
+        "clock",
+        Output("compare-clock", "disabled"),
+        Output("compare-stop", "hidden"),
+        Input("compare-job", "data"),
+        Input("compared", "data"),
+    )
 
     def on_compared(compared: Any, theme: str | None, tab: str) -> Any:
         number, _, over = compared or ["", 0, True]

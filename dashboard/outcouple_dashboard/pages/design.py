@@ -305,42 +305,36 @@ def _register_follow(app: Dash, desk: Desk) -> None:
     def on_change(doc: Any, tab: str) -> Any:
         try:
             if not doc or not desk.design(doc["text"]):
-                return no_update, True
+                return no_update
         except UserMistake:
-            return None, True
+            return None
         if desk.complete.peek(doc["text"]):
-            return None, True
-        return desk.jobs.start(tab, "follow", text=doc["text"]).number, False
+            return None
+        return desk.jobs.start(tab, "follow", text=doc["text"]).number
 
-    app.callback(
-        Output("follow-job", "data"),
-        Output("follow-clock", "disabled"),
-        Input("doc", "data"),
-        State("tab", "data"),
-        prevent_initial_call=True,
-    )(on_change)
+    app.callback(Output("follow-job", "data"), Input("doc", "data"), State("tab", "data"), prevent_initial_call=True)(
+        on_change
+    )
 
     def on_tick(_ticks: int, _stop: Any, number: str | None, followed: Any, tab: str) -> Any:
         if ctx.triggered_id == "follow-stop":
             desk.jobs.cancel(number, tab)
-        job = desk.jobs.find(number, tab)
+        job = desk.jobs.current(number, tab)
         if job is None:
-            return no_update, True, "", True
+            return no_update, "", True
         if job.parts:
             desk.whole.put(job.arguments["text"], job.parts[-1])
         if job.state == "done":
             desk.complete.put(job.arguments["text"], True)
-        over = job.over or job.cancelled.is_set()
-        state = "cancelled" if job.cancelled.is_set() else job.state
-        told = {"failed": " ".join(job.why), "cancelled": "Stopped; what is open stays open."}.get(state, "")
-        if not over:
+        stopped = job.cancelled.is_set()
+        told = "Stopped; what is open stays open." if stopped else " ".join(job.why)
+        if not job.over and not stopped:
             told = f"Computing: {job.step or 'waiting for a free worker'}…"
-        seen = [number, len(job.parts), over]
-        return no_update if seen == followed else seen, over, told, not told
+        seen = [number, len(job.parts), job.over or stopped]
+        return no_update if seen == followed else seen, told, not told
 
     app.callback(
         Output("followed", "data"),
-        Output("follow-clock", "disabled", allow_duplicate=True),
         Output("follow-step", "children"),
         Output("follow-bar", "hidden"),
         Input("follow-clock", "n_intervals"),
@@ -353,7 +347,9 @@ def _register_follow(app: Dash, desk: Desk) -> None:
 
     local(
         app,
-        "hideStop",
+        "clock",
+        Output("follow-clock", "disabled"),
         Output("follow-stop", "hidden"),
-        Input("follow-clock", "disabled"),
+        Input("follow-job", "data"),
+        Input("followed", "data"),
     )

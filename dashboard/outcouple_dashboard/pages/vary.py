@@ -319,20 +319,18 @@ def _register_pickers(app: Dash, desk: Desk) -> None:
 def _register_job(app: Dash, desk: Desk) -> None:
     def on_setup(doc: Any, x0: str, x1: str, y0: str, y1: str, metric: str | None, x: Any, y: Any, tab: str) -> Any:
         if not doc or not x or not x0 or not metric or (y and not y0):
-            return no_update, no_update, no_update
+            return no_update
         try:
             design = desk.design(doc["text"])
             axes = axes_of(design, [(x, x0, x1), (y, y0, y1)])
         except UserMistake:
-            return no_update, no_update, no_update
+            return no_update
         if not axes:
-            return no_update, no_update, no_update
-        return desk.jobs.start(tab, "vary", text=doc["text"], axes=axes, metric=metric).number, False, ""
+            return no_update
+        return desk.jobs.start(tab, "vary", text=doc["text"], axes=axes, metric=metric).number
 
     app.callback(
         Output("vary-job", "data"),
-        Output("vary-clock", "disabled"),
-        Output("vary-said", "children"),
         Input("doc-vary", "data"),
         Input("vary-x-from", "value"),
         Input("vary-x-to", "value"),
@@ -345,42 +343,54 @@ def _register_job(app: Dash, desk: Desk) -> None:
         prevent_initial_call=True,
     )(on_setup)
 
-    def on_tick(_ticks: Any, _stop: Any, number: str | None, tab: str) -> Any:
+    def on_tick(_ticks: Any, _stop: Any, number: str | None, seen: Any, tab: str) -> Any:
         if ctx.triggered_id == "vary-stop":
             desk.jobs.cancel(number, tab)
-        job = desk.jobs.find(number, tab)
+        job = desk.jobs.current(number, tab)
         if job is None:
-            return no_update, True, 0, "", True, no_update
-        if job.cancelled.is_set():
-            return no_update, True, 0, "", True, "Stopped."
-        if not job.over:
-            return no_update, False, 100 * job.share, job.step or "waiting for a free worker", False, no_update
-        if job.state == "failed":
-            return no_update, True, 0, "", True, " ".join(changes.plain_mistake(UserMistake(*job.why)))
-        return number, True, 100, "", True, ""
+            return (no_update,) * 5
+        stopped = job.cancelled.is_set()
+        new = [number, len(job.parts), job.over or stopped]
+        told = "Stopped." if stopped else " ".join(changes.plain_mistake(UserMistake(*job.why)))
+        step = "" if new[2] else job.step or "waiting for a free worker"
+        return no_update if new == seen else new, 100 * job.share, step, not step, told
 
     app.callback(
         Output("vary-seen", "data"),
-        Output("vary-clock", "disabled", allow_duplicate=True),
         Output("vary-share", "value"),
         Output("vary-step", "children"),
         Output("vary-bar", "hidden"),
-        Output("vary-said", "children", allow_duplicate=True),
+        Output("vary-said", "children"),
         Input("vary-clock", "n_intervals"),
         Input("vary-stop", "n_clicks"),
         State("vary-job", "data"),
+        State("vary-seen", "data"),
         State("tab", "data"),
         prevent_initial_call=True,
     )(on_tick)
 
+    local(
+        app,
+        "clock",
+        Output("vary-clock", "disabled"),
+        Output("vary-stop", "hidden"),
+        Input("vary-job", "data"),
+        Input("vary-seen", "data"),
+    )
+
+
+def swept(desk: Desk, seen: Any, tab: str) -> tuple[Sweep, str] | None:
+    """(sweep, metric) of what a tab has seen last; None where there is none yet."""
+    job = desk.jobs.find(seen[0] if seen else None, tab)
+    return (job.parts[-1], job.arguments["metric"]) if job is not None and job.parts else None
+
 
 def _register_result(app: Dash, desk: Desk) -> None:
-    def on_seen(number: str | None, theme: str | None, doc: Any, tab: str) -> Any:
-        job = desk.jobs.find(number, tab)
-        if job is None or not job.parts or not doc:
+    def on_seen(seen: Any, theme: str | None, doc: Any, tab: str) -> Any:
+        last = swept(desk, seen, tab)
+        if last is None or not doc:
             return (no_update,) * 8
-        found: Sweep = job.parts[-1]
-        metric = job.arguments["metric"]
+        found, metric = last
         figure = sweep_picture(found, metric, present_of(desk.design(doc["text"]), found), look_of(theme))
         columns, rows = points_of(found, metric)
         names = " and ".join(one.name for one in found.axes)
@@ -404,17 +414,17 @@ def _register_result(app: Dash, desk: Desk) -> None:
         prevent_initial_call=True,
     )(on_seen)
 
-    def on_point(click: Any, rows: Any, number: str | None, tab: str) -> Any:
-        job = desk.jobs.find(number, tab)
+    def on_point(click: Any, rows: Any, seen: Any, tab: str) -> Any:
+        last = swept(desk, seen, tab)
         if ctx.triggered_id == "vary-seen":
             return None, UNPICKED, True
-        if job is None or not job.parts:
+        if last is None:
             return no_update, no_update, no_update
-        found: Sweep = job.parts[-1]
+        found, metric = last
         at = rows[0]["at"] if ctx.triggered_id == "vary-points" and rows else clicked_at(found, click)
         if at is None:
             return no_update, no_update, no_update
-        point = picked_at(found, at, job.arguments["metric"])
+        point = picked_at(found, at, metric)
         return point["values"], point["told"], False
 
     app.callback(
