@@ -3,13 +3,16 @@
 from __future__ import annotations
 
 import numpy as np
+from numpy.typing import NDArray
 
 from outcouple.geometry import FailureRow, MetricValue, Results, Setting
 from outcouple.notes import Note
-from outcouple_plugins.edge_camera.lens import pixel_side
+from outcouple_plugins.edge_camera.lens import pixel_side, sight_of
 from outcouple_plugins.edge_camera.measures import MEASURES
 
 __all__ = ["failure_rows", "remarks_on", "setting_notes"]
+
+Floats = NDArray[np.float64]
 
 
 def remarks_on(results: Results) -> tuple[Note, ...]:
@@ -82,7 +85,53 @@ def setting_notes(setting: Setting) -> tuple[Note, ...]:
             "Emitters along edges are taken as unpolarised.",
             where=np.full(setting.samples, p.emitter.polarization != "none"),
         ),
+        *_camera_notes(setting),
     )
+
+
+def _camera_notes(setting: Setting) -> tuple[Note, ...]:
+    """What the camera's place and the room around the plate bring with them."""
+    p = setting.p
+    return (
+        Note(
+            "filter-shifts-off-axis",
+            "Towards the corners of the field the filter's band moves to the blue and passes less than half of the "
+            "line. A wider filter, or one centred further to the red, evens it out.",
+            trigger="line through the filter at the field's farthest corner below half of that on the axis",
+            where=sight_of(setting, *_farthest_corner(setting)).shifted < 0.5,
+        ),
+        Note(
+            "palm-in-its-own-shade",
+            "The camera looks at the shaded palm while the sun lights the back of the hand: outside.lit says what "
+            "reaches the palm from the sky beside and through the hand. Set it state by state.",
+            severity="info",
+            decides="a measurement on site",
+            where=np.full(setting.samples, p.environment.ambient == "sun"),
+        ),
+        Note(
+            "trapped-light-not-followed",
+            "What a touch sends back and the back face keeps travels on in the plate; the little it adds to other "
+            "places is left out.",
+            severity="info",
+        ),
+        Note(
+            "broken-plate-bares-lamps",
+            "A broken or lifted plate no longer guides the lamps' light: it leaves the rows openly, towards eyes.",
+            trigger="lamps along the edges",
+            decides="an assessment of the finished product after the IEC 62471 family",
+            where=setting.spread(p.emitter.power) > 0,
+        ),
+    )
+
+
+def _farthest_corner(setting: Setting) -> tuple[Floats, Floats]:
+    """Corner of the field farthest from the lens's axis, (S,) each."""
+    p, spread = setting.p, setting.spread
+    x, y = (
+        -np.copysign(np.maximum(spread(side) / 2 - spread(p.field.margin), 0.0), spread(axis))
+        for side, axis in ((p.plate.width, p.lens.x), (p.plate.height, p.lens.y))
+    )
+    return x, y
 
 
 def failure_rows(setting: Setting) -> tuple[FailureRow, ...]:
