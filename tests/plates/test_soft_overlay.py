@@ -82,8 +82,8 @@ def test_smear_is_the_half_width_of_boussinesqs_pressure():
 
 
 def test_resting_leak_agrees_with_an_own_sum_over_gaps_and_directions():
-    """Computed independently: tunnelling through an air gap by the slab formula, gaps even from 0 to pi h / 2, air-coupled
-    hemisphere in the plate."""
+    """Computed independently: tunnelling through an air gap by the slab formula, gaps even from 0 to pi h / 2,
+    air-coupled hemisphere in the plate."""
     n, skin_index, wavelength, height = 1.51, 1.41, 850e-9, 8e-6
     u, v = (grid.ravel() for grid in np.meshgrid((np.arange(200) + 0.5) / 200, (np.arange(200) + 0.5) / 200))
     # Lambertian outside about the edge's normal x; inside the tangential parts shrink by the index.

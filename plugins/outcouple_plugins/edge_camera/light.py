@@ -13,7 +13,7 @@ from outcouple.light import Light, Relight, Spot, Strips
 from outcouple_plugins.edge_camera.lens import pixel_side, sight_of
 from outcouple_plugins.plate.flux import Flux, Rows, flux_at, rows_of
 
-__all__ = ["FACES", "HAZE", "SPOT", "camera_light", "camera_ways", "hop_of", "strips_of"]
+__all__ = ["FACES", "HAZE", "SPOT", "STRIP_WEIGHTS", "camera_light", "camera_ways", "hop_of", "strips_of"]
 
 Floats = NDArray[np.float64]
 
@@ -21,6 +21,9 @@ FACES = ("front", "back", "rim", "haze", "spot")
 HAZE, SPOT = FACES.index("haze"), FACES.index("spot")
 STRIPS = 9
 """Strips across an object."""
+_TURN = (np.arange(STRIPS) + 0.5) * np.pi / STRIPS
+STRIP_HALVES, STRIP_WEIGHTS = np.sin(_TURN), np.pi / (2 * STRIPS) * np.sin(_TURN)
+"""Length of each strip over a disc's diameter, and its share of the light: even in angle, exact for the disc's area."""
 
 
 def camera_light(setting: Setting) -> Light:
@@ -56,8 +59,7 @@ def _crossing_share(light: Light, back: Relight, bundles: int) -> Floats:
 
 def _weighted(weight: Floats, diameter: Floats, x: Floats, y: Floats) -> Strips:
     lengths = strips_of(diameter, x, y).lengths
-    each = np.broadcast_to(weight / STRIPS, (*weight.shape[:3], STRIPS))
-    return Strips(np.repeat(lengths, weight.shape[2], axis=2), each)
+    return Strips(np.repeat(lengths, weight.shape[2], axis=2), weight * STRIP_WEIGHTS)
 
 
 def bundles_of(light: Light, rows: Rows) -> int:
@@ -72,9 +74,8 @@ def hop_of(rows: Rows, bundles: int) -> Floats:
 
 
 def strips_of(diameter: Floats, x: Floats, y: Floats) -> Strips:
-    """Equal strips across a disc that the light crosses."""
-    middle = (np.arange(STRIPS) + 0.5) / STRIPS * 2 - 1
-    return Strips((diameter[:, None] * np.sqrt(1 - middle**2))[:, None, None, :])
+    """Strips across a disc that the light crosses."""
+    return Strips((diameter[:, None] * STRIP_HALVES)[:, None, None, :], STRIP_WEIGHTS[None, None, None, :])
 
 
 def camera_ways(setting: Setting, rows: Rows, x: Floats, y: Floats, wide: Floats, *, round_area: bool = False) -> Light:

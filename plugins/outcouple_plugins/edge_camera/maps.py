@@ -13,7 +13,7 @@ from outcouple.geometry import Curve, MetricValue, Missing, Results, StateResult
 from outcouple.readout.camera_reader import camera_of
 from outcouple.readout.emitted import emitted_power
 from outcouple_plugins.edge_camera.lens import pixel_side, sight_of
-from outcouple_plugins.edge_camera.light import SPOT, hop_of, strips_of
+from outcouple_plugins.edge_camera.light import SPOT, STRIP_WEIGHTS, hop_of, strips_of
 from outcouple_plugins.edge_camera.measures import (
     background,
     by_state,
@@ -54,13 +54,35 @@ class _Field:
     error: Floats
 
 
-def _grid(results: Results, sample: int, margin: Floats | float) -> tuple[Floats, Floats]:
+def _grid(results: Results, sample: int) -> tuple[Floats, Floats]:
+    """Middles of the cells over the whole plate: along x, and along y."""
     p, spread = results.setting.p, results.setting.spread
-    inner = np.broadcast_to(margin, (results.setting.samples,))[sample]
-    width, height = (max(spread(side)[sample] - 2 * inner, 0.0) for side in (p.plate.width, p.plate.height))
-    x = ((np.arange(p.field.columns) + 0.5) / p.field.columns - 0.5) * width
-    y = ((np.arange(p.field.rows) + 0.5) / p.field.rows - 0.5) * height
+    x = ((np.arange(p.field.columns) + 0.5) / p.field.columns - 0.5) * spread(p.plate.width)[sample]
+    y = ((np.arange(p.field.rows) + 0.5) / p.field.rows - 0.5) * spread(p.plate.height)[sample]
     return x, y
+
+
+def _inside(results: Results, sample: int) -> NDArray[np.bool_]:
+    """Cells within the margin, (P,)."""
+    p, spread = results.setting.p, results.setting.spread
+    gx, gy = _grid(results, sample)
+    margin = spread(p.field.margin)[sample]
+    within = [
+        np.abs(middles) <= spread(side)[sample] / 2 - margin
+        for middles, side in ((gx, p.plate.width), (gy, p.plate.height))
+    ]
+    return np.asarray(within[1][:, None] & within[0][None, :]).ravel()
+
+
+def _cells(results: Results, sample: int) -> tuple[Floats, Floats, list[Flux]]:
+    """Every cell's x and y, and the light that crosses it, followed once for all maps."""
+    key = f"cells {sample}"
+    if key not in results.memo:
+        gx, gy = _grid(results, sample)
+        x, y = np.tile(gx, len(gy)), np.repeat(gy, len(gx))
+        results.memo[key] = x, y, _blocks(_one(rows_shared(results), sample), x, y)
+    found: tuple[Floats, Floats, list[Flux]] = results.memo[key]
+    return found
 
 
 def _one(rows: Rows, sample: int) -> Rows:
@@ -87,9 +109,8 @@ def _one(rows: Rows, sample: int) -> Rows:
     )  # fmt: skip
 
 
-def _blocks(rows: Rows, x: Floats, y: Floats) -> list[tuple[slice, Flux]]:
-    cuts = [slice(start, start + BLOCK) for start in range(0, len(x), BLOCK)]
-    return [(cut, flux_at(rows, x[cut], y[cut])) for cut in cuts]
+def _blocks(rows: Rows, x: Floats, y: Floats) -> list[Flux]:
+    return [flux_at(rows, x[at : at + BLOCK], y[at : at + BLOCK]) for at in range(0, len(x), BLOCK)]
 
 
 def _absorption(results: Results, sample: int) -> Floats:
@@ -109,7 +130,9 @@ def _taken(results: Results, state: StateResult, sample: int) -> Floats:
     lost: Floats = np.zeros((1, 1))
     for share, Rs, Rp in state.reply("spot", light.angle[:, : 2 * nodes, SPOT]):
         bounce = np.where(s_ray, Rs[:, None, :], Rp[:, None, :])
-        lost = lost + np.asarray(share).reshape(-1, 1) * np.mean(1 - mean_power(bounce, hits), axis=1)
+        lost = lost + np.asarray(share).reshape(-1, 1) * np.sum(
+            STRIP_WEIGHTS[:, None] * (1 - mean_power(bounce, hits)), axis=1
+        )
     return np.asarray(lost[min(sample, lost.shape[0] - 1)].reshape(2, nodes))
 
 
@@ -120,86 +143,92 @@ def _strength(flux: Flux, rows: Rows, taken: Floats, absorption: Floats) -> Floa
 
 
 def _gathered(results: Results, sample: int, x: Floats, y: Floats) -> Floats:
-    """Share the lens gets of what an object sends back, over that on the axis, (P,)."""
+    """Share the lens gets of a full Lambertian, (P,)."""
     setting = results.setting
     if setting.samples > 1:
-        middle = sight_of(setting, np.zeros(setting.samples), np.zeros(setting.samples)).lambertian[sample]
         whole = [
             sight_of(setting, np.full(setting.samples, a), np.full(setting.samples, b)).lambertian[sample]
             for a, b in zip(x, y, strict=True)
         ]
-        return np.asarray(whole) / middle
-    return sight_of(setting, x, y).lambertian
+        return np.asarray(whole)
+    lambertian: Floats = sight_of(setting, x, y).lambertian
+    return lambertian
 
 
-def _drawn(results: Results, state: StateResult, sample: int, x: Floats, y: Floats) -> Floats:
+def _drawn(
+    results: Results, state: StateResult, sample: int, x: Floats, y: Floats, light: list[Flux] | None = None
+) -> Floats:
+    """What an object at every place sends to its pixel, in one unit for all, (P,).
+
+    light  that crosses the places, where it is known already
+    """
     rows, absorption = _one(rows_shared(results), sample), _absorption(results, sample)
     taken = _taken(results, state, sample)
-    drawn = [_strength(flux, rows, taken, absorption) for _, flux in _blocks(rows, x, y)]
+    drawn = [_strength(flux, rows, taken, absorption) for flux in light or _blocks(rows, x, y)]
     return np.asarray(np.concatenate(drawn) * _gathered(results, sample, x, y))
 
 
-def _field(results: Results, state: StateResult, sample: int, margin: Floats | float) -> _Field:
-    """What the object would read over the grid; the noise grows with its own light's shot noise."""
-    gx, gy = _grid(results, sample, margin)
-    x, y = np.tile(gx, len(gy)), np.repeat(gy, len(gx))
+def _field(results: Results, state: StateResult, sample: int) -> _Field:
+    """What the object would read over the plate, a place of full pixels taken as if they were not."""
+    x, y, light = _cells(results, sample)
     diameter, x0, y0 = (part[sample : sample + 1] for part in place_of(results, state))
-    drawn = _drawn(results, state, sample, np.concatenate([x0, x]), np.concatenate([y0, y]))
-    gain = drawn[1:] / drawn[0] if drawn[0] > 0 else np.zeros(len(x))
+    own = _drawn(results, state, sample, x0, y0)[0]
+    gain = _drawn(results, state, sample, x, y, light) / own if own > 0 else np.zeros(len(x))
     here = rise(results, state)[sample]
     noise = np.broadcast_to(state.noise[:, 0], (results.setting.samples,))[sample]
-    # Only the signal's shot noise and the pixels' unevenness change; both are bounded by scaling the rise alone.
-    variance = np.maximum(noise**2 + (gain - 1) * here, (gain * here) / 2)
-    snr = gain * here / np.sqrt(np.maximum(variance, 1e-12))
+    # The shot noise of the object's own light grows and falls with it; the rest of the noise stays.
+    variance = np.maximum(noise**2 + (gain - 1) * here, np.maximum(gain * here, 1e-12))
+    snr = gain * here / np.sqrt(variance)
     pixels = object_pixels(results, place_of(results, state)[0])[sample]
     side = pixel_side(results.setting)[sample] * np.sqrt(float(results.setting.p.readout.pixels))
     return _Field(gain, snr, snr * np.sqrt(pixels), centroid_error(diameter, np.asarray(side), snr))
 
 
-def _shared(results: Results, state: StateResult, sample: int, margin: Floats | float, key: str) -> _Field:
-    name = f"field {state.name} {sample} {key}"
+def _shared(results: Results, state: StateResult, sample: int) -> _Field:
+    name = f"field {state.name} {sample}"
     if name not in results.memo:
-        results.memo[name] = _field(results, state, sample, margin)
+        results.memo[name] = _field(results, state, sample)
     found: _Field = results.memo[name]
     return found
 
 
 def measured_on_maps(names: Sequence[str], results: Results) -> dict[str, MetricValue | Missing]:
     """Those of ``names`` that need maps, over every sample and touch with a place."""
-    margin = results.setting.spread(results.setting.p.field.margin)
     states = [state for state in touches(results) if state.place is not None]
     found: dict[str, MetricValue | Missing] = {}
     if not states or background(results) is None:
         return dict.fromkeys(names, Missing("needs an object that must trigger and a state where nothing does"))
+    inside = [_inside(results, at) for at in range(results.setting.samples)]
+    if not all(np.any(one) for one in inside):
+        return dict.fromkeys(names, Missing("the margin leaves no field on the plate"))
     for name in names:
         area = max((one.area for one in results.requirements if one.metric == name), default=1.0)
         values = {}
         for state in states:
-            fields = [_shared(results, state, at, margin, "field") for at in range(results.setting.samples)]
-            values[state.name] = np.array([_worst(name, field, area) for field in fields])
+            each = [(_shared(results, state, at), cells) for at, cells in enumerate(inside)]
+            values[state.name] = np.array([_worst(name, field, cells, area) for field, cells in each])
         found[name] = by_state(values, results.setting.samples, highest=name == "worst_position_error")
     return found
 
 
-def _worst(name: str, field: _Field, area: float) -> float:
+def _worst(name: str, field: _Field, cells: NDArray[np.bool_], area: float) -> float:
     """The value that a share of the cells keeps."""
     cut = 1 - area
     if name == "uniformity":
-        most = float(np.max(field.gain))
-        return float(np.quantile(field.gain, cut)) / most if most > 0 else 0.0
+        most = float(np.max(field.gain[cells]))
+        return float(np.quantile(field.gain[cells], cut)) / most if most > 0 else 0.0
     if name == "least_object_snr":
-        return float(np.quantile(field.whole, cut))
-    return float(np.quantile(field.error, area))
+        return float(np.quantile(field.whole[cells], cut))
+    return float(np.quantile(field.error[cells], area, method="higher"))
 
 
 def surfaces_of(results: Results) -> tuple[Surface, ...]:
     """Irradiance of the touched face, signal over noise and position error of the first object."""
-    gx, gy = _grid(results, 0, 0.0)
+    gx, gy = _grid(results, 0)
     axes = (("y", "mm", gy), ("x", "mm", gx))
     shape = (len(gy), len(gx))
     rows, absorption = _one(rows_shared(results), 0), _absorption(results, 0)
-    x, y = np.tile(gx, len(gy)), np.repeat(gy, len(gx))
-    light = np.concatenate([face_irradiance(flux, rows, absorption) for _, flux in _blocks(rows, x, y)])
+    light = np.concatenate([face_irradiance(flux, rows, absorption) for flux in _cells(results, 0)[2]])
     power = float(np.atleast_1d(emitted_power(results.setting.p))[0])
     found = [
         Surface("irradiance_map", "irradiance of the touched face", axes, (light * power).reshape(shape),
@@ -207,7 +236,7 @@ def surfaces_of(results: Results) -> tuple[Surface, ...]:
     ]  # fmt: skip
     states = [state for state in touches(results) if state.place is not None]
     if states and background(results) is not None:
-        field, name = _shared(results, states[0], 0, 0.0, "plate"), states[0].name
+        field, name = _shared(results, states[0], 0), states[0].name
         certainty = float(np.atleast_1d(results.setting.p.field.certainty)[0])
         found += [
             Surface("object_snr_map", f"signal over noise of {name!r}", axes, field.whole.reshape(shape),
