@@ -90,9 +90,9 @@ def drop_powers(
 
     Spherical caps cover the whole patch; light that comes back is summed over both outgoing polarisations.
     Formula: R_base + (1 - R_base) K, R_base by Fresnel, K interpolated from rays traced by
-    `outcouple.contact.droptrace`; multilinear in scaled variables. Of fresh traces drawn over
-    the whole range, half lie within 0.001, 98 of 100 within 0.025, all within 0.04; up to 0.1 off where guide and drop differ by less
-    than about 10 % in index, since a small change of it moves the critical angle at the base by much (tests).
+    `outcouple.contact.droptrace`; multilinear in scaled variables. Of fresh traces drawn over the whole range half lie
+    within 0.001, 98 of 100 within 0.025, all within 0.04; up to 0.1 off where guide and drop differ by less than about
+    10 % in index, since a small change of it moves the critical angle at the base by much (tests).
     Range: n_guide 1.3 to 1.9, n_drop 1.2 to 1.6, contact_angle up to 120 degrees, any angle; drops much
     larger than the wavelength and small against the capillary length; no absorption. `drop_notes` says what
     lies outside; the answer there is that of the edge.

@@ -40,7 +40,7 @@ def penetration_depth(n_guide: ArrayLike, n_outside: ArrayLike, angle: ArrayLike
     (1967).
 
     >>> round(float(penetration_depth(1.484, 1.0, np.radians(45), 850e-9)) * 1e9)
-    426
+    425
     """
     over = np.square(floats(n_guide) * np.sin(angles(angle))) - np.square(floats(n_outside))
     with np.errstate(divide="ignore"):
