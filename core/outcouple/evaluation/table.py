@@ -15,6 +15,7 @@ from outcouple.evaluation.overlay import UNTOUCHED, Samples, View, samples_count
 from outcouple.evaluation.replies import arrivals_of, reply_of
 from outcouple.evaluation.saturation import saturation_notes
 from outcouple.evaluation.signals import LaidState, lay_state, setting_of
+from outcouple.fields import leaves
 from outcouple.geometry import Setting, StateResult
 from outcouple.light import Light
 from outcouple.notes import Note, merge_notes
@@ -29,6 +30,13 @@ SMOOTH_NODES = 3
 """Wavelength nodes where no face holds a film."""
 FRINGE_NODES = 7
 """Wavelength nodes where a film may show fringes."""
+SLOW = 0.5
+"""Turn of a round trip's phase over the line's full width [rad] below which a film counts as smooth: between three and
+seven nodes a gap pair then differs by 2e-6."""
+DENSE = 2.0
+"""Index no film here exceeds by much."""
+TAIL = 5.0
+"""Means, or deviations, within which a spread thickness lies for this purpose."""
 
 
 @dataclass(frozen=True)
@@ -133,10 +141,29 @@ def nodes_for(design: Design, state: State, view: View) -> int:
     differ in nodes would differ in their error.
     """
     states = (*design.states, state) if design.geometry.reading == "change" else (state,)
-    films = bool(design.geometry.measurand) or any(
-        patch.films for one in states for cover in one.covers(view).values() for patch in cover.patches
-    )
-    return FRINGE_NODES if films else SMOOTH_NODES
+    thickest = max([_film_of_measurand(design), *(_thickest(one, view) for one in states)])
+    line = float(np.max(view.emitter.linewidth)) / float(np.min(view.emitter.wavelength)) ** 2
+    return FRINGE_NODES if 4 * np.pi * DENSE * thickest * line > SLOW else SMOOTH_NODES
+
+
+def _thickest(state: State, view: View) -> float:
+    """Largest thickness of a film that counts [m]; a spread reaches well beyond its mean."""
+    found = [
+        float(np.max(film.thickness)) * (1 if film.spread == "none" else TAIL) + TAIL * float(np.max(film.deviation))
+        for cover in state.covers(view).values()
+        for patch in cover.patches
+        for film in patch.films
+    ]
+    return max(found, default=0.0)
+
+
+def _film_of_measurand(design: Design) -> float:
+    """Largest gap a continuous sensor may stand at [m]: a few times what its states name; inf where it has none."""
+    if not design.geometry.measurand:
+        return 0.0
+    leaf = next(leaf for leaf in leaves(design.geometry.Parameters) if leaf.path == design.geometry.measurand)
+    numbers = [state.expect for state in design.states if isinstance(state.expect, float)]
+    return TAIL * max(numbers) if leaf.kind == "length" and numbers else np.inf
 
 
 def _lay(
