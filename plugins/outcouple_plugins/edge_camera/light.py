@@ -33,15 +33,25 @@ def camera_light(setting: Setting) -> Light:
     """
     rows = rows_of(setting)
     zero = np.zeros(setting.samples)
-    bare = camera_ways(setting, rows, zero, zero, pixel_side(setting))
-    spot = Spot(SPOT, hop_of(rows, bundles_of(bare, rows)), strips_of, partial(_placed, setting, rows, bare))
+    middle = flux_at(rows, zero, zero)
+    bare = camera_ways(setting, rows, middle, zero, zero, pixel_side(setting))
+    known = {_key(zero, zero): middle}
+    spot = Spot(SPOT, hop_of(rows, middle.bundles), strips_of, partial(_placed, setting, rows, known))
     return replace(bare, spot=spot)
 
 
-def _placed(setting: Setting, rows: Rows, bare: Light, diameter: Floats, x: Floats, y: Floats) -> Light:
-    there = camera_ways(setting, rows, x, y, diameter, round_area=True)
+def _key(x: Floats, y: Floats) -> bytes:
+    return x.tobytes() + y.tobytes()
+
+
+def _placed(setting: Setting, rows: Rows, known: dict[bytes, Flux], diameter: Floats, x: Floats, y: Floats) -> Light:
+    """The light for an object at (x, y); several objects at one place share the light that crosses it."""
+    key = _key(x, y)
+    if key not in known:
+        known[key] = flux_at(rows, x, y)
+    there = camera_ways(setting, rows, known[key], x, y, diameter, round_area=True)
     glow, back = there.relight
-    bundles = bundles_of(bare, rows)
+    bundles = known[key].bundles
     weight = _crossing_share(there, back, bundles)
     # What crosses the object is a small part of each bundle; the rest passes beside it.
     beside = np.repeat(weight[:, 0, :, 0], there.rays // bundles, axis=1)[:, None, :]
@@ -62,11 +72,6 @@ def _weighted(weight: Floats, diameter: Floats, x: Floats, y: Floats) -> Strips:
     return Strips(np.repeat(lengths, weight.shape[2], axis=2), weight * STRIP_WEIGHTS)
 
 
-def bundles_of(light: Light, rows: Rows) -> int:
-    """Bundles of a light whose rays are laid out by bundle, polarisation and elevation."""
-    return int(light.rays // (2 * rows.fan.elevation.shape[1]))
-
-
 def hop_of(rows: Rows, bundles: int) -> Floats:
     """Metres along the plate between two hits of a ray on one face, (S, K)."""
     hop = 2 * rows.port.thickness[:, None] / np.maximum(np.tan(rows.fan.elevation), 1e-12)
@@ -78,15 +83,18 @@ def strips_of(diameter: Floats, x: Floats, y: Floats) -> Strips:
     return Strips((diameter[:, None] * STRIP_HALVES)[:, None, None, :], STRIP_WEIGHTS[None, None, None, :])
 
 
-def camera_ways(setting: Setting, rows: Rows, x: Floats, y: Floats, wide: Floats, *, round_area: bool = False) -> Light:
+def camera_ways(
+    setting: Setting, rows: Rows, flux: Flux, x: Floats, y: Floats, wide: Floats, *, round_area: bool = False
+) -> Light:
     """The ways to a place at (x, y) that is ``wide`` across the light, and from it to the pixel.
 
+    flux        light that crosses the place
     round_area  True: the place is a disc; else a square as large as the pixel
 
     What a place smaller than the pixel sends is seen whole; of a larger one the pixel sees its own footprint.
     """
     p = setting.p
-    flux, sight, side = flux_at(rows, x, y), sight_of(setting, x, y), pixel_side(setting)
+    sight, side = sight_of(setting, x, y), pixel_side(setting)
     bundles, fan = flux.bundles, rows.fan
     launch = np.tile(np.concatenate([fan.s, fan.p], axis=1) / bundles, (1, bundles))
     crossing = _rays(flux.s, flux.p)

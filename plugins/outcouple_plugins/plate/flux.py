@@ -84,11 +84,13 @@ def flux_at(rows: Rows, x: Floats, y: Floats) -> Flux:
     """Flux at places (P,): P = S, or S = 1 and any number of places.
 
     Straight ways from every emitter and its images to the place. Nearer to an emitter than half its width the flux is
-    that at half its width. Bundles share one mean length: within one, absorption lengths differ by a third at most.
+    that at half its width; beside the plate there is none. Bundles share one mean length: within one, absorption
+    lengths differ by a third at most.
     """
     parts = [_bundle(rows, edge, trip, x, y) for edge in rows.edges for trip in range(TRIPS[rows.finish])]
     s, p, length, slant = (np.stack(part, axis=1) for part in zip(*parts, strict=True))
-    return Flux(s, p, length, slant)
+    on = ((np.abs(x) <= rows.width / 2) & (np.abs(y) <= rows.height / 2))[:, None, None]
+    return Flux(s * on, p * on, length, slant)
 
 
 def _bundle(rows: Rows, edge: str, trip: int, x: Floats, y: Floats) -> tuple[Floats, Floats, Floats, Floats]:
