@@ -113,7 +113,7 @@ def test_glass_at_normal_incidence_and_brewster():
 
 
 def test_gold_film_on_a_prism():
-    """50 nm of gold under crown glass in water, 633 nm: p dips in the low seventies of degrees; constants from memory."""
+    """50 nm of gold under crown glass in water, 633 nm: p dips in the low seventies; constants from memory."""
     angles = np.radians(np.linspace(65, 80, 3001))
     found = optics.stack_response((1.515, 0.18 + 3.43j, 1.332), (50e-9,), angles, 633e-9)
     assert 70 < np.degrees(angles[np.argmin(found.Rp)]) < 74
