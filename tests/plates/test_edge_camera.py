@@ -171,18 +171,42 @@ def test_leakable_shares_of_the_table():
     assert shares[1.327] == pytest.approx(0.205, abs=0.003)
 
 
-def test_museum_table_indoors_says_shorten_the_exposure_and_then_passes():
-    """Claims of the design case: about 3e4 electrons per pixel, radiance about 0.8 W/m2/sr. Both were reckoned for rows
-    along the whole plate and a mean flux; here 0.8 to 1.2 of it."""
+def test_museum_table_passes_indoors_with_a_short_exposure():
     found = judged(demo("museum_table"))
+    assert found.verdict == "pass"
+    assert found.metrics["saturation_headroom"].value > 1
+    assert not any(note.code in ("saturated", "shorten-exposure") for note in found.notes)
+
+
+def test_the_museum_tables_finger_is_as_bright_as_reckoned_by_hand():
+    """Claims of the design case: about 0.8 W/m2/sr, and 3e4 electrons in 8 ms.
+
+    It took the skin's reflectance in air, 0.55, for its albedo, here 0.70, and light sent back as Lambertian in the
+    plate, here in skin of 1.43: together 1.37 of it. The rest, about 0.85, is its mean flux and hop against the fan
+    followed here. Electrons are summed anew from the radiance.
+    """
+    found = judged(demo("museum_table"))
+    radiance = found.metrics["touch_radiance"].states["finger"]
+    assert radiance == pytest.approx(0.8 * (0.70 / 0.55) * (1.484 / 1.43) ** 2 * 0.85, rel=0.05)
+    pixel, pupil, distance, lens = 1.2 / 1280, np.pi / 4 * 2.5e-3**2, 0.75, 0.9
+    setting = results_of(demo("museum_table")).setting
+    band = float(np.broadcast_to(setting.p.readout.filter_transmission, (1,))[0])
+    line = np.linspace(-4, 4, 4001) * 40 / (2 * np.sqrt(2 * np.log(2)))
+    weight = np.exp(-4 * np.log(2) * (line / 40) ** 2)
+    inside = np.sum(weight[np.abs(line) < 25]) / np.sum(weight)
+    power = radiance * pixel**2 * pupil / distance**2 * lens * band * inside
+    electrons = power * 1.5e-3 * 0.25 * 850e-9 / (6.62607015e-34 * 299792458)
+    rise = found.states[1].signal - found.states[0].signal
+    assert rise == pytest.approx(electrons, rel=0.03)
+    assert 2e4 < electrons * 8 / 1.5 < 6e4
+
+
+def test_the_museum_tables_8_ms_fill_the_pixels():
+    """Claim of the design case: 8 ms bring several times the full well of 10 ke-; the tool says so and names a time."""
+    found = judged(edited(demo("museum_table"), readout={"exposure": "8 ms"}))
     assert found.verdict == "fail"
-    assert found.metrics["saturation_headroom"].value < 1
+    assert found.metrics["saturation_headroom"].value < 0.5
     assert any("Shorten the exposure" in note.text for note in found.notes)
-    electrons = 10e3 / found.metrics["saturation_headroom"].value
-    assert 2e4 < electrons < 6e4
-    shorter = judged(edited(demo("museum_table"), readout={"exposure": "1.5 ms"}))
-    assert shorter.verdict == "pass"
-    assert 0.6 < shorter.metrics["touch_radiance"].states["finger"] < 1.3
 
 
 def test_museum_table_in_the_sun_fails():

@@ -24,6 +24,7 @@ __all__ = [
     "by_state",
     "centroid_error",
     "face_irradiance",
+    "glow_share",
     "measured",
     "object_pixels",
     "own_electrons",
@@ -56,10 +57,22 @@ def rise(results: Results, state: StateResult) -> Floats:
     return np.asarray(state.signal[:, 0] - (0.0 if rest is None else rest.signal[:, 0]))
 
 
+def glow_share(results: Results, state: StateResult) -> Floats:
+    """Share of the emitters' light that the untouched plate sends to the pixel at the state's place, (S,).
+
+    The glow of the untouched state follows the light on the face and what the lens gets of it.
+    """
+    rest = background(results)
+    if rest is None or not np.any(rest.share):
+        return np.zeros(results.setting.samples)
+    here, there = (_face_light(results, one) * _sight(results, one).lambertian for one in (rest, state))
+    return np.asarray(np.divide(rest.share[:, 0] * there, here, out=np.zeros_like(there), where=here > 0))
+
+
 def own_electrons(results: Results, state: StateResult) -> Floats:
     """Electrons that a touch's own light brings, however full the pixel is, (S,); line taken at its peak."""
-    rest, p = background(results), state.setting.p
-    share = state.share[:, 0] - (0.0 if rest is None else rest.share[:, 0])
+    p = state.setting.p
+    share = state.share[:, 0] - glow_share(results, state)
     lit = p.readout.exposure if p.readout.strobe is None else np.minimum(p.readout.strobe, p.readout.exposure)
     per_joule = p.readout.quantum_efficiency * peak(p) / (PLANCK * LIGHT_SPEED)
     return np.asarray(share * emitted_power(p) * passed(p) * lit * per_joule)
@@ -132,13 +145,11 @@ def _sight(results: Results, state: StateResult) -> Sight:
 
 
 def _radiance(results: Results) -> Found:
-    rest = background(results)
-
     def of(state: StateResult) -> Floats:
         diameter, _, _ = place_of(results, state)
         sight, side = _sight(results, state), pixel_side(results.setting)
         area = np.minimum(side**2, np.pi / 4 * diameter**2) if state.place is not None else side**2
-        drawn = state.share[:, 0] - (0.0 if rest is None else rest.share[:, 0])
+        drawn = state.share[:, 0] - glow_share(results, state)
         return np.asarray(drawn * emitted_power(state.setting.p) / (area * sight.gathered * sight.shifted))
 
     return _over(results, of)
@@ -210,15 +221,15 @@ def face_irradiance(flux: Flux, rows: Rows, absorption: Floats) -> Floats:
     return np.asarray(np.sum((flux.s + flux.p) * kept * per_metre[:, None, :], axis=(1, 2)))
 
 
+def _face_light(results: Results, state: StateResult) -> Floats:
+    """Light on the face at the state's place per power of the emitters [1/m2], (S,)."""
+    rows, (_, x, y) = rows_shared(results), place_of(results, state)
+    absorption = np.broadcast_to(state.setting.absorption(state.setting.p.plate.material), x.shape)
+    return face_irradiance(flux_at(rows, x, y), rows, absorption)
+
+
 def _irradiance(results: Results) -> Found:
-    rows = rows_shared(results)
-
-    def of(state: StateResult) -> Floats:
-        _, x, y = place_of(results, state)
-        absorption = np.broadcast_to(state.setting.absorption(state.setting.p.plate.material), x.shape)
-        return face_irradiance(flux_at(rows, x, y), rows, absorption) * emitted_power(state.setting.p)
-
-    return _over(results, of)
+    return _over(results, lambda state: _face_light(results, state) * emitted_power(state.setting.p))
 
 
 def _pixel(results: Results) -> Found:
