@@ -35,6 +35,9 @@ SLOW = 0.5
 seven nodes a gap pair then differs by 2e-6."""
 DENSE = 2.0
 """Index no film here exceeds by much."""
+WASHED = 5e-6
+"""Spread of thickness [m] beyond which fringes average out over the face: what is left of them, a few parts in ten
+thousand, needs no more nodes of the line."""
 TAIL = 5.0
 """Means, or deviations, within which a spread thickness lies for this purpose."""
 
@@ -153,6 +156,7 @@ def _thickest(state: State, view: View) -> float:
         for cover in state.covers(view).values()
         for patch in cover.patches
         for film in patch.films
+        if film.spread == "none" or np.min(film.thickness if film.spread == "exponential" else film.deviation) < WASHED
     ]
     return max(found, default=0.0)
 

@@ -46,7 +46,7 @@ class Section(BaseModel):
     (0.006, 0.008)
     """
 
-    model_config = ConfigDict(frozen=True, extra="forbid", validate_default=True)
+    model_config = ConfigDict(frozen=True, extra="forbid", validate_default=True, defer_build=True)
 
     @field_validator("*", mode="before")
     @classmethod
