@@ -111,6 +111,14 @@ def _camera_notes(setting: Setting) -> tuple[Note, ...]:
             where=np.full(setting.samples, p.environment.ambient == "sun"),
         ),
         Note(
+            "large-objects-uneven",
+            "An object larger than the shortest hop takes its light first where the light comes from and glows less "
+            "beyond; the pixel is given the mean over the object.",
+            severity="info",
+            trigger="diameter above the shortest hop, 2 thickness sqrt(index^2 - 1)",
+            where=_largest(setting) > _shortest_hop(setting),
+        ),
+        Note(
             "trapped-light-not-followed",
             "What a touch sends back and the back face keeps travels on in the plate; the little it adds to other "
             "places is left out.",
@@ -134,6 +142,18 @@ def _farthest_corner(setting: Setting) -> tuple[Floats, Floats]:
         for side, axis in ((p.plate.width, p.lens.x), (p.plate.height, p.lens.y))
     )
     return x, y
+
+
+def _largest(setting: Setting) -> Floats:
+    """Diameter of the largest object of all states, (S,)."""
+    sizes = [setting.spread(state.object.diameter) for state in setting.p.states.values() if state.object is not None]
+    return np.max(sizes, axis=0) if sizes else np.zeros(setting.samples)
+
+
+def _shortest_hop(setting: Setting) -> Floats:
+    """Way between two hits on one face of the steepest light from an edge in air: it rises by asin(1/n), (S,)."""
+    thickness, index = setting.spread(setting.p.plate.thickness), setting.index(setting.p.plate.material)
+    return np.asarray(2 * thickness * np.sqrt(np.maximum(index**2 - 1, 0.0)))
 
 
 def failure_rows(setting: Setting) -> tuple[FailureRow, ...]:

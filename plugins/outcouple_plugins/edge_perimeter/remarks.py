@@ -8,6 +8,7 @@ from outcouple.geometry import FailureRow, MetricValue, Results, Setting
 from outcouple.notes import Note
 from outcouple_plugins.edge_perimeter.measures import MEASURES
 from outcouple_plugins.plate.parameters import edges_of
+from outcouple_plugins.plate.remarks import place_notes
 
 __all__ = ["failure_rows", "remarks_on", "setting_notes"]
 
@@ -85,6 +86,7 @@ def setting_notes(setting: Setting) -> tuple[Note, ...]:
             "Emitters along edges are taken as unpolarised.",
             where=np.full(setting.samples, p.emitter.polarization != "none"),
         ),
+        *place_notes(setting),
     )
 
 
