@@ -149,6 +149,7 @@ class Outcome:
     advice: tuple[Advice, ...]
     curve: Curve | None
     surfaces: tuple[Surface, ...]
+    tunnelling: Surface | None
     views: tuple[View, ...]
     defaults: tuple[str, ...]
     demand: str
@@ -207,6 +208,7 @@ class Outcome:
             ],
             "curve": None if self.curve is None else _surface(self.curve),
             "maps": [_surface(surface) for surface in self.surfaces],
+            "tunnelling": None if self.tunnelling is None else _surface(self.tunnelling),
             "unverified_defaults": list(self.defaults),
             "demand": self.demand,
             "version": self.version,

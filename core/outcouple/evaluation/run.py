@@ -17,6 +17,7 @@ from outcouple.evaluation.ledger import ledger_of
 from outcouple.evaluation.notes import design_notes
 from outcouple.evaluation.rays import ray_powers
 from outcouple.evaluation.table import StateRow, Table, tabulate
+from outcouple.evaluation.tunnelling import tunnelling_map
 from outcouple.fields import leaves
 from outcouple.geometry import Curve, Metric, MetricValue, Missing, Results, View
 from outcouple.metrics import metrics_of
@@ -78,6 +79,7 @@ def evaluate(
         advice=advise(design, table, judged, found) if advice else (),
         curve=_curve(table, results) if (views if curve is None else curve) else None,
         surfaces=surfaces,
+        tunnelling=tunnelling_map(table) if (views if curve is None else curve) else None,
         views=drawn,
         defaults=design.unverified(),
         demand=str(table.view.decision.demand),

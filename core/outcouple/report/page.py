@@ -48,7 +48,7 @@ def outcome_pictures(
         found.append(Picture("response", heading, figures.response_figure(outcome, look=look)))
     found += [
         Picture(surface.name, surface.label.capitalize(), figures.surface_figure(surface, look=look))
-        for surface in outcome.surfaces
+        for surface in (*outcome.surfaces, *((outcome.tunnelling,) if outcome.tunnelling else ()))
     ]
     return found
 
