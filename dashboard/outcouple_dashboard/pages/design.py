@@ -207,19 +207,12 @@ def plugin_views(outcome: Outcome, desk: Desk) -> list[Any]:
     return found
 
 
-def untitled(figure: dict[str, Any]) -> dict[str, Any]:
-    """A picture without its own title, for a card that has one."""
-    return {**figure, "layout": {**figure["layout"], "title": {"text": ""}}}
-
-
 def maps(outcome: Outcome, theme: str | None) -> list[Any]:
     """Maps over the surface, once they are there."""
     return [
         parts.card(
             surface.label.capitalize(),
-            parts.graph(
-                f"map-{at}", untitled(figures.surface_figure(surface, look=look_of(theme))), label=surface.label
-            ),
+            parts.graph(f"map-{at}", figures.surface_figure(surface, look=look_of(theme)), label=surface.label),
             name=f"map-card-{at}",
             wide=True,
         )

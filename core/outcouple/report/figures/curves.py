@@ -136,7 +136,7 @@ def _map(surface: Surface, look: Look) -> dict[str, Any]:
     y_title, y = _axis_values(surface, down)
     unit, flat = best_unit(surface.values.ravel().tolist(), surface.kind, surface.unit)
     values = np.array(flat).reshape(surface.values.shape)
-    layout = base_layout(look, surface.label, height=420)
+    layout = base_layout(look, height=420)
     layout.update(
         xaxis=axis(look, x_title, showgrid=False, zeroline=False, constrain="domain"),
         yaxis=axis(look, y_title, showgrid=False, zeroline=False, scaleanchor="x", constrain="domain")
