@@ -27,19 +27,16 @@ __all__ = ["StateRow", "Table", "nodes_for", "tabulate"]
 Floats = NDArray[np.float64]
 
 SMOOTH_NODES = 3
-"""Wavelength nodes where no face holds a film."""
+"""Wavelength nodes where no face holds an even film."""
 FRINGE_NODES = 7
-"""Wavelength nodes where a film may show fringes."""
+"""Wavelength nodes where an even film may show fringes."""
 SLOW = 0.5
 """Turn of a round trip's phase over the line's full width [rad] below which a film counts as smooth: between three and
 seven nodes a gap pair then differs by 2e-6."""
 DENSE = 2.0
 """Index no film here exceeds by much."""
-WASHED = 5e-6
-"""Spread of thickness [m] beyond which fringes average out over the face: what is left of them, a few parts in ten
-thousand, needs no more nodes of the line."""
 TAIL = 5.0
-"""Means, or deviations, within which a spread thickness lies for this purpose."""
+"""Largest gap a continuous sensor may stand at, over the largest its states name."""
 
 
 @dataclass(frozen=True)
@@ -138,27 +135,22 @@ def _media_of(design: Design, states: Sequence[State], view: View) -> tuple[str,
 
 
 def nodes_for(design: Design, state: State, view: View) -> int:
-    """Wavelength nodes a state needs: more where a film may show fringes.
+    """Wavelength nodes of a design: more where a film may show fringes.
 
-    Where readings are changes against the untouched sensor, all states share their nodes: two sums over the line that
-    differ in nodes would differ in their error.
+    All states share them, and no thickness decides, only what kinds of films there are: two sums over the line that
+    differ in nodes differ in their error, which would look like an effect of the film. A film of varying thickness has
+    slow fringes while it is thin, and averages them out over the face when it is thick.
     """
-    states = (*design.states, state) if design.geometry.reading == "change" else (state,)
-    thickest = max([_film_of_measurand(design), *(_thickest(one, view) for one in states)])
-    line = float(np.max(view.emitter.linewidth)) / float(np.min(view.emitter.wavelength)) ** 2
-    return FRINGE_NODES if 4 * np.pi * DENSE * thickest * line > SLOW else SMOOTH_NODES
-
-
-def _thickest(state: State, view: View) -> float:
-    """Largest thickness of a film that counts [m]; a spread reaches well beyond its mean."""
-    found = [
-        float(np.max(film.thickness)) * (1 if film.spread == "none" else TAIL) + TAIL * float(np.max(film.deviation))
-        for cover in state.covers(view).values()
+    films = (
+        film
+        for one in (*design.states, state)
+        for cover in one.covers(view).values()
         for patch in cover.patches
         for film in patch.films
-        if film.spread == "none" or np.min(film.thickness if film.spread == "exponential" else film.deviation) < WASHED
-    ]
-    return max(found, default=0.0)
+    )
+    line = float(np.max(view.emitter.linewidth)) / float(np.min(view.emitter.wavelength)) ** 2
+    turning = 4 * np.pi * DENSE * _film_of_measurand(design) * line > SLOW
+    return FRINGE_NODES if turning or any(film.spread == "none" for film in films) else SMOOTH_NODES
 
 
 def _film_of_measurand(design: Design) -> float:
