@@ -23,6 +23,8 @@ from outcouple.optics.stack import Powers, reflectance
 
 __all__ = ["SPREADS", "thickness_average"]
 
+TOGETHER = 16_000
+"""Points times nodes that are solved in one go."""
 MOST_TERMS = 60
 """Round trips summed one by one; beyond, what is left is taken at random phase."""
 
@@ -43,7 +45,7 @@ class Spread:
     touching  (mean, deviation) -> share at thickness zero, where the distribution would reach below it
     """
 
-    place: Callable[[Floats, Floats, float], Floats]
+    place: Callable[[Floats, Floats, Floats], Floats]
     fine: Callable[[], Rule]
     gentle: Callable[[], Rule]
     scale: Callable[[Floats, Floats], Floats]
@@ -88,7 +90,7 @@ def _uniform_rule(count: int) -> Rule:
     return nodes, weights / 2
 
 
-def _lognormal_place(mean: Floats, deviation: Floats, x: float) -> Floats:
+def _lognormal_place(mean: Floats, deviation: Floats, x: Floats) -> Floats:
     variance = np.log1p(np.square(deviation / np.maximum(mean, 1e-300)))
     return np.asarray(mean * np.exp(np.sqrt(variance) * x - variance / 2))
 
@@ -276,12 +278,16 @@ class _Points:
         return self._by_nodes(self.spread.gentle() if way == "gentle" else self.spread.fine())
 
     def _by_nodes(self, rule: Rule) -> Powers:
+        """Several nodes at a time on an axis of their own, as many as keep the arrays short."""
         total: list[Array] = [np.zeros(self.shape, dtype=kind) for kind in (float, float, complex, float, float)]
         every = list(self.depths)
-        for x, weight in zip(*rule, strict=True):
-            every[self.layer] = self.spread.place(self.mean, self.deviation, float(x))
+        nodes, weights = rule
+        size = max(1, TOGETHER // max(1, math.prod(self.shape)))
+        for start in range(0, len(nodes), size):
+            x, weight = (array[start : start + size].reshape(-1, *(1,) * len(self.shape)) for array in (nodes, weights))
+            every[self.layer] = self.spread.place(self.mean, self.deviation, x)
             for sum_, part in zip(total, reflectance(self.media, every, self.theta, self.wavelength), strict=True):
-                sum_ += weight * part
+                sum_ += np.sum(weight * part, axis=0)
         return total[0], total[1], total[2], total[3], total[4]
 
     def _by_round_trips(self) -> Powers:
