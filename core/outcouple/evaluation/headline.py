@@ -122,13 +122,29 @@ def headline_of(
         return f"FAIL: {_misread(design, table, first)}{_against(first)}{f'; {why}' if why else ''}."
     if verdict == "open":
         waiting = ", ".join(f"{one.label} ({one.why})" for one in judged if one.verdict == "open")
-        return f"OPEN: nothing is missed, but not everything was evaluated: {waiting}. Unknown is not a pass."
+        return (
+            f"OPEN: nothing is missed, but not everything was evaluated: {waiting}. Unknown is not a pass."
+            f"{_unasked(design, table)}"
+        )
     dead = _dead(design, table, found)
-    rest = f" But {dead}, and nothing tells it." if dead else ""
+    rest = _unasked(design, table) + (f" But {dead}, and nothing tells it." if dead else "")
     if verdict == "none stated":
         return f"NO VERDICT: the design states no requirements{_least_margin(found)}.{rest}"
     tight = min(judged, key=lambda one: float(one.margin or 0) / (abs(one.limit) or 1.0))
     return f"PASS: {_all_met(len(judged))}; closest is {_against(tight)}.{rest}"
+
+
+def _unasked(design: Design, table: Table) -> str:
+    """States on the wrong side of the level that no requirement missed."""
+    if table.decided is None:
+        return ""
+    absent, present = design.geometry.words
+    wrong = [
+        f"{row.laid.state.name} reads {present if row.laid.state.expect == 'absent' else absent}"
+        for row in table.binary
+        if row.laid.state.role == "normal" and float(table.decided.sigma[row.laid.state.name][0]) < -TIED
+    ]
+    return f" But {', '.join(wrong)}: no requirement asks about it." if wrong else ""
 
 
 def _all_met(count: int) -> str:
