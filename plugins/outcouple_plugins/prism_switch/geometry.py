@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
+from functools import partial
 from typing import ClassVar
 
 import numpy as np
 from numpy.typing import NDArray
 
-from outcouple.contact.cover import Cover, Drops, Film, Patch
 from outcouple.geometry import (
     Geometry,
     Metric,
@@ -17,7 +17,6 @@ from outcouple.geometry import (
     ResponseAxis,
     Results,
     Setting,
-    StateResult,
     View,
 )
 from outcouple.light import Light
@@ -25,14 +24,18 @@ from outcouple.notes import Note
 from outcouple_plugins.prism_switch.drawing import cross_section
 from outcouple_plugins.prism_switch.light import apex_height, prism_light
 from outcouple_plugins.prism_switch.parameters import Parameters
+from outcouple_plugins.tip_measures import (
+    TIP_METRICS,
+    clear_media,
+    droplet_effect,
+    film_effect,
+    index_window,
+    worst_margin,
+)
 
 __all__ = ["PrismSwitch"]
 
 Floats = NDArray[np.float64]
-
-FILM = 10e-6
-DROP_ANGLE = np.radians(60.0)
-DROP_COVER = 0.3
 
 
 class PrismSwitch(Geometry):
@@ -59,38 +62,7 @@ class PrismSwitch(Geometry):
             "inside the prism",
             "state",
         ),
-        Metric(
-            "lowest_index",
-            "lowest liquid index",
-            "number",
-            "",
-            "lower",
-            "index of a clear liquid above which the reading falls below the level",
-        ),
-        Metric(
-            "highest_index",
-            "highest liquid index",
-            "number",
-            "",
-            "higher",
-            "index of a clear liquid up to which the reading stays below the level",
-        ),
-        Metric(
-            "film_effect",
-            "effect of a flat film",
-            "ratio",
-            "%",
-            "none",
-            "change of the dry reading by a 10 um film of the first present state's liquid on both faces",
-        ),
-        Metric(
-            "droplet_effect",
-            "effect of drops",
-            "ratio",
-            "%",
-            "none",
-            "change of the dry reading by drops of that liquid, contact angle 60 deg, on 30 % of both faces",
-        ),
+        *TIP_METRICS,
         Metric(
             "one_hit_share",
             "one-hit share",
@@ -109,7 +81,7 @@ class PrismSwitch(Geometry):
         """The prism's own metrics among ``names``."""
         found = {name: _MEASURES[name](results) for name in names if name in _MEASURES}
         if "lowest_index" in names or "highest_index" in names:
-            found.update(zip(("lowest_index", "highest_index"), _window(results), strict=True))
+            found.update(zip(("lowest_index", "highest_index"), index_window(results, tuple(self.wetted)), strict=True))
         return {name: found[name] for name in names if name in found}
 
     def views(self, setting: Setting) -> tuple[View, ...]:
@@ -169,16 +141,6 @@ def _axis_incidence(setting: Setting) -> tuple[Floats, Floats]:
     return first, np.abs(second)
 
 
-def _clear_media(state: StateResult) -> list[str]:
-    """Media that lie on a face of a state without drops."""
-    media = []
-    for cover in state.covers.values():
-        for patch in cover.patches:
-            if isinstance(patch.backing, str):
-                media.append(patch.backing)
-    return list(dict.fromkeys(media))
-
-
 def _dry_angle_margin(results: Results) -> MetricValue | Missing:
     states = results.expecting("absent")
     if not states:
@@ -188,74 +150,10 @@ def _dry_angle_margin(results: Results) -> MetricValue | Missing:
         setting = state.setting
         n = setting.index(setting.p.prism.material)
         least = np.minimum(*_axis_incidence(setting))
-        outside = np.max([setting.index(name) for name in _clear_media(state)] or [np.ones(setting.samples)], axis=0)
+        outside = np.max([setting.index(name) for name in clear_media(state)] or [np.ones(setting.samples)], axis=0)
         critical = np.arcsin(np.clip(outside / n, 0, 1))
         found[state.name] = np.broadcast_to(least - critical, (results.setting.samples,))
-    names = list(found)
-    stack = np.stack([found[name] for name in names])
-    pick = np.argmin(stack, axis=0)
-    return MetricValue(stack[pick, np.arange(stack.shape[1])], names[int(pick[0])], found)
-
-
-GRID = np.linspace(1.0, 2.2, 81)
-
-
-def _window(results: Results) -> tuple[MetricValue | Missing, MetricValue | Missing]:
-    """First and last index at which a clear liquid reads below the level, to about 0.002."""
-    if results.decision is None or results.setting.samples != 1:
-        open_window = Missing("needs a decision between dry and wet, one design at a time")
-        return open_window, open_window
-    level = float(-results.decision.level[0, 0])
-    covers = dict.fromkeys(("emitter", "detector"), Cover((Patch(1.0, "(trial)"),)))
-    share = results.trial(covers, {"(trial)": GRID})[:, 0]
-    dry = results.states[0]
-    reading = share * float(dry.signal[0, 0] / dry.share[0, 0])
-    below = np.flatnonzero(reading < level)
-    if below.size == 0:
-        nothing = Missing("no clear liquid reads below the level")
-        return nothing, nothing
-    first, last = int(below[0]), int(below[-1])
-    return (
-        MetricValue(_crossing(reading, level, first - 1, first)),
-        MetricValue(_crossing(reading, level, last, last + 1)),
-    )
-
-
-def _crossing(reading: Floats, level: float, left: int, right: int) -> Floats:
-    """Index between two grid points at which the reading passes the level; the grid's end where it does not."""
-    if left < 0 or right >= GRID.size:
-        return GRID[[min(max(left, 0), GRID.size - 1)]]
-    part = (reading[left] - level) / (reading[left] - reading[right])
-    return np.array([GRID[left] + part * (GRID[right] - GRID[left])])
-
-
-def _liquid(results: Results) -> str | None:
-    for state in results.expecting("present"):
-        for name in _clear_media(state):
-            return name
-    return None
-
-
-def _effect(results: Results, patches: tuple[Patch, ...], dry: tuple[Patch, ...]) -> MetricValue:
-    before, after = (
-        results.trial(dict.fromkeys(("emitter", "detector"), Cover(part)), {})[:, 0] for part in (dry, patches)
-    )
-    return MetricValue(np.broadcast_to(after / before - 1, (results.setting.samples,)))
-
-
-def _film_effect(results: Results) -> MetricValue | Missing:
-    liquid = _liquid(results)
-    if liquid is None:
-        return Missing("no present state has a clear liquid on a face")
-    return _effect(results, (Patch(1.0, "air", (Film(liquid, FILM),)),), (Patch(1.0, "air"),))
-
-
-def _droplet_effect(results: Results) -> MetricValue | Missing:
-    liquid = _liquid(results)
-    if liquid is None:
-        return Missing("no present state has a clear liquid on a face")
-    drops = (Patch(DROP_COVER, Drops(liquid, DROP_ANGLE)), Patch(1 - DROP_COVER, "air"))
-    return _effect(results, drops, (Patch(1.0, "air"),))
+    return worst_margin(results, found)
 
 
 def _one_hit_share(results: Results) -> MetricValue:
@@ -266,10 +164,10 @@ def _one_hit_share(results: Results) -> MetricValue:
     return MetricValue(np.broadcast_to(share, (results.setting.samples,)))
 
 
-_MEASURES = {
+_MEASURES: Mapping[str, Callable[[Results], MetricValue | Missing]] = {
     "dry_angle_margin": _dry_angle_margin,
-    "film_effect": _film_effect,
-    "droplet_effect": _droplet_effect,
+    "film_effect": partial(film_effect, faces=("emitter", "detector")),
+    "droplet_effect": partial(droplet_effect, faces=("emitter", "detector")),
     "one_hit_share": _one_hit_share,
 }
 
