@@ -12,6 +12,7 @@ from outcouple.light import Light, Relight, Vector
 from outcouple.optics import interface
 from outcouple_plugins.prism_switch.directions import Directions, lobe_directions
 from outcouple_plugins.prism_switch.ways import Interval, WayTrace, Wedge, trace_way
+from outcouple_plugins.tip_returns import returns_of
 
 __all__ = ["COLUMNS", "apex_height", "prism_light"]
 
@@ -216,27 +217,27 @@ def _exit(setting: Setting, cosine: Floats, bonded: bool) -> Floats:
 
 
 def _relights(setting: Setting, rays: int) -> tuple[Relight, ...]:
-    """A lit patch of each face seen by the detector: cos cos A / (pi r^2), straight through the base."""
+    """What the detector sees of light sent back at each face."""
     p = setting.p
-    alpha = setting.spread(p.prism.face_angle)
-    area = np.pi * setting.spread(p.layout.detector_radius) ** 2
-    found = []
-    for column, side in enumerate((EMITTER, DETECTOR, EMITTER)):
-        x = side * np.abs(setting.spread(p.layout.emitter_position))
-        z = apex_height(setting) - np.abs(x) * np.tan(alpha)
-        dx = setting.spread(p.layout.detector_position) - x
-        distance = np.hypot(dx, z)
-        inward = np.maximum((-side * np.sin(alpha) * dx + np.cos(alpha) * z) / distance, 0.0)
-        down = z / distance
-        share = inward * down * area / (np.pi * distance**2)
-        exit_share = _exit(setting, down[:, None], p.layout.coupling == "bonded")[:, 0]
-        found.append(
-            Relight(
-                column=column,
-                feed=np.ones((1, 1, rays)),
-                share=(np.minimum(share, 1.0) * exit_share)[:, None],
-                sine=np.sqrt(np.clip(1 - inward**2, 0, 1))[:, None],
-                length=np.broadcast_to(distance[:, None, None], (setting.samples, 1, 1)),
-            )
+    alpha, half = setting.spread(p.prism.face_angle), setting.spread(p.prism.base / 2)
+
+    def face(x: Floats) -> tuple[Floats, Floats]:
+        return apex_height(setting) - np.abs(x) * np.tan(alpha), -np.sign(x) * alpha
+
+    def through(down: Floats) -> Floats:
+        return _exit(setting, down[:, None], p.layout.coupling == "bonded")[:, 0]
+
+    return tuple(
+        relight
+        for column, side in enumerate((EMITTER, DETECTOR, EMITTER))
+        for relight in returns_of(
+            column,
+            centre=side * np.abs(setting.spread(p.layout.emitter_position)),
+            half_width=half,
+            surface=face,
+            detector=setting.spread(p.layout.detector_position),
+            area=np.pi * setting.spread(p.layout.detector_radius) ** 2,
+            through=through,
+            rays=rays,
         )
-    return tuple(found)
+    )

@@ -11,6 +11,7 @@ from outcouple.geometry import Setting
 from outcouple.light import Light, Relight, Vector, turn_between
 from outcouple.optics import interface
 from outcouple_plugins.round_tip.shapes import BASE, END, NOTHING, SIDE, Shape
+from outcouple_plugins.tip_returns import returns_of
 
 __all__ = ["RAYS", "shape_of", "tip_light"]
 
@@ -175,30 +176,30 @@ def _through_base(setting: Setting, cosine: Floats) -> Floats:
 
 
 def _relights(setting: Setting, shape: Shape, columns: int) -> tuple[Relight, ...]:
-    """A lit spot half way up the tip, above the emitter, as the detector sees it: cos cos A / (pi r^2)."""
+    """What the detector sees of light sent back: where the first hit lies above the emitter, later ones opposite."""
     layout = setting.p.layout
-    area = np.pi * setting.spread(layout.detector_radius) ** 2
-    x = setting.spread(layout.emitter_position)
-    away = np.minimum(np.abs(x), 0.98 * shape.radius[:, 0])
-    if shape.kind == "dome":
-        z = np.sqrt(shape.radius[:, 0] ** 2 - away**2)
-        slope = np.arcsin(away / shape.radius[:, 0])
-    else:
-        z = np.minimum((shape.radius[:, 0] - away) * np.tan(shape.angle[:, 0]), shape.height[:, 0])
-        slope = np.where(away > shape.end[:, 0] * (shape.kind == "truncated"), shape.angle[:, 0], 0.0)
-    dx = setting.spread(layout.detector_position) - x
-    distance = np.hypot(dx, z)
-    inward = np.maximum((-np.sign(x) * np.sin(slope) * dx + np.cos(slope) * z) / distance, 0.0)
-    down = z / distance
-    share = np.minimum(inward * down * area / (np.pi * distance**2), 1.0)
-    share = share * _through_base(setting, down[:, None])[:, 0]
+    radius = shape.radius[:, 0]
+
+    def surface(x: Floats) -> tuple[Floats, Floats]:
+        away = np.abs(x)
+        if shape.kind == "dome":
+            return np.sqrt(radius**2 - away**2), -np.sign(x) * np.arcsin(away / radius)
+        flat = (away <= shape.end[:, 0]) & (shape.kind == "truncated")
+        height = np.minimum((radius - away) * np.tan(shape.angle[:, 0]), shape.height[:, 0])
+        return height, np.where(flat, 0.0, -np.sign(x) * shape.angle[:, 0])
+
+    per_hit = columns // MOST_HITS
     return tuple(
-        Relight(
-            column=column,
-            feed=np.ones((1, 1, RAYS)),
-            share=share[:, None],
-            sine=np.sqrt(np.clip(1 - inward**2, 0, 1))[:, None],
-            length=np.broadcast_to(distance[:, None, None], (setting.samples, 1, 1)),
-        )
+        relight
         for column in range(columns)
+        for relight in returns_of(
+            column,
+            centre=setting.spread(layout.emitter_position) * (1.0 if column < per_hit else -1.0),
+            half_width=radius,
+            surface=surface,
+            detector=setting.spread(layout.detector_position),
+            area=np.pi * setting.spread(layout.detector_radius) ** 2,
+            through=lambda down: _through_base(setting, down[:, None])[:, 0],
+            rays=RAYS,
+        )
     )
