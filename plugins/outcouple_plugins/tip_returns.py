@@ -14,8 +14,8 @@ __all__ = ["SPOTS", "returns_of"]
 Floats = NDArray[np.float64]
 
 SPOTS = 5
-"""Places that stand for the spread of what comes back. Light entering a turbid liquid surfaces some millimetres away; it
-is taken to leave evenly within a quarter of the base's width of where it entered, along the cross-section."""
+"""Places that stand for the spread of what comes back. Light entering a turbid liquid surfaces some millimetres away;
+it is taken to leave evenly within a quarter of the base's width of where it entered, along the cross-section."""
 
 
 def returns_of(

@@ -21,17 +21,15 @@ from outcouple.geometry import (
     Setting,
     View,
 )
-from outcouple.light import Light, Vector, lobe_density, turn_between
+from outcouple.light import Light, Vector, turn_between
 from outcouple.notes import Note
-from outcouple.optics import gauss_legendre, interface
+from outcouple.optics import interface
+from outcouple_plugins.beams import beam_directions
 from outcouple_plugins.gap_pair.parameters import Parameters
 
 __all__ = ["GapPair"]
 
 Floats = NDArray[np.float64]
-
-POLAR, AZIMUTH = 12, 8
-"""Nodes over the angle from the beam's axis and around it (half; the other half mirrors it)."""
 
 
 class GapPair(Geometry):
@@ -93,7 +91,7 @@ class GapPair(Geometry):
         p = setting.p
         n_guide = setting.index(p.pair.material)
         bonded = p.pair.coupling == "bonded"
-        ray, axis_cos, weight = _beam(setting, n_guide, bonded)
+        ray, axis_cos, weight = beam_directions(setting, n_guide, bonded)
         incidence = setting.spread(p.pair.incidence)[:, None]
         zero = np.zeros_like(incidence)
         normal = Vector(np.sin(incidence), zero, np.cos(incidence))
@@ -158,25 +156,6 @@ class GapPair(Geometry):
     def starter(self, job: str) -> str:
         """Three gaps and a limit on the resolution."""
         return _STARTER
-
-
-def _beam(setting: Setting, n_guide: Floats, bonded: bool) -> tuple[Vector, Floats, Floats]:
-    """Directions inside the prism about z, cosine from the axis outside, and the share of the lobe of each."""
-    p = setting.p
-    half = setting.spread(p.emitter.half_angle)[:, None, None]
-    u, wu = gauss_legendre(POLAR)
-    v, wv = gauss_legendre(AZIMUTH)
-    polar = half * (u[:, None] + 1) / 2
-    azimuth = np.pi * (v[None, :] + 1) / 2
-    cos = np.cos(polar)
-    density = lobe_density(cos, half_angle=half, exponent=setting.spread(p.emitter.exponent)[:, None, None])
-    weight = density * np.sin(polar) * half * (wu[:, None] / 2) * np.pi * wv[None, :]
-    weight = weight / np.sum(weight, axis=(1, 2), keepdims=True)
-    n_in = 1.0 if bonded else n_guide[:, None, None]
-    x, y = np.sin(polar) * np.cos(azimuth) / n_in, np.sin(polar) * np.sin(azimuth) / n_in
-    z = np.sqrt(1 - x**2 - y**2)
-    flat = [np.broadcast_to(array, weight.shape).reshape(setting.samples, -1) for array in (x, y, z, cos, weight)]
-    return Vector(*flat[:3]), flat[3], flat[4]
 
 
 def _gap_at_half(results: Results) -> MetricValue | Missing:
