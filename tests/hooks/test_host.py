@@ -8,6 +8,7 @@ from typing import ClassVar
 
 import pytest
 
+from outcouple.errors import UserMistake
 from outcouple.geometry import Geometry
 from outcouple.hooks import build_host, hookimpl, host, spec
 from outcouple.touching.clear import Dry
@@ -132,3 +133,18 @@ def test_every_hook_is_documented_with_its_answer():
     for hook in hooks:
         assert inspect.getdoc(hook)
         assert inspect.signature(hook).return_annotation is not inspect.Signature.empty
+
+
+class LateBreaker:
+    """Names a geometry whose module is not there."""
+
+    @hookimpl
+    def outcouple_geometries(self):
+        return ("late = no_such_module_at_all:Thing | breaks when it is asked for",)
+
+
+def test_a_geometry_that_fails_when_asked_for_is_named_without_a_traceback():
+    found = build_host({"late": LateBreaker()})
+    assert "prism-switch" in found.geometries
+    with pytest.raises(UserMistake, match="no_such_module_at_all:Thing cannot be used: ModuleNotFoundError"):
+        found.geometry("late")

@@ -140,8 +140,11 @@ def _entry(plugin: str, given: type[Geometry] | str) -> GeometryEntry:
 
 def _loaded(target: str) -> type[Geometry]:
     module, _, attribute = target.partition(":")
-    found = getattr(importlib.import_module(module), attribute)
-    _check_geometry(found)
+    try:
+        found = getattr(importlib.import_module(module), attribute)
+        _check_geometry(found)
+    except Exception as error:
+        raise UserMistake(f"the plugin at {target} cannot be used: {type(error).__name__}: {error}") from error
     return found  # type: ignore[no-any-return]
 
 
