@@ -335,8 +335,10 @@ def _view(setting: Setting) -> View:
     rays = []
     for at in (-0.25, 0.0, 0.25):
         foot_point = np.array([at * half, foot])
-        step = 0.95 * half * np.array([np.sin(incidence), np.cos(incidence)])
-        start, end = foot_point + step * [-1, 1], foot_point + step
+        # Square to the side faces, from one to the other.
+        step = np.array([np.sin(incidence), np.cos(incidence)]) / (2 * np.sin(incidence))
+        start = foot_point + (half + at * half) * step * [-1, 1]
+        end = foot_point + (half - at * half) * step
         rays.append(RayPath(np.array([start, foot_point, end]), (-1, 0, -1), (0.0, incidence, 0.0)))
         below = foot_point - [0.0, min(foot, 0.3 * half)]
         rays.append(RayPath(np.array([start, foot_point, below]), (-1, -2, -1), (0.0, incidence, 0.0)))

@@ -50,7 +50,7 @@ class PrismSwitch(Geometry):
     }
     words: ClassVar[tuple[str, str]] = ("dry", "wet")
     present_reads: ClassVar = "low"
-    jobs: ClassVar[tuple[str, ...]] = ("overfill", "dry-run", "leak", "presence")
+    jobs: ClassVar[tuple[str, ...]] = ("overfill", "dry-run", "presence")
     metrics: ClassVar[tuple[Metric, ...]] = (
         Metric(
             "dry_angle_margin",
@@ -125,7 +125,7 @@ class PrismSwitch(Geometry):
 
     def starter(self, job: str) -> str:
         """States and requirements for the job."""
-        demand = {"overfill": "high level", "dry-run": "low level", "leak": "leak"}.get(job, "")
+        demand = {"overfill": "high level", "dry-run": "low level"}.get(job, "")
         head = f'[decision]\ndemand = "{demand}"\n\n' if demand else ""
         return head + _STARTER
 
