@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from outcouple.design.sections import Emitter
 from outcouple.fields import Section, choice, count, name, quantity
-from outcouple_plugins.prism_switch.parameters import PrismReadout
+from outcouple_plugins.close_readout import CloseReadout
 
 __all__ = ["Drops", "Parameters", "Plate", "PlateEmitter"]
 
@@ -66,4 +66,4 @@ class Parameters(Section):
     emitter: PlateEmitter = PlateEmitter()
     plate: Plate = Plate()
     drops: Drops = Drops()
-    readout: PrismReadout = PrismReadout()
+    readout: CloseReadout = CloseReadout()

@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-from outcouple.design.sections import PhotodiodeReadout
 from outcouple.fields import Section, choice, name, quantity
+from outcouple_plugins.close_readout import CloseReadout
 
-__all__ = ["Gap", "Pair", "PairReadout", "Parameters"]
+__all__ = ["Gap", "Pair", "Parameters"]
 
 
 class Pair(Section):
@@ -72,23 +72,9 @@ class Gap(Section):
     )
 
 
-class PairReadout(PhotodiodeReadout):
-    """A photodiode, its transimpedance stage, its modulation and its converter."""
-
-    feedback_resistance: float = quantity(
-        "500 ohm",
-        "resistance",
-        ge="100 ohm",
-        le="100 Gohm",
-        describe="of the transimpedance stage; most of the emitter's light arrives here",
-        slider="log",
-        deciding=True,
-    )
-
-
 class Parameters(Section):
     """Two prisms that face each other over a gap."""
 
     pair: Pair = Pair()
     gap: Gap = Gap()
-    readout: PairReadout = PairReadout()
+    readout: CloseReadout = CloseReadout()

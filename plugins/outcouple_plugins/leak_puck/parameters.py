@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from outcouple.fields import Section, choice, name, quantity
-from outcouple_plugins.prism_switch.parameters import PrismReadout
+from outcouple_plugins.close_readout import CloseReadout
 
 __all__ = ["Floor", "Parameters", "Puck", "Puddle"]
 
@@ -100,4 +100,4 @@ class Parameters(Section):
     puck: Puck = Puck()
     puddle: Puddle = Puddle()
     floor: Floor = Floor()
-    readout: PrismReadout = PrismReadout()
+    readout: CloseReadout = CloseReadout()

@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-from outcouple.design.sections import PhotodiodeReadout
 from outcouple.fields import Section, choice, name, quantity
+from outcouple_plugins.close_readout import CloseReadout
 
-__all__ = ["Layout", "Parameters", "Prism", "PrismReadout"]
+__all__ = ["Layout", "Parameters", "Prism"]
 
 
 class Prism(Section):
@@ -86,23 +86,9 @@ class Layout(Section):
     )
 
 
-class PrismReadout(PhotodiodeReadout):
-    """A photodiode, its transimpedance stage, its modulation and its converter."""
-
-    feedback_resistance: float = quantity(
-        "500 ohm",
-        "resistance",
-        ge="100 ohm",
-        le="100 Gohm",
-        describe="of the transimpedance stage; most of the emitter's light arrives here",
-        slider="log",
-        deciding=True,
-    )
-
-
 class Parameters(Section):
     """A two-face prism with an emitter and a detector on its base."""
 
     prism: Prism = Prism()
     layout: Layout = Layout()
-    readout: PrismReadout = PrismReadout()
+    readout: CloseReadout = CloseReadout()

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from outcouple.fields import Section, choice, name, quantity
-from outcouple_plugins.prism_switch.parameters import Layout, PrismReadout
+from outcouple_plugins.close_readout import CloseReadout
+from outcouple_plugins.prism_switch.parameters import Layout
 
 __all__ = ["Parameters", "Tip"]
 
@@ -55,4 +56,4 @@ class Parameters(Section):
 
     tip: Tip = Tip()
     layout: Layout = Layout()
-    readout: PrismReadout = PrismReadout()
+    readout: CloseReadout = CloseReadout()
