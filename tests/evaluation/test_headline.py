@@ -41,3 +41,29 @@ def test_a_requirement_about_it_fails_instead():
     assert found.verdict == "fail"
     assert "nitrogen reads dry" in found.headline
     assert "no requirement asks" not in found.headline
+
+
+DRY_RUN = """
+geometry = "prism-switch"
+[decision]
+demand = "low level"
+[[states]]
+name = "dry"
+expect = "absent"
+[[states]]
+name = "water"
+expect = "present"
+touching = "water"
+[[requirements]]
+metric = "dead_emitter_unnoticed"
+at_most = 0
+"""
+
+
+def test_where_no_number_helps_a_diagnostic_is_advised_and_does_help():
+    found = evaluate(parse_design(DRY_RUN), views=False)
+    assert found.verdict == "fail"
+    (one,) = found.advice
+    assert one.path == "decision.diagnostics.reference"
+    mended = parse_design(DRY_RUN.replace('demand = "low level"', 'demand = "low level"\ndiagnostics.reference = true'))
+    assert evaluate(mended, advice=False, views=False).verdict == "pass"

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import copy
 from collections.abc import Mapping, Sequence
 from typing import Any
 
@@ -9,10 +10,10 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.design import Design
-from outcouple.design.load import design_model
+from outcouple.design.load import design_from_mapping, design_model
 from outcouple.design.sections.groups import CONDITIONS, IMPERFECTIONS
 from outcouple.evaluation.judge import value_for
-from outcouple.evaluation.table import Table
+from outcouple.evaluation.table import Table, tabulate
 from outcouple.fields import Leaf, leaves
 from outcouple.geometry import MetricValue, Missing
 from outcouple.metrics import metrics_of
@@ -40,6 +41,10 @@ NEEDS: Mapping[str, tuple[str, tuple[str, ...]]] = {
 """Inputs of the read-out that take effect only with one word of another."""
 OF_THE_FILTER = ("filter_width", "filter_transmission", "filter_blocking")
 """Inputs that take effect only where a filter is stated."""
+TOLD = ("dead_emitter_unnoticed", "undetected_dangerous_causes")
+"""Metrics that diagnostics change and numbers do not."""
+DIAGNOSTICS = (("decision", "diagnostics", "reference"), ("decision", "diagnostics", "second_channel"))
+"""What to try for them, cheapest first."""
 LEFT_ALONE = ("environment", "decision")
 """Sections that state the requirement rather than the design."""
 
@@ -164,11 +169,38 @@ def advise(
     if not isinstance(watched, MetricValue):
         return ()
     moved = measured[owners[0]]
-    return tuple(
+    found_steps = tuple(
         _advice(design, steps[at], owners[0], watched, moved, at)
         for at in best.values()
         if isinstance(moved, MetricValue)
     )
+    return found_steps or _telling(design, owners[0], float(watched.values[0]))
+
+
+def _telling(design: Design, name: str, before: float) -> tuple[Advice, ...]:
+    """A diagnostic that would tell what no number mends; nothing for metrics that are not about telling."""
+    from outcouple.evaluation.batch import measure
+
+    metric = metrics_of(design.geometry)[name]
+    if name not in TOLD:
+        return ()
+    for path in DIAGNOSTICS:
+        raw = copy.deepcopy(dict(design.raw))
+        section = raw
+        for key in path[:-1]:
+            section = section.setdefault(key, {})
+        if section.get(path[-1]):
+            continue
+        section[path[-1]] = True
+        table = tabulate(design_from_mapping(raw, host=design.host))
+        after = measure(table, [name])[name]
+        if isinstance(after, MetricValue) and (after.values[0] < before) == (metric.better == "lower"):
+            shown = [
+                format_quantity(x, metric.kind, unit=metric.unit or None) for x in (before, float(after.values[0]))
+            ]
+            text = f"{'.'.join(path)} from false to true: {metric.label} {shown[0]} -> {shown[1]}"
+            return (Advice(".".join(path), "false", "true", name, before, float(after.values[0]), text),)
+    return ()
 
 
 def _samples(steps: Sequence[tuple[Leaf, float, float]]) -> dict[tuple[str, ...], Floats]:
