@@ -149,6 +149,9 @@ def advise(
     found = {name: value for name, value in found.items() if known[name].cost == "scalar"}
     states = [(row.laid.state.name, row.laid.state.family) for row in table.rows]
     before, owners = worst_margin(design, found, states)
+    if owners[0] in TOLD:
+        watched = found[owners[0]]
+        return _telling(design, owners[0], float(watched.values[0])) if isinstance(watched, MetricValue) else ()
     steps = _steps(design)
     if len(steps) * sample_elements(table) > DEAR:
         steps = [step for step in steps if step[0].deciding]
@@ -169,21 +172,18 @@ def advise(
     if not isinstance(watched, MetricValue):
         return ()
     moved = measured[owners[0]]
-    found_steps = tuple(
+    return tuple(
         _advice(design, steps[at], owners[0], watched, moved, at)
         for at in best.values()
         if isinstance(moved, MetricValue)
     )
-    return found_steps or _telling(design, owners[0], float(watched.values[0]))
 
 
 def _telling(design: Design, name: str, before: float) -> tuple[Advice, ...]:
-    """A diagnostic that would tell what no number mends; nothing for metrics that are not about telling."""
+    """A diagnostic that would tell what no number mends."""
     from outcouple.evaluation.batch import measure
 
     metric = metrics_of(design.geometry)[name]
-    if name not in TOLD:
-        return ()
     for path in DIAGNOSTICS:
         raw = copy.deepcopy(dict(design.raw))
         section = raw
@@ -194,7 +194,7 @@ def _telling(design: Design, name: str, before: float) -> tuple[Advice, ...]:
         section[path[-1]] = True
         table = tabulate(design_from_mapping(raw, host=design.host))
         after = measure(table, [name])[name]
-        if isinstance(after, MetricValue) and (after.values[0] < before) == (metric.better == "lower"):
+        if isinstance(after, MetricValue) and after.values[0] < before:
             shown = [
                 format_quantity(x, metric.kind, unit=metric.unit or None) for x in (before, float(after.values[0]))
             ]
