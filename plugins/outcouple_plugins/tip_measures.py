@@ -25,7 +25,7 @@ Floats = NDArray[np.float64]
 FILM = 10e-6
 DROP_ANGLE = np.radians(60.0)
 DROP_COVER = 0.3
-GRID = np.linspace(1.0, 2.2, 81)
+GRID = np.linspace(1.0, 2.2, 49)
 
 TIP_METRICS: tuple[Metric, ...] = (
     Metric(
@@ -90,7 +90,7 @@ def worst_margin(results: Results, found: dict[str, Floats]) -> MetricValue:
 
 
 def index_window(results: Results, faces: Sequence[str]) -> tuple[MetricValue | Missing, MetricValue | Missing]:
-    """First and last index at which a clear liquid reads below the level, to about 0.002."""
+    """First and last index at which a clear liquid reads below the level, to about 0.005."""
     if results.decision is None or results.setting.samples != 1:
         open_window = Missing("needs a decision between dry and wet, one design at a time")
         return open_window, open_window

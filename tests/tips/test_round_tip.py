@@ -147,7 +147,7 @@ def test_sixteen_times_as_many_rays_say_the_same(monkeypatch):
     from outcouple_plugins.round_tip import light
 
     few = shares(design(emitter={"half_angle": "20 deg"}))
-    monkeypatch.setattr(light, "RAYS", 32768)
+    monkeypatch.setattr(light, "RAYS", 24576)
     many = shares(design(emitter={"half_angle": "20 deg"}))
     assert few["dry"] == pytest.approx(many["dry"], rel=0.015)
     assert few["wet"] == pytest.approx(many["wet"], rel=0.06)

@@ -93,7 +93,7 @@ class RoundTip(Geometry):
             ),
             Note(
                 "traced-rays",
-                "2048 traced rays carry the light: readings hold to about 1 % dry, small wet returns to a few per cent "
+                "1536 traced rays carry the light: readings hold to about 1 % dry, small wet returns to a few per cent "
                 "of themselves. A rounded apex and ways with more than four hits are left out.",
                 severity="info",
             ),
