@@ -136,10 +136,11 @@ def _drops_answer(drops: Drops, guide: str, angle: Floats, media: Media, accepta
     return Answer(kept, kept, np.zeros_like(kept, dtype=complex), lost, lost, none, none, turned, turned)
 
 
-def answer_notes(cover: Cover) -> tuple[Note, ...]:
+def answer_notes(cover: Cover, media: Media) -> tuple[Note, ...]:
     """Cautions about the way a cover is answered."""
     found = []
     for patch in cover.patches:
+        found += [_coherence_note(film, media) for film in patch.films if film.spread == "none"]
         if isinstance(patch.backing, Drops):
             found.append(
                 Note(
@@ -157,3 +158,16 @@ def answer_notes(cover: Cover) -> tuple[Note, ...]:
                 )
             )
     return tuple(found)
+
+
+def _coherence_note(film: Film, media: Media) -> Note:
+    """Which way an even film was taken; where its waves decay it is coherent whatever its thickness."""
+    trip = 2 * float(np.max(media.centre(film.material) * film.thickness))
+    centre = media.wavelengths[:, media.wavelengths.shape[1] // 2]
+    reach = float(np.min(optics.coherence_length(centre, media.linewidth)))
+    name = f"The even film of {film.material}, {float(np.max(film.thickness)) * 1e6:.3g} um,"
+    if trip > reach:
+        text = f"{name} is thicker than the line is coherent: where light crosses it, intensities add, without fringes."
+    else:
+        text = f"{name} is thin enough to show fringes: fields add, averaged over the emitter's line."
+    return Note("film-coherence", f"{text} Coherence length {reach * 1e6:.3g} um.", severity="info")

@@ -178,7 +178,7 @@ def lay_state(
             light = light.spot.placed(place["diameter"], place["x"], place["y"])
         strips = None if light.spot is None else light.spot.strips(place["diameter"], place["x"], place["y"])
     ways = tuple(_way(share, build, light, media, strips) for share, build in _builds(covers, samples))
-    notes = [note for cover in covers.values() for note in answer_notes(cover)]
+    notes = [note for cover in covers.values() for note in answer_notes(cover, media)]
     return LaidState(state, setting, media, light, weights, _sum(ways), ways, merge_notes([*notes, *media.notes]))
 
 

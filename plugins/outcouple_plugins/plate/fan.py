@@ -8,7 +8,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 from numpy.typing import NDArray
 
-from outcouple.optics import gauss_legendre
+from outcouple.optics import gauss_legendre, segments
 from outcouple_plugins.plate.edge import Port
 
 __all__ = ["Fan", "fan_of", "leakable_share", "port_of"]
@@ -117,21 +117,11 @@ def _elevations(port: Port, breaks: Sequence[Floats]) -> tuple[Floats, Floats]:
         cuts.append(np.arccos(np.clip(1 / port.index, 0, 1)))
     inner = [np.minimum(np.broadcast_to(cut, top.shape), top) for cut in cuts]
     edges = np.sort(np.stack([np.zeros_like(top), *inner, top]), axis=0)
-    width = np.diff(edges, axis=0)
-    some = np.any(width > 0, axis=1)
-    width, low = width[some][:, :, None], edges[:-1][some][:, :, None]
-    t, w = gauss_legendre(NODES)
-    v = (np.asarray(t) + 1) / 2
-    # sin^2 packs nodes at both ends, where transmission and leak start as square roots.
-    place, slope = np.sin(np.pi * v / 2) ** 2, np.pi / 2 * np.sin(np.pi * v)
-    nodes = low + width * place
-    # Halved for the interval of v, doubled for the two signs.
-    weights = width * slope * np.asarray(w)
-    samples = top.shape[0]
-    return (
-        np.moveaxis(nodes, 1, 0).reshape(samples, -1),
-        np.moveaxis(weights, 1, 0).reshape(samples, -1),
-    )
+    # A segment that no sample has is left out; both signs count in the weights.
+    some = np.any(np.diff(edges, axis=0) > 0, axis=1)
+    kept = np.moveaxis(edges[np.concatenate([[True], some])], 0, -1)
+    nodes, weights = segments(kept, NODES)
+    return nodes, 2 * weights
 
 
 def leakable_share(fan: Fan, *, index: Floats, contact: Floats) -> Floats:

@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from outcouple.light import lobe_density
-from outcouple.optics import gauss_legendre
+from outcouple.optics import gauss_legendre, segments
 
 __all__ = ["Directions", "lobe_directions"]
 
@@ -60,12 +60,8 @@ def lobe_directions(
     radius = np.sqrt(1 - v**2)
     widest = np.arccos(np.clip(np.cos(half_angle)[:, None] / radius, -1, 1))
     edges = _edges(n_guide, n_in, tilt, face_angle, breaks, v, widest)
-    t, wt = gauss_legendre(ALONE if edges.shape[-1] == 2 else SEGMENT)
-    t, wt = (t + 1) / 2, wt / 2
-    place, slope = np.sin(np.pi * t / 2) ** 2, np.pi / 2 * np.sin(np.pi * t) * wt
-    low, width = edges[..., :-1, None], np.diff(edges, axis=-1)[..., None]
-    local = (low + width * place).reshape(*v.shape, -1)
-    weight = (width * slope).reshape(*v.shape, -1) * wv[..., None] * 2
+    local, weight = segments(edges, ALONE if edges.shape[-1] == 2 else SEGMENT)
+    weight = 2 * weight * wv[..., None]
     density = lobe_density(
         radius[..., None] * np.cos(local),
         half_angle=half_angle[:, None, None],
