@@ -11,7 +11,7 @@ from outcouple.contact.cover import immersed
 from outcouple.design import State
 from outcouple.evaluation.overlay import view_of
 from outcouple.evaluation.signals import LaidState, lay_state, setting_of, trial_share
-from outcouple.evaluation.table import Table, nodes_for
+from outcouple.evaluation.table import Table
 from outcouple.geometry import ContinuousCurve, Curve, ResponseAxis
 from outcouple.readout.chain import Reading, read
 
@@ -64,7 +64,7 @@ def _along(table: Table, state: State, path: tuple[str, ...], grid: Floats) -> t
         free,
         view,
         samples=table.samples * len(grid),
-        nodes=nodes_for(table.design, free, view),
+        nodes=len(table.rows[0].laid.weights),
         breaks_of=table.media_breaks,
         lights={},
     )

@@ -22,7 +22,7 @@ from outcouple.notes import Note, merge_notes
 from outcouple.readout.chain import Reading, read
 from outcouple.touching.clear import Dry
 
-__all__ = ["StateRow", "Table", "nodes_for", "tabulate"]
+__all__ = ["StateRow", "Table", "tabulate"]
 
 Floats = NDArray[np.float64]
 
@@ -93,8 +93,9 @@ def tabulate(design: Design, samples: Samples | None = None, *, states: Sequence
     views: dict[object, View] = {(): base}
     setting = setting_of(design, base, samples=count, nodes=SMOOTH_NODES, breaks_of=breaks)[0]
     lights[()] = design.geometry.light(setting)
-    laid = [_lay(design, state, samples, count, breaks, lights, views) for state in chosen]
-    untouched_laid = _untouched(design, samples, count, breaks, lights, views)
+    nodes = _nodes_for(design, chosen, base, setting)
+    laid = [_lay(design, state, samples, count, breaks, lights, views, nodes) for state in chosen]
+    untouched_laid = _untouched(design, samples, count, breaks, lights, views, nodes)
     untouched = None if untouched_laid is None else _row(untouched_laid, None, design)
     rows = tuple(_row(one, untouched, design) for one in laid)
     scores = [row.score for row in rows if row.score is not None and row.laid.state.role == "normal"]
@@ -134,32 +135,34 @@ def _media_of(design: Design, states: Sequence[State], view: View) -> tuple[str,
     return tuple(media)
 
 
-def nodes_for(design: Design, state: State, view: View) -> int:
+def _nodes_for(design: Design, states: Sequence[State], view: View, setting: Setting) -> int:
     """Wavelength nodes of a design: more where a film may show fringes.
 
     All states share them, and no thickness decides, only what kinds of films there are: two sums over the line that
     differ in nodes differ in their error, which would look like an effect of the film. A film of varying thickness has
-    slow fringes while it is thin, and averages them out over the face when it is thick.
+    slow fringes while it is thin, and averages them out over the face when it is thick. Of a gap that is measured, the
+    widths that the states name decide.
     """
-    films = (
-        film
-        for one in (*design.states, state)
-        for cover in one.covers(view).values()
-        for patch in cover.patches
-        for film in patch.films
-    )
     line = float(np.max(view.emitter.linewidth)) / float(np.min(view.emitter.wavelength)) ** 2
-    turning = 4 * np.pi * DENSE * _film_of_measurand(design) * line > SLOW
-    return FRINGE_NODES if turning or any(film.spread == "none" for film in films) else SMOOTH_NODES
+    gap = _measured_gap(design)
+    if gap is not None and 4 * np.pi * DENSE * gap * line > SLOW:
+        return FRINGE_NODES
+    for state in states:
+        given = state.covers(view)
+        covers = given if gap is not None else design.geometry.covers(setting, given)
+        patches = (patch for cover in covers.values() for patch in cover.patches)
+        if any(film.spread == "none" for patch in patches for film in patch.films):
+            return FRINGE_NODES
+    return SMOOTH_NODES
 
 
-def _film_of_measurand(design: Design) -> float:
-    """Largest gap a continuous sensor may stand at [m]: a few times what its states name; inf where it has none."""
+def _measured_gap(design: Design) -> float | None:
+    """Largest gap a continuous sensor may stand at [m], a few times what its states name; None where it has none."""
     if not design.geometry.measurand:
-        return 0.0
+        return None
     leaf = next(leaf for leaf in leaves(design.geometry.Parameters) if leaf.path == design.geometry.measurand)
     numbers = [state.expect for state in design.states if isinstance(state.expect, float)]
-    return TAIL * max(numbers) if leaf.kind == "length" and numbers else np.inf
+    return TAIL * max(numbers) if leaf.kind == "length" and numbers else None
 
 
 def _lay(
@@ -170,6 +173,7 @@ def _lay(
     breaks: Sequence[str],
     lights: dict[object, Light],
     views: dict[object, View],
+    nodes: int,
 ) -> LaidState:
     if state.changes_key not in views:
         views[state.changes_key] = view_of(design, samples, state.changes)
@@ -178,7 +182,7 @@ def _lay(
         state,
         views[state.changes_key],
         samples=count,
-        nodes=nodes_for(design, state, views[state.changes_key]),
+        nodes=nodes,
         breaks_of=breaks,
         lights=lights,
     )
@@ -191,13 +195,14 @@ def _untouched(
     breaks: Sequence[str],
     lights: dict[object, Light],
     views: dict[object, View],
+    nodes: int,
 ) -> LaidState | None:
     """The sensor with nothing on it, where readings are changes against it."""
     if design.geometry.reading != "change":
         return None
     dry = Dry()
     state = State(UNTOUCHED, UNTOUCHED, "absent", dict.fromkeys(design.geometry.wetted, dry))
-    return _lay(design, state, samples, count, breaks, lights, views)
+    return _lay(design, state, samples, count, breaks, lights, views, nodes)
 
 
 def _row(laid: LaidState, untouched: StateRow | None, design: Design) -> StateRow:
