@@ -95,6 +95,8 @@ def test_a_liquid_that_repels_never_fills():
     found = evaluate(design(puddle={"contact_angle": "120 deg"}), advice=False)
     assert found.metrics["gap_fill_time"].value == np.inf
     assert any(note.code == "gap-repels" for note in found.notes)
+    dry, leak = (state.signal for state in found.states)
+    assert leak == pytest.approx(dry, rel=1e-12)
 
 
 def test_washburn_filling():

@@ -93,9 +93,7 @@ class DropletPlate(Geometry):
             FailureRow("even sheet of water", "reflects as a dry face does: unseen at rest", None, ()),
             FailureRow("dirt, salt, road film", "takes light slowly and for long", True, ("trend",), slow=True),
             FailureRow("dew", "takes as much light as rain, but comes on in minutes", True, ("trend",), slow=True),
-            FailureRow(
-                "coating worn or new", "drops of another contact angle take up to three times as much", None, ()
-            ),
+            FailureRow("coating worn or new", "other drops: a wide receiver sees up to three times the loss", None, ()),
             FailureRow("bubbles in the bond", "light is lost for good", True, ("trend",), slow=True),
             FailureRow("low sun into the receiver", "light and noise are added", False, ("dark test",)),
             FailureRow("ice or frost", "takes light and scatters it back", True, ()),
@@ -110,8 +108,8 @@ class DropletPlate(Geometry):
         return (
             Note(
                 "sheet-invisible",
-                "An even sheet of water is invisible at rest (d.c.): its outer face reflects what the plate's did. It "
-                "is seen by its ripple, in the alternating part of the reading, which is not modelled here.",
+                "An even sheet of water is invisible at rest (d.c.) but for what it absorbs: its outer face reflects "
+                "what the plate's did. It is seen by its ripple, in the alternating part of the reading, which is not modelled here.",
                 decides="a trial under running water",
             ),
             Note(
@@ -121,7 +119,8 @@ class DropletPlate(Geometry):
             ),
             Note(
                 "drops-counted",
-                "Drops fall at random: a patch with few of them reads unevenly, however quiet the electronics.",
+                "Drops fall at random: a patch with few of them reads unevenly, however quiet the electronics. The margin "
+                "in sigma and the error rates count the electronics alone; the rain margin counts both.",
                 severity="info",
             ),
         )

@@ -173,9 +173,10 @@ class LeakPuck(Geometry):
         )
 
     def covers(self, setting: Setting, touching: Mapping[str, Cover]) -> Mapping[str, Cover]:
-        """The liquid wets the base where it stands as high as the feet; behind it lies the floor."""
+        """A liquid that wets the floor fills the gap where it stands as high as the feet; behind it lies the floor."""
         puck, floor = setting.p.puck, setting.p.floor
-        fills = np.where(setting.spread(setting.p.puddle.depth) >= setting.spread(puck.foot), 1.0, 0.0)
+        deep = setting.spread(setting.p.puddle.depth) >= setting.spread(puck.foot)
+        fills = np.where(deep & (setting.spread(setting.p.puddle.contact_angle) < np.pi / 2), 1.0, 0.0)
         back = wall_return(
             distance=setting.spread(puck.foot),
             diameter=setting.spread(puck.base),
@@ -201,7 +202,8 @@ class LeakPuck(Geometry):
         return (
             FailureRow("puck lifted off the floor", "no liquid reaches the base", False, ("lift switch",)),
             FailureRow("floor repels the liquid", "the gap does not fill by itself", False, ()),
-            FailureRow("dust or swarf bridges the gap", "a wick that lets liquid in early, or keeps it out", None, ()),
+            FailureRow("dust or swarf in the gap, soaked", "a wick that wets the base without a leak", True, ()),
+            FailureRow("dust or swarf blocks the gap", "keeps liquid from the base", False, ()),
             FailureRow("pale floor behind the liquid", "light comes back through the liquid", False, ()),
             FailureRow("mop water, condensation under a cold pipe", "the gap fills without a leak", True, ()),
             FailureRow("residue dries on the base", "takes light for good", True, ("fault band",), slow=True),
