@@ -109,7 +109,8 @@ class DropletPlate(Geometry):
             Note(
                 "sheet-invisible",
                 "An even sheet of water is invisible at rest (d.c.) but for what it absorbs: its outer face reflects "
-                "what the plate's did. It is seen by its ripple, in the alternating part of the reading, which is not modelled here.",
+                "what the plate's did. It is seen by its ripple, in the alternating part of the reading, which is not "
+                "modelled here.",
                 decides="a trial under running water",
             ),
             Note(
@@ -119,8 +120,8 @@ class DropletPlate(Geometry):
             ),
             Note(
                 "drops-counted",
-                "Drops fall at random: a patch with few of them reads unevenly, however quiet the electronics. The margin "
-                "in sigma and the error rates count the electronics alone; the rain margin counts both.",
+                "Drops fall at random: a patch with few of them reads unevenly, however quiet the electronics. The "
+                "margin in sigma and the error rates count the electronics alone; the rain margin counts both.",
                 severity="info",
             ),
         )
