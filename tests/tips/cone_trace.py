@@ -21,8 +21,24 @@ def _fresnel(n1, n2, cos1):
     return (n1 * cos1 - n2 * cos2) / (n1 * cos1 + n2 * cos2), (n2 * cos1 - n1 * cos2) / (n2 * cos1 + n1 * cos2)
 
 
-def cone_signal(*, n, n_out, radius, source_x, source_r, detector_x, detector_r, half_angle, rays=60_000, seed=3):
-    """(mean, standard error) of the share of a Lambertian lobe that lands on the detector; apex angle 90 degrees."""
+def cone_signal(
+    *,
+    n,
+    n_out,
+    radius,
+    source_x,
+    source_r,
+    detector_x,
+    detector_r,
+    half_angle,
+    polarization="none",
+    rays=60_000,
+    seed=3,
+):
+    """(mean, standard error) of the share of a Lambertian lobe that lands on the detector; apex angle 90 degrees.
+
+    polarization  "none", or the field inside along ("s") or across ("p") the y axis, weakened by the base's mean loss
+    """
     rng = np.random.default_rng(seed)
     r, turn = source_r * np.sqrt(rng.random(rays)), 2 * np.pi * rng.random(rays)
     point = np.stack([source_x + r * np.cos(turn), r * np.sin(turn), np.zeros(rays)], axis=1)
@@ -35,6 +51,10 @@ def cone_signal(*, n, n_out, radius, source_x, source_r, detector_x, detector_r,
     rs, rp = _fresnel(1.0, n, cos)
     ts, tp = np.sqrt(1 - np.abs(rs) ** 2), np.sqrt(1 - np.abs(rp) ** 2)
     field = (np.cos(spin) * ts)[:, None] * s + (np.sin(spin) * tp)[:, None] * np.cross(ray, s)
+    if polarization != "none":
+        y = np.array([[0.0, 1.0, 0.0]])
+        along = _unit(y - ray[:, 1:2] * ray)
+        field = np.sqrt((ts**2 + tp**2) / 2)[:, None] * (along if polarization == "s" else np.cross(ray, along))
     field = field.astype(complex)
     landed, alive = np.zeros(rays), np.ones(rays, bool)
     for _ in range(5):

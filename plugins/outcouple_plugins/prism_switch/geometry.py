@@ -142,9 +142,9 @@ def _axis_incidence(setting: Setting) -> tuple[Floats, Floats]:
 
 
 def _dry_angle_margin(results: Results) -> MetricValue | Missing:
-    states = results.expecting("absent")
+    states = [state for state in results.expecting("absent") if state.role == "normal"]
     if not states:
-        return Missing("no state expects absent")
+        return Missing("no state without a fault expects absent")
     found = {}
     for state in states:
         setting = state.setting

@@ -93,9 +93,9 @@ def _captured(results: Results) -> Floats:
 
 
 def _margin(results: Results) -> MetricValue | Missing:
-    states = results.expecting("absent")
+    states = [state for state in results.expecting("absent") if state.role == "normal"]
     if not states:
-        return Missing("no state expects absent")
+        return Missing("no state without a fault expects absent")
     captured, light = _captured(results), results.light
     if not np.all(np.sum(captured, axis=1) > 0):
         return Missing("no light comes back to the detector")
