@@ -127,8 +127,8 @@ class Milky(Touching):
         straight = Note(
             "turbid-returns",
             "Of what a turbid liquid sends back into a tip only the straight way to the detector counts. Ways over a "
-            "further reflection or a second return are left out: the liquid may give back some ten times more (a cone in "
-            "milk: 2 to 3 % of its dry light), so it may read drier than told.",
+            "further reflection or a second return are left out: the liquid may give back some ten times more (a cone "
+            "in milk: 2 to 3 % of its dry light), so it may read drier than told.",
             decides="a trial in the turbid liquid",
         )
         return (spread, straight, *diffuse_notes(scattering=p.scattering, absorption=p.absorption))
