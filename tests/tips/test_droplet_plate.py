@@ -85,6 +85,16 @@ def test_counted_drops():
     assert found.metrics["rain_margin"].value == pytest.approx(np.sqrt(20), rel=1e-3)
 
 
+def test_at_the_smallest_coverage_the_reading_is_the_level_crosstalk_and_all():
+    plate, given = {"crosstalk": "20 %"}, {"level": "given", "share": "97 %"}
+    found = evaluate(design(drops("10 %", "40 deg"), plate, decision=given), advice=False, views=False)
+    coverage = found.metrics["smallest_coverage"].value
+    water = {"what": "droplets", "coverage": f"{100 * coverage:.9f} %", "contact_angle": "40 deg"}
+    at_level = evaluate(design(water, plate, decision=given), advice=False, views=False)
+    clear, reading = (state.signal for state in at_level.states)
+    assert reading / clear == pytest.approx(0.97, abs=2e-5)
+
+
 def test_a_coating_makes_drops_take_more_light_out():
     narrow = evaluate(design(drops("10 %", "40 deg")), advice=False).metrics["coating_sensitivity"].value
     wide = evaluate(design(drops("10 %", "40 deg"), {"detector_half_angle": "60 deg"}), advice=False)

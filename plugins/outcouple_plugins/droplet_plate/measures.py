@@ -167,7 +167,9 @@ def _smallest(results: Results) -> MetricValue | Missing:
         return Missing("needs states that expect absent and present")
     bounces = float(results.setting.p.plate.bounces)
     each = 1 - _kept(results, *_with_drops(1.0, BARE)) ** (1 / bounces)
-    left = np.clip(-results.decision.level[:, 0] / np.min(dry.signal, axis=1), 1e-12, 1.0)
+    bright = np.min(dry.signal, axis=1)
+    beside = bright * results.light.stray[:, 0] / np.min(dry.share, axis=1)
+    left = np.clip((-results.decision.level[:, 0] - beside) / (bright - beside), 1e-12, 1.0)
     coverage = (1 - left ** (1 / bounces)) / each
     return MetricValue(np.broadcast_to(np.where(coverage <= 1, coverage, np.nan), (results.setting.samples,)))
 
